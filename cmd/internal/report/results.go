@@ -1,0 +1,154 @@
+package report
+
+import (
+	"encoding/json"
+	"io"
+
+	"axisfold/pca"
+	"axisfold/pca/retain"
+	"axisfold/pcr"
+)
+
+// FormatVersion is the version of results.json, model.json and manifest.json.
+const FormatVersion = 1
+
+type resultsFile struct {
+	Axisfold      int                `json:"axisfold"`
+	Title         string             `json:"title"`
+	Table         Table              `json:"table"`
+	Channels      []channelFacts     `json:"channels"`
+	Decomposition decompositionFacts `json:"decomposition"`
+	Retention     []verdictFacts     `json:"retention"`
+	Regression    []regressionFacts  `json:"regression,omitempty"`
+	Warnings      []pca.Warning      `json:"warnings"`
+}
+
+type channelFacts struct {
+	Channel     string `json:"channel"`
+	Unit        string `json:"unit"`
+	Count       int64  `json:"count"`
+	Missing     int64  `json:"missing"`
+	Mean        Number `json:"mean"`
+	Deviation   Number `json:"standard_deviation"`
+	Minimum     Number `json:"minimum"`
+	Maximum     Number `json:"maximum"`
+	Communality Number `json:"communality"`
+}
+
+type decompositionFacts struct {
+	Matrix      pca.Matrix `json:"matrix"`
+	Route       pca.Route  `json:"route"`
+	Reason      string     `json:"reason"`
+	Rows        int        `json:"rows"`
+	Channels    int        `json:"channels"`
+	Rank        int        `json:"rank"`
+	Retained    int        `json:"retained"`
+	Total       Number     `json:"total_variance"`
+	Condition   Number     `json:"condition"`
+	Eigenvalues []Number   `json:"eigenvalues"`
+	Shares      []Number   `json:"shares"`
+}
+
+type verdictFacts struct {
+	Rule       string      `json:"rule"`
+	Setting    string      `json:"setting"`
+	Chosen     bool        `json:"chosen"`
+	Abstains   bool        `json:"abstains"`
+	Components int         `json:"components"`
+	Note       string      `json:"note"`
+	Steps      []stepFacts `json:"steps"`
+}
+
+type stepFacts struct {
+	Value     Number `json:"value"`
+	Threshold Number `json:"threshold"`
+	Kept      bool   `json:"kept"`
+}
+
+type regressionFacts struct {
+	Response    string           `json:"response"`
+	Rule        string           `json:"rule"`
+	Order       pcr.Order        `json:"order"`
+	Arrangement string           `json:"arrangement"`
+	Folds       int              `json:"folds"`
+	Components  int              `json:"components"`
+	Enters      []string         `json:"enters"`
+	Rows        int              `json:"rows"`
+	Freedom     int              `json:"degrees_of_freedom"`
+	Residual    Number           `json:"residual_standard_deviation"`
+	R2          Number           `json:"r2"`
+	Confidence  Number           `json:"confidence"`
+	Terms       []termFacts      `json:"terms"`
+	Validation  []validationFact `json:"validation"`
+}
+
+type termFacts struct {
+	Term          string `json:"term"`
+	Coefficient   Number `json:"coefficient"`
+	Error         Number `json:"standard_error"`
+	Lower         Number `json:"lower"`
+	Upper         Number `json:"upper"`
+	Standardized  Number `json:"standardized_coefficient"`
+	Ordinary      Number `json:"ols_coefficient"`
+	OrdinaryError Number `json:"ols_standard_error"`
+	VIF           Number `json:"vif"`
+}
+
+type validationFact struct {
+	Components int    `json:"components"`
+	Fit        Number `json:"rmse_fit"`
+	CV         Number `json:"rmse_cv"`
+	CVError    Number `json:"se_cv"`
+	R2         Number `json:"r2_fit"`
+	CVR2       Number `json:"r2_cv"`
+	Chosen     bool   `json:"chosen"`
+}
+
+// WriteResults writes results.json: all facts of the study but those of single rows.
+func WriteResults(s *Study, out io.Writer) error {
+	d := s.Decomposition
+	f := resultsFile{Axisfold: FormatVersion, Title: s.Title, Table: s.Table, Warnings: s.Warnings,
+		Decomposition: decompositionFacts{Matrix: d.Matrix, Route: d.Route, Reason: d.Reason, Rows: d.Rows,
+			Channels: d.Width(), Rank: d.Rank, Retained: s.Retained(), Total: Number(d.Total),
+			Condition: Number(d.Condition()), Eigenvalues: numbers(d.Values)}}
+	for a := range d.Values {
+		f.Decomposition.Shares = append(f.Decomposition.Shares, Number(d.Share(a)))
+	}
+	for j, c := range s.Channels {
+		f.Channels = append(f.Channels, channelFacts{c.Name, c.Unit, c.Count, c.Missing, Number(c.Mean), Number(c.Deviation),
+			Number(c.Minimum), Number(c.Maximum), Number(d.Communality(j, s.Retained()))})
+	}
+	for i, v := range s.Overview {
+		f.Retention = append(f.Retention, verdictOf(v, i == 0))
+	}
+	if s.Regression != nil {
+		for _, m := range s.Regression.Result.Models {
+			f.Regression = append(f.Regression, regressionOf(s.Regression, m))
+		}
+	}
+	return writeJSON(out, f)
+}
+
+func verdictOf(v retain.Verdict, chosen bool) verdictFacts {
+	f := verdictFacts{Rule: v.Rule, Setting: v.Setting, Chosen: chosen, Abstains: v.Abstains, Components: v.Components, Note: v.Note}
+	for _, s := range v.Steps {
+		f.Steps = append(f.Steps, stepFacts{Number(s.Value), Number(s.Threshold), s.Kept})
+	}
+	return f
+}
+
+func regressionOf(r *Regression, m *pcr.Model) regressionFacts {
+	f := regressionFacts{Response: m.Response, Rule: r.Rule, Order: r.Order, Arrangement: r.Arrangement, Folds: m.Folds,
+		Components: m.Components, Rows: m.Rows, Freedom: m.Free, Residual: Number(m.Residual), R2: Number(m.R2), Confidence: Number(r.Confidence)}
+	for _, a := range m.Entering[:m.Components] {
+		f.Enters = append(f.Enters, ComponentName(a))
+	}
+	for _, t := range append([]pcr.Term{m.Intercept}, m.Terms...) {
+		f.Terms = append(f.Terms, termFacts{t.Name, Number(t.Coefficient), Number(t.Error), Number(t.Lower), Number(t.Upper),
+			Number(t.Standardized), Number(t.Ordinary), Number(t.OrdinaryError), Number(t.VIF)})
+	}
+	for _, s := range m.Path {
+		f.Validation = append(f.Validation, validationFact{s.Components, Number(s.RootMean), Number(s.CV), Number(s.CVError), Number(s.R2), Number(s.CVR2), s.Chosen})
+	}
+	return f
+}

@@ -1,0 +1,79 @@
+package report
+
+import "strconv"
+
+// RowWriter builds lines of the tables that have one line per row. It holds scratch
+// space: one per goroutine.
+type RowWriter struct{ csvWriter }
+
+// RowKey is what every such line starts with: number of the row among all data rows,
+// from 1, and its time and group where the table has them.
+type RowKey struct {
+	Row         int64
+	Time, Group []byte
+}
+
+// RowLayout says which key columns there are.
+type RowLayout struct{ Time, Group bool }
+
+func (l RowLayout) names() []string {
+	names := []string{"row"}
+	if l.Time {
+		names = append(names, "time")
+	}
+	if l.Group {
+		names = append(names, "group")
+	}
+	return names
+}
+
+// ScoresHeader returns the first line of scores.csv for k components.
+func (l RowLayout) ScoresHeader(k int) []byte {
+	var w csvWriter
+	names := l.names()
+	for a := range k {
+		names = append(names, ComponentName(a))
+	}
+	w.header(append(names, "t2", "spe")...)
+	return w.b
+}
+
+// PredictionsHeader returns the first line of predictions.csv.
+func (l RowLayout) PredictionsHeader() []byte {
+	var w csvWriter
+	w.header(append(l.names(), "response", "observed", "predicted", "lower", "upper", "residual")...)
+	return w.b
+}
+
+// Reset starts a new run of lines.
+func (w *RowWriter) Reset() { w.b, w.start = w.b[:0], false }
+
+// Bytes returns the lines so far, valid until Reset.
+func (w *RowWriter) Bytes() []byte { return w.b }
+
+func (w *RowWriter) key(l RowLayout, k RowKey) {
+	w.b = strconv.AppendInt(w.b, k.Row, 10)
+	w.start = true
+	if l.Time {
+		w.text(string(k.Time))
+	}
+	if l.Group {
+		w.text(string(k.Group))
+	}
+}
+
+// Scores adds a line of scores.csv.
+func (w *RowWriter) Scores(l RowLayout, k RowKey, scores []float64, t2, spe float64) {
+	w.key(l, k)
+	for _, v := range scores {
+		w.number(v)
+	}
+	w.number(t2).number(spe).end()
+}
+
+// Prediction adds a line of predictions.csv; half is the half width of the interval.
+func (w *RowWriter) Prediction(l RowLayout, k RowKey, response string, observed, predicted, half float64) {
+	w.key(l, k)
+	w.text(response).number(observed).number(predicted).number(predicted - half).number(predicted + half).number(observed - predicted)
+	w.end()
+}

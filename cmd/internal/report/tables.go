@@ -1,0 +1,124 @@
+package report
+
+import (
+	"fmt"
+	"io"
+	"math"
+
+	"axisfold/pcr"
+)
+
+// TableFile is one of the tables of a run folder: its name and how to write it.
+type TableFile struct {
+	Name  string
+	ready func(*Study) bool
+	fill  func(*Study, *csvWriter)
+}
+
+// Tables lists the tables that are written from a study; scores and predictions are
+// written row by row elsewhere (see rows.go).
+var Tables = []TableFile{
+	{"channels.csv", always, fillChannels},
+	{"eigenvalues.csv", always, fillEigenvalues},
+	{"eigenvectors.csv", always, fillEigenvectors},
+	{"loadings.csv", always, fillLoadings},
+	{"retention.csv", always, fillRetention},
+	{"coefficients.csv", hasRegression, fillCoefficients},
+	{"validation.csv", hasRegression, fillValidation},
+}
+
+func always(*Study) bool          { return true }
+func hasRegression(s *Study) bool { return s.Regression != nil }
+
+// Ready tells whether the study has what the table needs.
+func (t *TableFile) Ready(s *Study) bool { return t.ready(s) }
+
+// Write writes the table.
+func (t *TableFile) Write(s *Study, out io.Writer) error {
+	var w csvWriter
+	t.fill(s, &w)
+	return w.to(out)
+}
+
+func fillChannels(s *Study, w *csvWriter) {
+	w.header("channel", "unit", "count", "missing", "mean", "standard_deviation", "minimum", "maximum", "center", "scale", "communality")
+	d := s.Decomposition
+	for j, c := range s.Channels {
+		w.text(c.Name).text(c.Unit).whole(c.Count).whole(c.Missing)
+		w.number(c.Mean).number(c.Deviation).number(c.Minimum).number(c.Maximum)
+		w.number(d.Scaling.Center[j]).number(d.Scaling.Scale[j]).number(d.Communality(j, s.Retained()))
+		w.end()
+	}
+}
+
+func fillEigenvalues(s *Study, w *csvWriter) {
+	w.header("component", "eigenvalue", "share", "cumulative_share", "retained")
+	d := s.Decomposition
+	for a, l := range d.Values {
+		w.text(ComponentName(a)).number(l).number(d.Share(a)).number(d.CumulativeShare(a)).flag(a < s.Retained())
+		w.end()
+	}
+}
+
+// ComponentName is C1 for component 0.
+func ComponentName(a int) string { return fmt.Sprintf("C%d", a+1) }
+
+func fillByComponent(s *Study, w *csvWriter, value func(j, a int) float64) {
+	w.text("channel")
+	for a := range s.Decomposition.Values {
+		w.text(ComponentName(a))
+	}
+	w.end()
+	for j, name := range s.Decomposition.Channels {
+		w.text(name)
+		for a := range s.Decomposition.Values {
+			w.number(value(j, a))
+		}
+		w.end()
+	}
+}
+
+func fillEigenvectors(s *Study, w *csvWriter) { fillByComponent(s, w, s.Decomposition.Vector) }
+func fillLoadings(s *Study, w *csvWriter)     { fillByComponent(s, w, s.Decomposition.Loading) }
+
+func fillRetention(s *Study, w *csvWriter) {
+	w.header("rule", "components", "chosen", "note", "setting")
+	for i, v := range s.Overview {
+		w.text(v.Rule)
+		if v.Abstains {
+			w.number(math.NaN())
+		} else {
+			w.whole(int64(v.Components))
+		}
+		w.flag(i == 0).text(v.Note).text(v.Setting)
+		w.end()
+	}
+}
+
+func fillCoefficients(s *Study, w *csvWriter) {
+	w.header("response", "term", "coefficient", "standard_error", "lower", "upper", "standardized_coefficient",
+		"ols_coefficient", "ols_standard_error", "vif")
+	for _, m := range s.Regression.Result.Models {
+		for _, t := range append([]pcr.Term{m.Intercept}, m.Terms...) {
+			w.text(m.Response).text(t.Name).number(t.Coefficient).number(t.Error).number(t.Lower).number(t.Upper)
+			w.number(t.Standardized).number(t.Ordinary).number(t.OrdinaryError).number(t.VIF)
+			w.end()
+		}
+	}
+}
+
+func fillValidation(s *Study, w *csvWriter) {
+	w.header("response", "components", "rmse_fit", "rmse_cv", "se_cv", "r2_fit", "r2_cv", "chosen", "enters")
+	for _, m := range s.Regression.Result.Models {
+		for k, step := range m.Path {
+			w.text(m.Response).whole(int64(k)).number(step.RootMean).number(step.CV).number(step.CVError)
+			w.number(step.R2).number(step.CVR2).flag(step.Chosen)
+			if k == 0 {
+				w.text("")
+			} else {
+				w.text(ComponentName(m.Entering[k-1]))
+			}
+			w.end()
+		}
+	}
+}

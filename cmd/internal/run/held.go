@@ -1,0 +1,126 @@
+package run
+
+import (
+	"fmt"
+	"runtime"
+	"strconv"
+	"sync"
+
+	"axisfold/pca"
+	"axisfold/pca/table"
+)
+
+// pieceRows is how many rows of a held table are summarised at a time. Boundaries depend
+// on the rows alone, so the sums have the same bits for any number of threads.
+const pieceRows = 2048
+
+// heldSummaries makes the summaries of a table in memory: of all rows, and of each fold,
+// whose ends are exact here.
+func heldSummaries(held *table.Held, plan *foldPlan, form pca.Form, ranks bool, threads int) (whole *pca.Summary, folds []*pca.Summary, err error) {
+	n := held.Len()
+	all := make([]int, n)
+	for i := range all {
+		all[i] = i
+	}
+	kept := 0
+	if ranks {
+		kept = n // exact medians: all values stay
+	}
+	width := len(held.Columns())
+	whole = summarizeRows(held.Matrix(), width, all, form, kept, threads)
+	if plan == nil {
+		return whole, nil, nil
+	}
+	lists, err := foldRows(held, plan)
+	if err != nil {
+		return nil, nil, err
+	}
+	for _, rows := range lists {
+		folds = append(folds, summarizeRows(held.Matrix(), width, rows, form, kept, threads))
+	}
+	return whole, folds, nil
+}
+
+// foldRows lists the rows of each fold.
+func foldRows(held *table.Held, plan *foldPlan) ([][]int, error) {
+	n := held.Len()
+	if plan.arrangement != groupFolds && n < plan.folds {
+		return nil, tooFewRows(n, plan.folds)
+	}
+	var lists [][]int
+	switch plan.arrangement {
+	case randomFolds:
+		lists = make([][]int, plan.folds)
+		for i, f := range plan.deal(0, n) {
+			lists[f] = append(lists[f], i)
+		}
+	case blockFolds:
+		start := 0
+		for _, end := range stretches(n, plan.folds) {
+			var rows []int
+			for i := start; i < end; i++ {
+				rows = append(rows, i)
+			}
+			lists = append(lists, rows)
+			start = end
+		}
+	case groupFolds:
+		at := map[string]int{}
+		var groups [][]int
+		for i := range n {
+			g := string(held.Group(i))
+			if _, ok := at[g]; !ok {
+				at[g] = len(groups)
+				groups = append(groups, nil)
+			}
+			groups[at[g]] = append(groups[at[g]], i)
+		}
+		if len(groups) < 2 {
+			return nil, &pca.DataError{Problem: fmt.Sprintf("folds by group need at least 2 groups; the complete rows hold %d", len(groups)),
+				Hint: "use arrangement: blocks"}
+		}
+		sizes := make([]int, len(groups))
+		for i, g := range groups {
+			sizes[i] = len(g)
+		}
+		for _, members := range groupedFolds(sizes, plan.folds) {
+			var rows []int
+			for _, g := range members {
+				rows = append(rows, groups[g]...)
+			}
+			lists = append(lists, rows)
+		}
+	default:
+		panic("run: unknown arrangement " + strconv.Quote(plan.arrangement))
+	}
+	return lists, nil
+}
+
+// summarizeRows summarises the given rows of x in pieces, in parallel, merged in order.
+func summarizeRows(x []float64, width int, rows []int, form pca.Form, ranks, threads int) *pca.Summary {
+	if threads <= 0 {
+		threads = runtime.GOMAXPROCS(0)
+	}
+	count := (len(rows) + pieceRows - 1) / pieceRows
+	sums := make([]*pca.Summary, count)
+	var wg sync.WaitGroup
+	for t := range min(threads, count) {
+		wg.Go(func() {
+			builder := pca.NewBuilder(width, form, ranks)
+			var gathered []float64
+			for i := t; i < count; i += threads {
+				piece := rows[i*pieceRows : min((i+1)*pieceRows, len(rows))]
+				gathered = gathered[:0]
+				for _, r := range piece {
+					gathered = append(gathered, x[r*width:(r+1)*width]...)
+				}
+				sums[i] = builder.Summarize(gathered, len(piece))
+			}
+		})
+	}
+	wg.Wait()
+	if count == 0 {
+		return pca.NewBuilder(width, form, ranks).Empty()
+	}
+	return pca.MergeAll(sums...)
+}

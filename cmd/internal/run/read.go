@@ -1,0 +1,235 @@
+package run
+
+import (
+	"context"
+	"fmt"
+	"runtime"
+	"sync"
+	"sync/atomic"
+
+	"axisfold/pca"
+	"axisfold/pca/table"
+)
+
+// heldCells bounds the size of a table that is kept in memory: 8 Mi numbers, 64 MiB. A
+// table with more channels than rows is kept up to p² numbers, which is less than its
+// cross-products would take.
+const heldCells = 8 << 20
+
+// exactRanks is up to how many rows of a table too large to hold medians are exact.
+const exactRanks = 4096
+
+// reading is what the first pass over the rows leaves.
+type reading struct {
+	source   *source
+	rows     int64 // data rows of the table
+	complete int64
+	missing  []int64 // by column in use
+	// For a table too large to hold, the summaries made on the way; nil otherwise.
+	stream *collector
+}
+
+// readTable goes through the table once. Small tables end up in memory; once a table
+// proves too large, what was read is summarised and the rest streams through summaries.
+func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, form pca.Form, threads int) (*reading, error) {
+	if threads <= 0 {
+		threads = runtime.GOMAXPROCS(0)
+	}
+	out := &reading{missing: make([]int64, r.width())}
+	held := table.NewHeld(labelledColumns(r))
+	prepare := newPreparers(r)
+	collect := newCollector(r, plan, form)
+	var streaming atomic.Bool
+	type result struct {
+		missing []int64
+		sums    []keyed
+	}
+	limit := int64(heldCells)
+	err := rows.Each(ctx, threads, func(worker int, b *table.Block) error {
+		res := &result{missing: make([]int64, r.width())}
+		if err := prepare(b, res.missing); err != nil {
+			return err
+		}
+		if streaming.Load() {
+			res.sums = collect.summarize(b)
+		}
+		b.Result = res
+		return nil
+	}, func(b *table.Block) error {
+		res := b.Result.(*result)
+		for i, m := range res.missing {
+			out.missing[i] += m
+		}
+		out.complete += int64(b.Rows)
+		out.rows = b.Row + int64(b.Count)
+		if held != nil {
+			held.Append(b)
+			cells := int64(held.Len()) * int64(r.width())
+			if cells <= max(limit, int64(r.width())*int64(r.width())) {
+				return nil
+			}
+			streaming.Store(true)
+			overflow := held
+			held = nil
+			return overflow.Each(ctx, 1, func(int, *table.Block) error { return nil }, func(b *table.Block) error {
+				collect.add(collect.summarize(b))
+				return nil
+			})
+		}
+		if res.sums == nil {
+			res.sums = collect.summarize(b)
+		}
+		collect.add(res.sums)
+		return nil
+	})
+	if err != nil {
+		return nil, err
+	}
+	out.source = &source{rows: rows, roles: r, held: held}
+	if held == nil {
+		out.stream = collect
+	}
+	return out, nil
+}
+
+// labelledColumns are the columns in use under their labels.
+func labelledColumns(r *roles) []table.Column {
+	out := make([]table.Column, r.width())
+	for i, j := range r.use {
+		out[i] = r.columns[j]
+		out[i].Name = r.labels[i]
+	}
+	return out
+}
+
+// keyed is the summary of those rows of a block that share a fold or group.
+type keyed struct {
+	key string
+	sum *pca.Summary
+}
+
+// collector builds the summaries that a run needs from blocks of prepared rows: of all
+// rows, and of the folds or of what they can be cut from.
+type collector struct {
+	roles    *roles
+	plan     *foldPlan
+	form     pca.Form
+	ranks    int
+	builders sync.Pool
+	whole    *pca.Summary // without folds
+	parts    parts        // random and groups
+	ledger   *ledger      // blocks
+}
+
+func newCollector(r *roles, plan *foldPlan, form pca.Form) *collector {
+	c := &collector{roles: r, plan: plan, form: form}
+	if pca.NeedsRanks(r.methods) {
+		c.ranks = exactRanks
+	}
+	c.builders.New = func() any { return pca.NewBuilder(r.width(), form, c.ranks) }
+	switch {
+	case plan == nil:
+		c.whole = pca.NewBuilder(r.width(), form, c.ranks).Empty()
+	case plan.arrangement == blockFolds:
+		c.ledger = newLedger(r.width(), plan.folds)
+	}
+	return c
+}
+
+// summarize makes the summaries of one block. It may be called from many goroutines.
+func (c *collector) summarize(b *table.Block) []keyed {
+	builder := c.builders.Get().(*pca.Builder)
+	defer c.builders.Put(builder)
+	var key func(i int) string
+	switch {
+	case c.plan == nil || c.plan.arrangement == blockFolds:
+		return []keyed{{"", builder.Summarize(b.Data, b.Rows)}}
+	case c.plan.arrangement == randomFolds:
+		folds := c.plan.deal(b.Index, b.Rows)
+		key = func(i int) string { return fmt.Sprint(folds[i]) }
+	default:
+		key = func(i int) string { return string(b.Group(i)) }
+	}
+	return split(b, key, builder)
+}
+
+// split summarises the rows of a block by key, in the order in which keys appear.
+func split(b *table.Block, key func(i int) string, builder *pca.Builder) []keyed {
+	var keys []string
+	rows := map[string][]float64{}
+	for i := range b.Rows {
+		k := key(i)
+		if _, ok := rows[k]; !ok {
+			keys = append(keys, k)
+		}
+		rows[k] = append(rows[k], b.Data[i*b.Width:(i+1)*b.Width]...)
+	}
+	out := make([]keyed, len(keys))
+	for i, k := range keys {
+		out[i] = keyed{k, builder.Summarize(rows[k], len(rows[k])/b.Width)}
+	}
+	return out
+}
+
+// add takes in the summaries of the next block in row order.
+func (c *collector) add(sums []keyed) {
+	for _, k := range sums {
+		switch {
+		case c.whole != nil:
+			c.whole.Merge(k.sum)
+		case c.ledger != nil:
+			c.ledger.add(k.sum)
+		default:
+			builder := c.builders.Get().(*pca.Builder)
+			c.parts.merge(k.key, k.sum, builder)
+			c.builders.Put(builder)
+		}
+	}
+}
+
+// summaries returns the summary of all rows, and of each fold if there is a plan.
+func (c *collector) summaries() (whole *pca.Summary, folds []*pca.Summary, err error) {
+	switch {
+	case c.plan == nil:
+		return c.whole, nil, nil
+	case c.ledger != nil:
+		folds, err = c.ledger.cut(c.plan.folds)
+	default:
+		folds, err = c.plan.fromParts(&c.parts)
+	}
+	if err != nil {
+		return nil, nil, err
+	}
+	return pca.MergeAll(folds...), folds, nil
+}
+
+// fromParts makes folds from summaries by key.
+func (p *foldPlan) fromParts(have *parts) ([]*pca.Summary, error) {
+	if p.arrangement == randomFolds {
+		if len(have.sums) < p.folds {
+			return nil, tooFewRows(len(have.sums), p.folds)
+		}
+		return have.sums, nil
+	}
+	if len(have.sums) < 2 {
+		return nil, &pca.DataError{Problem: fmt.Sprintf("folds by group need at least 2 groups; the complete rows hold %d", len(have.sums)),
+			Hint: "use arrangement: blocks"}
+	}
+	sizes := make([]int, len(have.sums))
+	for i, s := range have.sums {
+		sizes[i] = s.Count()
+	}
+	var folds []*pca.Summary
+	for _, members := range groupedFolds(sizes, p.folds) {
+		var sums []*pca.Summary
+		for _, g := range members {
+			sums = append(sums, have.sums[g])
+		}
+		folds = append(folds, pca.MergeAll(sums...))
+	}
+	return folds, nil
+}
+
+func tooFewRows(rows, folds int) error {
+	return &pca.DataError{Problem: fmt.Sprintf("%d complete rows cannot fill %d folds", rows, folds), Hint: "use fewer folds"}
+}

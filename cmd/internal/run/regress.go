@@ -1,0 +1,76 @@
+package run
+
+import (
+	"context"
+	"fmt"
+
+	"axisfold/cmd/internal/report"
+	"axisfold/pca"
+	"axisfold/pca/retain"
+	"axisfold/pcr"
+)
+
+// regress fits the responses on the components.
+func (w *work) regress(context.Context) error {
+	g := w.cfg.Regress
+	if g == nil {
+		return nil
+	}
+	o := pcr.Options{Predictors: w.decomposeOptions(), ThroughOrigin: !g.Intercept, Order: pcr.Order(g.Retain.Order),
+		Confidence: g.Confidence, Most: g.Retain.MostComponents, Threads: w.options.Threads}
+	if o.Order == "" {
+		o.Order = pcr.ByVariance
+	}
+	reg := &report.Regression{Rule: g.Retain.Rule, Order: o.Order, Confidence: g.Confidence, Origin: o.ThroughOrigin}
+	if w.plan != nil {
+		reg.Arrangement = w.plan.arrangement
+	}
+	var responses []int
+	for i := w.roles.channels; i < w.roles.width(); i++ {
+		responses = append(responses, i)
+		c := w.channel(i)
+		o.Responses = append(o.Responses, c.Name)
+		reg.Responses = append(reg.Responses, c)
+	}
+	if err := w.chooseRegressors(&o); err != nil {
+		return err
+	}
+	result, err := pcr.Fit(w.whole, w.folds, w.active, responses, o)
+	if err != nil {
+		return fmt.Errorf("regress: %w", err)
+	}
+	reg.Result = result
+	w.study.Regression = reg
+	for _, m := range result.Models {
+		for _, warning := range m.Warnings {
+			w.warn(warning.Code, "%s: %s", m.Response, warning.Text)
+		}
+	}
+	return nil
+}
+
+// chooseRegressors translates the regression's rule. Rules that do not look at the
+// response are those of the retain stage, on the same roots.
+func (w *work) chooseRegressors(o *pcr.Options) error {
+	r := w.cfg.Regress.Retain
+	switch pcr.Choice(r.Rule) {
+	case pcr.Minimum, pcr.OneStandardError:
+		o.Choice = pcr.Choice(r.Rule)
+		return nil
+	}
+	o.Choice = pcr.Given
+	if r.Rule == "fixed" {
+		o.Components = r.Components
+		return nil
+	}
+	e := w.evidence()
+	v, err := retain.Apply(r.Rule, &e, settingsOf(r))
+	if err != nil {
+		return err
+	}
+	if v.Abstains {
+		return &pca.DataError{Problem: fmt.Sprintf("regress.retain: %s abstains: %s", r.Rule, v.Note), Hint: "choose another rule"}
+	}
+	o.Components = v.Components
+	return nil
+}

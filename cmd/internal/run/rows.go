@@ -1,0 +1,215 @@
+package run
+
+import (
+	"context"
+	"io"
+	"runtime"
+	"slices"
+
+	"axisfold/cmd/internal/report"
+	"axisfold/pca"
+	"axisfold/pca/table"
+	"axisfold/pcr"
+)
+
+// sampleRows is about how many rows the pictures of rows show.
+const sampleRows = 4000
+
+// sample is a regular sample of the complete rows, every stride-th, for pictures.
+type sample struct {
+	stride    int64
+	scores    []float64 // rows × min(k, 2)
+	width     int
+	groups    []int
+	names     []string
+	observed  [][]float64
+	predicted [][]float64
+}
+
+// rows goes through the rows once more and writes what belongs to rows: scores,
+// distances, predictions and residuals.
+func (w *work) rows(ctx context.Context) error {
+	k := w.study.Retained()
+	layout := report.RowLayout{Time: w.cfg.Read.Time != "", Group: w.cfg.Read.Groups != ""}
+	models := 0
+	if w.study.Regression != nil {
+		models = len(w.study.Regression.Result.Models)
+	}
+	w.sample = sample{stride: max(1, (w.reading.complete+sampleRows-1)/sampleRows), width: min(k, 2),
+		observed: make([][]float64, models), predicted: make([][]float64, models)}
+
+	var scores, predictions *output
+	var err error
+	if w.cfg.Write.Scores {
+		if scores, err = w.folder.create("tables/scores.csv"); err != nil {
+			return err
+		}
+		defer scores.abandon()
+		scores.Write(layout.ScoresHeader(k))
+	}
+	if models > 0 && w.cfg.Write.Predictions {
+		if predictions, err = w.folder.create("tables/predictions.csv"); err != nil {
+			return err
+		}
+		defer predictions.abandon()
+		predictions.Write(layout.PredictionsHeader())
+	}
+	threads := w.options.Threads
+	if threads <= 0 {
+		threads = runtime.GOMAXPROCS(0)
+	}
+	makers := make([]*lineMaker, threads)
+	done := int64(0)
+	err = w.reading.source.each(ctx, threads, func(worker int, b *table.Block) error {
+		if makers[worker] == nil {
+			makers[worker] = w.newLineMaker(layout, k)
+		}
+		b.Result = makers[worker].lines(b, scores != nil, predictions != nil)
+		return nil
+	}, func(b *table.Block) error {
+		lines := b.Result.(*blockLines)
+		w.sample.take(b, lines, done, layout.Group)
+		done += int64(b.Rows)
+		if err := writeLines(scores, lines.scoreText); err != nil {
+			return err
+		}
+		return writeLines(predictions, lines.predictionText)
+	})
+	if err != nil {
+		return err
+	}
+	for _, o := range []*output{scores, predictions} {
+		if o != nil {
+			if err := o.Close(); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+func writeLines(o *output, text []byte) error {
+	if o == nil {
+		return nil
+	}
+	if _, err := o.Write(text); err != nil {
+		return o.to.writeError(o.name, err)
+	}
+	return nil
+}
+
+// blockLines is what the rows of one block become.
+type blockLines struct {
+	scores                    []float64   // rows × k
+	predicted                 [][]float64 // by model
+	observed                  [][]float64
+	scoreText, predictionText []byte
+}
+
+// lineMaker scores and predicts the rows of blocks and writes their lines. One per worker.
+type lineMaker struct {
+	w          *work
+	layout     report.RowLayout
+	k          int
+	scorer     *pca.Scorer
+	predictors []*pcr.Predictor
+	x          []float64
+	t2, spe    []float64
+	half       [][]float64
+	writer     report.RowWriter
+}
+
+func (w *work) newLineMaker(layout report.RowLayout, k int) *lineMaker {
+	m := &lineMaker{w: w, layout: layout, k: k, scorer: w.study.Decomposition.NewScorer(pca.FirstComponents(k))}
+	if r := w.study.Regression; r != nil {
+		for i := range r.Result.Models {
+			m.predictors = append(m.predictors, r.Result.NewPredictor(i, r.Confidence, r.Origin))
+		}
+	}
+	m.half = make([][]float64, len(m.predictors))
+	return m
+}
+
+func (m *lineMaker) lines(b *table.Block, wantScores, wantPredictions bool) *blockLines {
+	n, p := b.Rows, len(m.w.active)
+	m.x = slices.Grow(m.x[:0], n*p)[:n*p]
+	m.t2, m.spe = slices.Grow(m.t2[:0], n)[:n], slices.Grow(m.spe[:0], n)[:n]
+	for r := range n {
+		row := b.Data[r*b.Width : r*b.Width+b.Width]
+		for j, i := range m.w.active {
+			m.x[r*p+j] = row[i]
+		}
+	}
+	out := &blockLines{scores: make([]float64, n*m.k)}
+	m.scorer.Scores(out.scores, m.t2, m.spe, m.x, n)
+	if wantScores {
+		m.writer.Reset()
+		for r := range n {
+			m.writer.Scores(m.layout, m.key(b, r), out.scores[r*m.k:(r+1)*m.k], m.t2[r], m.spe[r])
+		}
+		out.scoreText = slices.Clone(m.writer.Bytes())
+	}
+	for i, predictor := range m.predictors {
+		predicted, observed := make([]float64, n), make([]float64, n)
+		m.half[i] = slices.Grow(m.half[i][:0], n)[:n]
+		predictor.Predict(predicted, m.half[i], m.x, n)
+		for r := range n {
+			observed[r] = b.Data[r*b.Width+m.w.roles.channels+i]
+		}
+		out.predicted, out.observed = append(out.predicted, predicted), append(out.observed, observed)
+	}
+	if wantPredictions {
+		m.writer.Reset()
+		for r := range n {
+			for i, response := range m.w.study.Regression.Result.Models {
+				m.writer.Prediction(m.layout, m.key(b, r), response.Response, out.observed[i][r], out.predicted[i][r], m.half[i][r])
+			}
+		}
+		out.predictionText = slices.Clone(m.writer.Bytes())
+	}
+	return out
+}
+
+func (m *lineMaker) key(b *table.Block, r int) report.RowKey {
+	k := report.RowKey{Row: b.Row + int64(b.Offset[r]) + 1}
+	if m.layout.Time {
+		k.Time = b.Time(r)
+	}
+	if m.layout.Group {
+		k.Group = b.Group(r)
+	}
+	return k
+}
+
+// take adds every stride-th row of the block, whose first row is number first among the
+// complete ones.
+func (s *sample) take(b *table.Block, lines *blockLines, first int64, grouped bool) {
+	k := 0
+	if b.Rows > 0 {
+		k = len(lines.scores) / b.Rows
+	}
+	for r := range b.Rows {
+		if (first+int64(r))%s.stride != 0 {
+			continue
+		}
+		s.scores = append(s.scores, lines.scores[r*k:r*k+s.width]...)
+		if grouped {
+			name := string(b.Group(r))
+			at := slices.Index(s.names, name)
+			if at < 0 {
+				at = len(s.names)
+				s.names = append(s.names, name)
+			}
+			s.groups = append(s.groups, at)
+		}
+		for i := range lines.predicted {
+			s.observed[i] = append(s.observed[i], lines.observed[i][r])
+			s.predicted[i] = append(s.predicted[i], lines.predicted[i][r])
+		}
+	}
+}
+
+// abandon closes a file that is not going to be finished; after Close it does nothing.
+func (o *output) abandon() { o.file.Close() }
+
+var _ io.WriteCloser = (*output)(nil)

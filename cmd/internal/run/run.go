@@ -1,0 +1,157 @@
+// Package run calls the stages in order on files: from a run file to a run folder.
+//
+// [Execute] is the whole of it: read, standardize, decompose, retain, regress, draw,
+// write. Each stage takes and returns plain structs of the packages that own it.
+package run
+
+import (
+	"context"
+	"fmt"
+	"path/filepath"
+
+	"axisfold/cmd/internal/report"
+	"axisfold/configs"
+	"axisfold/pca"
+	"axisfold/pca/retain"
+	"axisfold/pca/table"
+)
+
+// Options are what the command line adds to the run file.
+type Options struct {
+	Out     string // folder; empty takes that of the run file
+	Replace bool
+	Threads int // 0 takes all cores
+	Version string
+	Set     []string // overrides, for the manifest
+}
+
+// Execute runs the run file and returns the study and the folder written. On any error,
+// and when ctx ends, nothing is left behind.
+func Execute(ctx context.Context, cfg *configs.File, o Options) (*report.Study, string, error) {
+	final := o.Out
+	if final == "" {
+		final = cfg.Resolve(cfg.Write.Folder)
+	}
+	final = filepath.Clean(final)
+	f, err := newFolder(final, cfg.Path, o.Replace)
+	if err != nil {
+		return nil, "", err
+	}
+	defer f.discard()
+	w := &work{cfg: cfg, options: o, folder: f}
+	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.retain, w.regress, w.rows, w.draw, w.write} {
+		if err := stage(ctx); err != nil {
+			return nil, "", err
+		}
+		if err := ctx.Err(); err != nil {
+			return nil, "", err
+		}
+	}
+	if err := f.commit(); err != nil {
+		return nil, "", err
+	}
+	return w.study, final, nil
+}
+
+// work carries what the stages hand on.
+type work struct {
+	cfg     *configs.File
+	options Options
+	folder  *folder
+	table   *table.Table
+	roles   *roles
+	reading *reading
+	plan    *foldPlan
+	whole   *pca.Summary
+	folds   []*pca.Summary
+	active  []int         // channels that take part, by position in the prepared rows
+	dropped []report.Note // channels that do not
+	study   *report.Study
+	sample  sample
+}
+
+// read opens the table, gives every column its role and goes through the rows once.
+func (w *work) read(ctx context.Context) error {
+	t, err := table.Open(ctx, readOptions(w.cfg, w.options.Threads))
+	if err != nil {
+		return err
+	}
+	w.table = t
+	if w.roles, err = assignRoles(w.cfg, t.Columns()); err != nil {
+		return err
+	}
+	w.plan = foldsOf(w.cfg)
+	form := pca.CrossProducts
+	if w.cfg.Decompose.Route == string(pca.SVD) {
+		form = pca.Factor
+	}
+	if w.reading, err = readTable(ctx, t, w.roles, w.plan, form, w.options.Threads); err != nil {
+		return err
+	}
+	w.study = &report.Study{Title: w.cfg.Title, Seed: w.cfg.Seed}
+	return w.checkRows()
+}
+
+// foldsOf returns the folds that the regression's rule asks for. Rules that look at no
+// folds still get the default ones, so that every fit comes with its held-out error.
+func foldsOf(cfg *configs.File) *foldPlan {
+	if cfg.Regress == nil {
+		return nil
+	}
+	r := cfg.Regress.Retain
+	p := &foldPlan{arrangement: r.Arrangement, folds: r.Folds, seed: cfg.Seed}
+	if p.arrangement == "" {
+		p.arrangement, p.folds = blockFolds, 10
+	}
+	return p
+}
+
+// checkRows refuses tables that cannot carry any analysis, before anything is computed.
+func (w *work) checkRows() error {
+	n := w.reading.complete
+	if n >= 2 {
+		return nil
+	}
+	problem := fmt.Sprintf("%d of %d rows are complete; at least 2 are needed", n, w.reading.rows)
+	worst, at := int64(0), -1
+	for i, m := range w.reading.missing {
+		if m > worst {
+			worst, at = m, i
+		}
+	}
+	hint := ""
+	if at >= 0 {
+		hint = fmt.Sprintf("channel %q alone has gaps in %d rows; leave it out with read.leave_out", w.roles.labels[at], worst)
+	}
+	return &pca.DataError{Problem: problem, Hint: hint}
+}
+
+// evidence is what retention rules judge.
+func (w *work) evidence() retain.Evidence {
+	deviations := make([]float64, len(w.active))
+	for j, i := range w.active {
+		deviations[j] = w.whole.Deviation(i)
+	}
+	return retain.EvidenceFor(w.study.Decomposition, deviations, w.cfg.Seed, w.options.Threads)
+}
+
+// retain runs the rule of the run file and, beside it, all others.
+func (w *work) retain(context.Context) error {
+	e := w.evidence()
+	r := w.cfg.Retain
+	verdict, err := retain.Apply(r.Rule, &e, settingsOf(r))
+	if err != nil {
+		return err
+	}
+	if verdict.Abstains {
+		return &pca.DataError{Problem: fmt.Sprintf("retain: %s abstains: %s", r.Rule, verdict.Note), Hint: "choose another rule"}
+	}
+	w.study.Verdict = verdict
+	w.study.Overview = retain.Overview(&e, verdict)
+	w.study.Warnings = append(w.study.Warnings, verdict.Warnings...)
+	if verdict.Components == 0 {
+		w.study.Warnings = append(w.study.Warnings, pca.Warning{Code: "none-retained",
+			Text: fmt.Sprintf("%s keeps no component: %s", r.Rule, verdict.Note)})
+	}
+	return nil
+}

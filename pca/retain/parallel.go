@@ -1,0 +1,124 @@
+package retain
+
+import (
+	"fmt"
+	"math"
+	"runtime"
+	"slices"
+	"sync"
+
+	"axisfold/pca"
+)
+
+// Horn 1965 (Psychometrika 30:179) with the mean, Glorfeld 1995 (Educ. Psychol. Meas.
+// 55:377) with a percentile of the roots of independent normal channels.
+var parallel = Rule{
+	Name:    "parallel",
+	Summary: "roots above those of as many rows of independent channels (Horn 1965), up to the first that is not",
+	variants: []Settings{
+		with(func(s *Settings) { s.Reference = "percentile" }),
+		with(func(s *Settings) { s.Reference = "mean" }),
+	},
+	apply: applyParallel,
+}
+
+func applyParallel(e *Evidence, s Settings) Verdict {
+	v := Verdict{Setting: "mean"}
+	if s.Reference != "mean" {
+		v.Setting = fmt.Sprintf("percentile %g", s.Percentile)
+	}
+	if s.Replicates != Defaults().Replicates {
+		v.Setting += fmt.Sprintf(", %d replicates", s.Replicates)
+	}
+	if e.Width() == 1 {
+		v.Abstains, v.Note = true, "one channel has nothing to be parallel to"
+		return v
+	}
+	roots := NullRoots(e, s.Replicates)
+	m := len(e.Values)
+	column := make([]float64, s.Replicates)
+	going := true
+	for a := range m {
+		for r := range column {
+			column[r] = roots[r*m+a]
+		}
+		slices.Sort(column)
+		reference, slip := referenceRoot(column, s)
+		going = going && e.Values[a] > reference && a < e.Rank
+		v.Steps = append(v.Steps, Step{Value: e.Values[a], Threshold: reference, Kept: going})
+		v.Reference = append(v.Reference, reference)
+		first := a == 0 || v.Steps[a-1].Kept
+		if first && math.Abs(e.Values[a]-reference) < closeCall*slip {
+			v.Warnings = append(v.Warnings, pca.Warning{Code: "close-call",
+				Text: fmt.Sprintf("root %d (%.4f) lies within %d Monte Carlo standard errors of its reference %.4f: more replicates may change the number", a+1, e.Values[a], closeCall, reference)})
+		}
+	}
+	v.Components = leading(v.Steps)
+	if v.Components < m {
+		next := v.Steps[v.Components]
+		v.Note = fmt.Sprintf("root %d is %.3f; independent channels reach %.3f (%s of %d replicates)",
+			v.Components+1, next.Value, next.Threshold, v.Setting, s.Replicates)
+	} else {
+		v.Note = "every root is above its reference"
+	}
+	return v
+}
+
+// closeCall is the distance, in standard errors, within which a decision could turn.
+const closeCall = 2
+
+// referenceRoot returns mean or percentile of the sorted roots and its Monte Carlo
+// standard error. The percentile interpolates linearly between order statistics at
+// ·q; its error is half the spread of the order statistics one binomial standard
+// deviation either side.
+func referenceRoot(sorted []float64, s Settings) (reference, slip float64) {
+	n := len(sorted)
+	if s.Reference == "mean" {
+		sum := 0.0
+		for _, x := range sorted {
+			sum += x
+		}
+		mean := sum / float64(n)
+		squares := 0.0
+		for _, x := range sorted {
+			squares += (x - mean) * (x - mean)
+		}
+		return mean, math.Sqrt(squares / float64(n-1) / float64(n))
+	}
+	q := s.Percentile / 100
+	at := func(h float64) float64 {
+		h = math.Max(0, math.Min(h, float64(n-1)))
+		i := int(h)
+		if i+1 >= n {
+			return sorted[n-1]
+		}
+		return sorted[i] + (h-float64(i))*(sorted[i+1]-sorted[i])
+	}
+	h := q * float64(n-1)
+	d := math.Sqrt(float64(n) * q * (1 - q))
+	return at(h), (at(h+d) - at(h-d)) / 2
+}
+
+// NullRoots returns the leading min(p, n-1) roots of replicates tables of e's shape whose
+// channels are independent and normal, replicates×m row-major, each row descending. Every
+// replicate has its own random stream, so the numbers do not depend on the threads.
+func NullRoots(e *Evidence, replicates int) []float64 {
+	m := len(e.Values)
+	out := make([]float64, replicates*m)
+	threads := e.Threads
+	if threads <= 0 {
+		threads = runtime.GOMAXPROCS(0)
+	}
+	threads = min(threads, replicates)
+	var wg sync.WaitGroup
+	for t := range threads {
+		wg.Go(func() {
+			draw := newDrawer(e)
+			for r := t; r < replicates; r += threads {
+				draw.roots(out[r*m:(r+1)*m], uint64(r))
+			}
+		})
+	}
+	wg.Wait()
+	return out
+}

@@ -1,0 +1,115 @@
+package table
+
+import (
+	"bytes"
+	"math"
+	"strings"
+)
+
+// dialect is how text becomes cells, and cells numbers.
+type dialect struct {
+	separator byte
+	point     byte
+	comment   []byte // nil: no comments
+	missing   map[string]bool
+	codes     []float64 // missing codes that read as numbers
+}
+
+func newDialect(o *Options, separator byte) *dialect {
+	d := &dialect{separator: separator, point: '.', missing: map[string]bool{}}
+	if o.DecimalComma {
+		d.point = ','
+	}
+	if o.Comment != "" {
+		d.comment = []byte(o.Comment)
+	}
+	for _, m := range o.Missing {
+		m = strings.TrimSpace(m)
+		d.missing[m] = true
+		// A code is written in the run file with a point whatever the table does.
+		if v, ok := parseNumber([]byte(m), '.'); ok {
+			d.codes = append(d.codes, v)
+		} else if v, ok := parseNumber([]byte(m), d.point); ok {
+			d.codes = append(d.codes, v)
+		}
+	}
+	return d
+}
+
+func (d *dialect) startsComment(b []byte) bool {
+	return d.comment != nil && bytes.HasPrefix(b, d.comment)
+}
+
+// value reads a trimmed cell: NaN for a missing one; ok is false when it is neither.
+func (d *dialect) value(cell []byte) (v float64, ok bool) {
+	if d.missing[string(cell)] {
+		return math.NaN(), true
+	}
+	v, ok = parseNumber(cell, d.point)
+	if ok {
+		v = d.coded(v)
+	}
+	return v, ok
+}
+
+// coded returns NaN where v is a missing code.
+func (d *dialect) coded(v float64) float64 {
+	for _, c := range d.codes {
+		if v == c {
+			return math.NaN()
+		}
+	}
+	return v
+}
+
+// trim takes blanks off both ends.
+func trim(b []byte) []byte {
+	for len(b) > 0 && (b[0] == ' ' || b[0] == '\t') {
+		b = b[1:]
+	}
+	for len(b) > 0 && (b[len(b)-1] == ' ' || b[len(b)-1] == '\t' || b[len(b)-1] == '\r') {
+		b = b[:len(b)-1]
+	}
+	return b
+}
+
+// cell finds the cell that starts at b[i] and returns its trimmed text, unescaped into
+// extra where it was quoted, and the position of the separator or line end after it.
+// trailing is true when text follows a closing quote.
+func (d *dialect) cell(b []byte, i int, extra *[]byte) (text []byte, end int, quoted, trailing bool) {
+	j := i
+	for b[j] == ' ' || b[j] == '\t' && d.separator != '\t' {
+		j++
+	}
+	if b[j] != '"' {
+		end = i
+		for b[end] != d.separator && b[end] != '\n' {
+			end++
+		}
+		return trim(b[i:end]), end, false, false
+	}
+	from := len(*extra)
+	for j++; j < len(b); j++ {
+		if b[j] != '"' {
+			*extra = append(*extra, b[j])
+			continue
+		}
+		if j+1 < len(b) && b[j+1] == '"' {
+			*extra = append(*extra, '"')
+			j++
+			continue
+		}
+		break
+	}
+	if j >= len(b) { // an open quote runs to the end of the text
+		return (*extra)[from:], len(b) - 1, true, true
+	}
+	end = j + 1
+	for b[end] != d.separator && b[end] != '\n' {
+		if b[end] != ' ' && b[end] != '\t' && b[end] != '\r' {
+			trailing = true
+		}
+		end++
+	}
+	return (*extra)[from:], end, true, trailing
+}

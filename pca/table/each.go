@@ -1,0 +1,240 @@
+package table
+
+import (
+	"bytes"
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"runtime"
+	"sync"
+)
+
+// Each goes through the rows of all files; see Rows. One goroutine reads, threads parse
+// and work, the caller's merges.
+func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *Block) error, merge func(b *Block) error) error {
+	if threads <= 0 {
+		threads = runtime.GOMAXPROCS(0)
+	}
+	counted := t.starts != nil
+	var starts []int64
+	p := &parser{columns: t.columns, time: t.options.Time != "", group: t.options.Groups != ""}
+	row, blank := int64(0), int64(0)
+	line, file := 1, ""
+	err := inOrder(ctx, threads, t.pieceReader(), func(worker int, b *Block) error {
+		if counted {
+			b.Row = t.starts[b.Index]
+		}
+		if err := p.parse(b, b.layout); err != nil {
+			return err
+		}
+		return work(worker, b)
+	}, func(b *Block) error {
+		if b.file != file {
+			file, line = b.file, 1
+		}
+		b.line = line
+		b.Row = row
+		if b.err != nil {
+			return b.placed(b.err)
+		}
+		starts = append(starts, row)
+		row += int64(b.Count)
+		line += b.newBy
+		blank += int64(b.blank)
+		return b.placed(merge(b))
+	})
+	if err != nil {
+		return err
+	}
+	for i, f := range t.files {
+		if err := checkUnchanged(f, t.before[i]); err != nil {
+			return err
+		}
+	}
+	if row == 0 {
+		return &Error{Kind: BadContent, File: t.files[0], Problem: "has a header but no rows"}
+	}
+	if starts == nil {
+		starts = []int64{}
+	}
+	t.starts, t.blank = starts, blank
+	return nil
+}
+
+// placed gives an error about a row of this block its line in the file. Lines in the
+// first block of a file start after the head that was read beforehand.
+func (b *Block) placed(err error) error {
+	var e *Error
+	if errors.As(err, &e) && e.File == b.file && e.Line > 0 && !e.absolute {
+		e.Line += b.line - 1
+		e.absolute = true
+	}
+	return err
+}
+
+// pieceReader returns a function that fills blocks with text, one after another; it
+// returns io.EOF at the end.
+func (t *Table) pieceReader() func(b *Block) error {
+	next := 0 // file
+	var current *stream
+	var pieces *chunker
+	index := 0
+	closeCurrent := func() error {
+		if current == nil {
+			return nil
+		}
+		err := current.Close()
+		current = nil
+		return err
+	}
+	return func(b *Block) error {
+		for {
+			if b == nil { // told to stop
+				return closeCurrent()
+			}
+			if current == nil {
+				if next == len(t.files) {
+					return io.EOF
+				}
+				file := t.files[next]
+				next++
+				s, err := openText(t.open, file)
+				if err != nil {
+					return err
+				}
+				current = s
+				pieces = &chunker{r: s, file: file, dialect: t.layouts[next-1].dialect, size: t.heads[next-1] + t.pieces}
+			}
+			fresh := pieces.lines == 0
+			if !fresh {
+				pieces.size = t.pieces
+			}
+			text, err := pieces.next(b.text)
+			if err != nil {
+				return err
+			}
+			if text == nil {
+				if err := closeCurrent(); err != nil {
+					return readError(t.files[next-1], err)
+				}
+				continue
+			}
+			b.text, b.file, b.layout, b.names = text, t.files[next-1], t.layouts[next-1], t.columns
+			b.Index = index
+			index++
+			b.skipHead = 0
+			if fresh {
+				b.skipHead = t.headRows()
+			}
+			return nil
+		}
+	}
+}
+
+// headRows is how many rows stand before the data.
+func (t *Table) headRows() int {
+	n := 1
+	if t.options.NoHeader {
+		n = 0
+	}
+	if t.options.UnitsRow {
+		n++
+	}
+	return n
+}
+
+// inOrder runs a reader, parallel workers and an ordered merge. The first error in block
+// order wins, whatever finishes first.
+func inOrder(ctx context.Context, threads int, read func(*Block) error, work func(int, *Block) error, merge func(*Block) error) error {
+	ctx, cancel := context.WithCancel(ctx)
+	flight := 2*threads + 2
+	free := make(chan *Block, flight)
+	for range flight {
+		free <- &Block{}
+	}
+	jobs := make(chan *Block, flight)
+	done := make(chan *Block, flight)
+	var wg sync.WaitGroup
+	wg.Go(func() {
+		defer close(jobs)
+		defer read(nil)
+		for index := 0; ; index++ {
+			var b *Block
+			select {
+			case b = <-free:
+			case <-ctx.Done():
+				return
+			}
+			err := guard(func() error { return read(b) })
+			if err == io.EOF {
+				return
+			}
+			if err != nil {
+				b.Index, b.err, b.failed = index, err, true
+			}
+			jobs <- b // has room for all blocks there are
+			if err != nil {
+				return
+			}
+		}
+	})
+	for worker := range threads {
+		wg.Go(func() {
+			for b := range jobs {
+				if !b.failed && ctx.Err() == nil {
+					b.err = guard(func() error { return work(worker, b) })
+				}
+				done <- b
+			}
+		})
+	}
+	go func() { wg.Wait(); close(done) }()
+
+	var first error
+	waiting := map[int]*Block{}
+	next := 0
+	for b := range done {
+		waiting[b.Index] = b
+		for {
+			b, ok := waiting[next]
+			if !ok {
+				break
+			}
+			delete(waiting, next)
+			next++
+			if first == nil {
+				first = ctx.Err()
+			}
+			if first == nil {
+				if b.failed {
+					first = b.err
+				} else {
+					first = guard(func() error { return merge(b) })
+				}
+			}
+			if first != nil {
+				cancel()
+			}
+			b.Result, b.err, b.failed = nil, nil, false
+			free <- b
+		}
+	}
+	if first == nil {
+		first = ctx.Err()
+	}
+	cancel()
+	return first
+}
+
+// guard turns a panic into an error, so that no goroutine is left waiting.
+func guard(f func() error) (err error) {
+	defer func() {
+		if r := recover(); r != nil {
+			buf := make([]byte, 4096)
+			buf = buf[:runtime.Stack(buf, false)]
+			err = fmt.Errorf("panic: %v\n%s", r, bytes.TrimSpace(buf))
+		}
+	}()
+	return f()
+}

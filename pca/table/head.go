@@ -1,0 +1,269 @@
+package table
+
+import (
+	"bytes"
+	"fmt"
+	"io"
+	"path/filepath"
+	"strconv"
+	"strings"
+)
+
+// How much of a file is looked at to tell columns of numbers from columns of text.
+const (
+	sampleRows  = 1000
+	sampleBytes = 8 << 20
+)
+
+// head is what the beginning of a file tells.
+type head struct {
+	file    string
+	dialect *dialect
+	names   []string
+	unnamed []bool
+	units   []string
+	sample  []sampleColumn
+	bytes   int // of mark, header and units
+}
+
+// format is a family of text tables. Others that are not text (columnar files,
+// databases) will need a wider interface; text formats differ in their separator.
+type format struct {
+	name       string
+	extensions []string
+	separator  byte // 0: looked up in the header
+}
+
+// formats lists what can be read, the default first.
+var formats = []format{
+	{"csv", []string{".csv", ".txt", ".dat"}, 0},
+	{"tsv", []string{".tsv", ".tab"}, '\t'},
+}
+
+// Formats returns the names of the formats.
+func Formats() []string {
+	var names []string
+	for _, f := range formats {
+		names = append(names, f.name)
+	}
+	return names
+}
+
+// formatOf finds the format by name or by the file's extension under .gz and .zst.
+func formatOf(name, file string) (format, error) {
+	base := strings.ToLower(filepath.Base(file))
+	base = strings.TrimSuffix(strings.TrimSuffix(base, ".gz"), ".zst")
+	for _, f := range formats {
+		if f.name == name {
+			return f, nil
+		}
+		for _, e := range f.extensions {
+			if name == "" && filepath.Ext(base) == e {
+				return f, nil
+			}
+		}
+	}
+	if name == "" {
+		return formats[0], nil
+	}
+	return format{}, &Error{Kind: WrongInput, Problem: fmt.Sprintf("unknown format %q; known: %s", name, strings.Join(Formats(), ", "))}
+}
+
+// readHead looks at the beginning of a file.
+func readHead(o *Options, open opener, file string) (*head, error) {
+	f, err := formatOf(o.Format, file)
+	if err != nil {
+		return nil, err
+	}
+	s, err := openText(open, file)
+	if err != nil {
+		return nil, err
+	}
+	defer s.Close()
+	text := make([]byte, 0, 1<<16)
+	whole := false
+	for lines := 0; lines < sampleRows+3 && len(text) < sampleBytes; {
+		if cap(text)-len(text) < 1<<15 {
+			text = append(text, make([]byte, cap(text))...)[:len(text)]
+		}
+		n, err := s.Read(text[len(text):cap(text)])
+		lines += bytes.Count(text[len(text):len(text)+n], []byte{'\n'})
+		text = text[:len(text)+n]
+		if err == io.EOF {
+			text = append(text, '\n')
+			whole = true
+			break
+		}
+		if err != nil {
+			return nil, readError(file, err)
+		}
+	}
+	mark := len(text)
+	text = bytes.TrimPrefix(text, []byte("\xef\xbb\xbf"))
+	mark -= len(text)
+	if i := bytes.IndexByte(text, 0); i >= 0 {
+		return nil, &Error{Kind: BadContent, File: file, Line: 1 + bytes.Count(text[:i], []byte{'\n'}),
+			Problem: "holds a NUL byte, so it is not text", Hint: "was it cut off, or is it in another format?"}
+	}
+	h := &head{file: file, dialect: newDialect(o, separatorOf(o, f, text))}
+	text = text[:bytes.LastIndexByte(text, '\n')+1]
+	if len(text) == 0 {
+		return nil, &Error{Kind: BadContent, File: file, Line: 1, Problem: "goes on for 8 MiB without a line end", Hint: "this is not a table"}
+	}
+	err = h.read(o, text, whole)
+	h.bytes += mark
+	return h, err
+}
+
+// separatorOf is the separator asked for, that of the format, or the candidate that the
+// first line holds most often outside quotes.
+func separatorOf(o *Options, f format, text []byte) byte {
+	if o.Separator != "" {
+		return o.Separator[0]
+	}
+	if f.separator != 0 {
+		return f.separator
+	}
+	best, most := byte(','), 0
+	for _, candidate := range []byte(",;\t|") {
+		if candidate == ',' && o.DecimalComma {
+			continue
+		}
+		count, quoted := 0, false
+		for _, c := range firstLine(o, text) {
+			switch {
+			case c == '"':
+				quoted = !quoted
+			case c == candidate && !quoted:
+				count++
+			}
+		}
+		if count > most {
+			best, most = candidate, count
+		}
+	}
+	return best
+}
+
+// firstLine is the first line that is neither blank nor a comment.
+func firstLine(o *Options, text []byte) []byte {
+	for line := range bytes.Lines(text) {
+		if len(bytes.TrimSpace(line)) == 0 || o.Comment != "" && bytes.HasPrefix(line, []byte(o.Comment)) {
+			continue
+		}
+		return line
+	}
+	return nil
+}
+
+// read takes names, units and the sample from the text, which ends with a line end; whole
+// tells whether it is all of the file.
+func (h *head) read(o *Options, text []byte, whole bool) error {
+	rows := &rowReader{d: h.dialect, text: text}
+	first, line, ok := rows.next()
+	if !ok {
+		return &Error{Kind: BadContent, File: h.file, Problem: "is empty"}
+	}
+	h.unnamed = make([]bool, len(first))
+	h.units = make([]string, len(first))
+	if o.NoHeader {
+		rows = &rowReader{d: h.dialect, text: text}
+		for j := range first {
+			h.names = append(h.names, "column_"+strconv.Itoa(j+1))
+		}
+	} else if err := h.header(first, line); err != nil {
+		return err
+	}
+	if o.UnitsRow {
+		units, line, ok := rows.next()
+		if ok && len(units) != len(h.names) {
+			return &Error{Kind: BadContent, File: h.file, Line: line, Problem: fmt.Sprintf("%d units, expected %d", len(units), len(h.names))}
+		}
+		copy(h.units, units)
+	}
+	h.bytes = rows.at
+	h.sample = make([]sampleColumn, len(h.names))
+	count := 0
+	for ; count < sampleRows; count++ {
+		cells, line, ok := rows.next()
+		if !ok {
+			break
+		}
+		if len(cells) != len(h.names) {
+			if strings.TrimSpace(strings.Join(cells, "")) == "" {
+				continue
+			}
+			if !whole && rows.at >= len(text) {
+				break // the sample ends within a quoted cell
+			}
+			return &Error{Kind: BadContent, File: h.file, Line: line, Problem: fmt.Sprintf("%d cells, expected %d", len(cells), len(h.names)),
+				Hint: "a cell may hold the separator without quotes, or the row is cut off"}
+		}
+		for j, c := range cells {
+			h.sample[j].add([]byte(c), h.dialect)
+		}
+	}
+	if count == 0 {
+		return &Error{Kind: BadContent, File: h.file, Problem: "has a header but no rows"}
+	}
+	return nil
+}
+
+// header checks the names.
+func (h *head) header(cells []string, line int) error {
+	seen := map[string]int{}
+	numbers := 0
+	for j, name := range cells {
+		if name == "" {
+			h.unnamed[j] = true
+			name = "column_" + strconv.Itoa(j+1)
+		}
+		if _, finite := looseNumber([]byte(name)); finite {
+			numbers++
+		}
+		if before, ok := seen[name]; ok {
+			return &Error{Kind: BadContent, File: h.file, Line: line, Column: j + 1, Name: name,
+				Problem: fmt.Sprintf("has the same name as column %d", before), Hint: "give every column a name of its own"}
+		}
+		seen[name] = j + 1
+		h.names = append(h.names, name)
+	}
+	if numbers == len(cells) {
+		return &Error{Kind: BadContent, File: h.file, Line: line, Problem: "the header holds only numbers", Hint: "set read.header: false if the table has no header"}
+	}
+	return nil
+}
+
+// rowReader splits rows into cells the plain way, for heads.
+type rowReader struct {
+	d    *dialect
+	text []byte
+	at   int
+	line int
+}
+
+func (r *rowReader) next() (cells []string, line int, ok bool) {
+	for r.at < len(r.text) {
+		rest := r.text[r.at:]
+		end := bytes.IndexByte(rest, '\n')
+		r.line++
+		if r.d.startsComment(rest) || len(bytes.TrimSpace(rest[:end])) == 0 {
+			r.at += end + 1
+			continue
+		}
+		line = r.line
+		for {
+			var extra []byte
+			text, end, quoted, _ := r.d.cell(r.text, r.at, &extra)
+			cells = append(cells, string(text))
+			if quoted {
+				r.line += bytes.Count(r.text[r.at:end], []byte{'\n'})
+			}
+			r.at = end + 1
+			if r.text[end] == '\n' {
+				return cells, line, true
+			}
+		}
+	}
+	return nil, 0, false
+}

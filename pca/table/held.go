@@ -1,0 +1,119 @@
+package table
+
+import (
+	"context"
+	"io"
+	"runtime"
+)
+
+// heldRows is the number of rows in a block of a held table.
+const heldRows = 1024
+
+// Held is a table kept in memory.
+type Held struct {
+	columns []Column
+	data    []float64
+	row     []int64
+	times   texts
+	groups  texts
+}
+
+// texts keeps many short texts in one piece of memory.
+type texts struct {
+	all  []byte
+	ends []int
+}
+
+func (t *texts) add(s []byte) {
+	t.all = append(t.all, s...)
+	t.ends = append(t.ends, len(t.all))
+}
+
+func (t *texts) at(i int) []byte {
+	from := 0
+	if i > 0 {
+		from = t.ends[i-1]
+	}
+	return t.all[from:t.ends[i]]
+}
+
+// NewHeld makes an empty held table of the given columns.
+func NewHeld(columns []Column) *Held { return &Held{columns: columns} }
+
+// Append copies the rows of a block, whose width must be that of the columns.
+func (h *Held) Append(b *Block) {
+	if b.Width != len(h.columns) {
+		panic("table: block and held table differ in width")
+	}
+	h.data = append(h.data, b.Data...)
+	for i := range b.Rows {
+		h.row = append(h.row, b.Row+int64(b.Offset[i]))
+		if b.times != nil {
+			h.times.add(b.Time(i))
+		}
+		if b.groups != nil {
+			h.groups.add(b.Group(i))
+		}
+	}
+}
+
+// Len is the number of rows.
+func (h *Held) Len() int { return len(h.row) }
+
+// Matrix is the data, Len×columns row-major; it must not be changed.
+func (h *Held) Matrix() []float64 { return h.data }
+
+// Group is the text of row i in the group column.
+func (h *Held) Group(i int) []byte { return h.groups.at(i) }
+
+// Columns are the columns given to NewHeld.
+func (h *Held) Columns() []Column { return h.columns }
+
+// Each goes through the rows in blocks of heldRows; see Rows.
+func (h *Held) Each(ctx context.Context, threads int, work func(worker int, b *Block) error, merge func(b *Block) error) error {
+	if threads <= 0 {
+		threads = runtime.GOMAXPROCS(0)
+	}
+	next := 0
+	return inOrder(ctx, threads, func(b *Block) error {
+		if b == nil {
+			return nil
+		}
+		from := next * heldRows
+		if from >= h.Len() {
+			return io.EOF
+		}
+		h.fill(b, from, min(from+heldRows, h.Len()))
+		b.Index = next
+		next++
+		return nil
+	}, work, func(b *Block) error {
+		if b.err != nil {
+			return b.err
+		}
+		return merge(b)
+	})
+}
+
+// fill makes b the rows from..to. Blocks get a copy: work may change them.
+func (h *Held) fill(b *Block, from, to int) {
+	w := len(h.columns)
+	b.Width, b.Rows, b.Count, b.names = w, to-from, to-from, h.columns
+	b.Data = append(b.Data[:0], h.data[from*w:to*w]...)
+	b.Row = h.row[from]
+	b.Offset, b.text, b.times, b.groups = b.Offset[:0], b.text[:0], b.times[:0], b.groups[:0]
+	keep := func(t *texts, i int) span {
+		start := int32(len(b.text))
+		b.text = append(b.text, t.at(i)...)
+		return span{from: start, to: int32(len(b.text))}
+	}
+	for i := from; i < to; i++ {
+		b.Offset = append(b.Offset, int32(h.row[i]-b.Row))
+		if len(h.times.ends) > 0 {
+			b.times = append(b.times, keep(&h.times, i))
+		}
+		if len(h.groups.ends) > 0 {
+			b.groups = append(b.groups, keep(&h.groups, i))
+		}
+	}
+}

@@ -1,0 +1,201 @@
+package table
+
+import (
+	"context"
+	"fmt"
+	"path"
+	"path/filepath"
+	"slices"
+	"strings"
+)
+
+// Options say which files to read and how.
+type Options struct {
+	Dir   string   // relative paths and globs in Files are relative to it
+	Files []string // paths or globs; several files are one table
+	// Format is the name of a format; empty takes it from the file name.
+	Format       string
+	Separator    string // one byte; empty looks at the header
+	DecimalComma bool
+	Comment      string   // lines that start with it are passed over; empty: none
+	Missing      []string // cells that mean missing; those that are numbers go by value
+	NoHeader     bool     // columns are then named column_1, ...
+	UnitsRow     bool     // the row after the header holds units
+	Time, Groups string   // columns carried through as text; empty: none
+	LeaveOut     []string // names and glob patterns
+}
+
+// Table is an opened table.
+type Table struct {
+	options Options
+	files   []string
+	before  []fingerprint
+	heads   []int // bytes before the rows of each file
+	layouts []*layout
+	columns []Column
+	notes   []Note
+	blank   int64
+	starts  []int64 // first data row of every block, once counted
+	open    opener
+	pieces  int // size of a piece of text
+}
+
+// Open finds the files, reads the head of each and decides what every column is.
+func Open(_ context.Context, o Options) (*Table, error) { return openWith(o, openFile, chunkBytes) }
+
+func openWith(o Options, open opener, pieces int) (*Table, error) {
+	files, err := expand(o.Dir, o.Files)
+	if err != nil {
+		return nil, err
+	}
+	t := &Table{options: o, files: files, open: open, pieces: pieces}
+	for i, file := range files {
+		print, err := fingerprintOf(file)
+		if err != nil {
+			return nil, err
+		}
+		t.before = append(t.before, print)
+		h, err := readHead(&o, open, file)
+		if err != nil {
+			return nil, err
+		}
+		t.heads = append(t.heads, h.bytes)
+		if i == 0 {
+			err = t.assign(h)
+		} else {
+			err = t.align(h)
+		}
+		if err != nil {
+			return nil, err
+		}
+	}
+	return t, nil
+}
+
+// Files are the paths of the files read, in order.
+func (t *Table) Files() []string { return t.files }
+
+// Columns are the numeric channels.
+func (t *Table) Columns() []Column { return t.columns }
+
+// Notes say what was left out and passed over; complete once the rows were gone through.
+func (t *Table) Notes() []Note {
+	if t.blank == 0 {
+		return t.notes
+	}
+	return append(slices.Clone(t.notes), Note{Text: fmt.Sprintf("%d empty rows were passed over", t.blank)})
+}
+
+// assign decides what the columns of the first file are.
+func (t *Table) assign(h *head) error {
+	o := &t.options
+	for _, special := range []string{o.Time, o.Groups} {
+		if special != "" && !slices.Contains(h.names, special) {
+			return &Error{Kind: WrongInput, File: h.file, Problem: fmt.Sprintf("has no column %q", special), Hint: nearest(special, h.names)}
+		}
+	}
+	out := make([]bool, len(h.names))
+	for _, pattern := range o.LeaveOut {
+		hit := false
+		for j, n := range h.names {
+			matched, err := path.Match(pattern, n)
+			if n == pattern || err == nil && matched {
+				out[j], hit = true, true
+			}
+		}
+		if !hit {
+			return &Error{Kind: WrongInput, File: h.file, Problem: fmt.Sprintf("read.leave_out: no column matches %q", pattern), Hint: nearest(pattern, h.names)}
+		}
+	}
+	l := &layout{dialect: h.dialect, uses: make([]use, len(h.names)), to: make([]int, len(h.names)), names: h.names}
+	for j, n := range h.names {
+		s := &h.sample[j]
+		switch {
+		case n == o.Time && n != "":
+			l.uses[j] = timeText
+		case n == o.Groups && n != "":
+			l.uses[j] = groupText
+		case out[j]:
+			t.notes = append(t.notes, Note{n, "left out: asked for"})
+		case h.unnamed[j] && s.filled == 0:
+			t.notes = append(t.notes, Note{n, "left out: no name and no values"})
+		case s.isText():
+			t.notes = append(t.notes, Note{n, s.note()})
+		default:
+			if h.unnamed[j] {
+				t.notes = append(t.notes, Note{n, "has no name in the header"})
+			}
+			l.uses[j], l.to[j] = number, len(t.columns)
+			t.columns = append(t.columns, Column{Name: n, Unit: h.units[j], Position: j + 1})
+		}
+	}
+	if len(t.columns) == 0 {
+		e := &Error{Kind: BadContent, File: h.file, Problem: "holds no column of numbers"}
+		if len(h.names) == 1 {
+			e.Hint = fmt.Sprintf("its one column is %q: is read.separator right?", h.names[0])
+		}
+		return e
+	}
+	t.layouts = append(t.layouts, l)
+	return nil
+}
+
+// align finds the columns of the first file in another.
+func (t *Table) align(h *head) error {
+	first := t.layouts[0]
+	l := &layout{dialect: h.dialect, uses: make([]use, len(h.names)), to: make([]int, len(h.names)), names: h.names}
+	for j, n := range h.names {
+		at := slices.Index(first.names, n)
+		if at < 0 {
+			return &Error{Kind: BadContent, File: h.file, Column: j + 1, Name: n,
+				Problem: fmt.Sprintf("is not a column of %s", filepath.Base(t.files[0])), Hint: "files of one table have the same columns"}
+		}
+		l.uses[j], l.to[j] = first.uses[at], first.to[at]
+	}
+	for _, n := range first.names {
+		if !slices.Contains(h.names, n) {
+			return &Error{Kind: BadContent, File: h.file, Problem: fmt.Sprintf("has no column %q, which %s has", n, filepath.Base(t.files[0])),
+				Hint: "files of one table have the same columns"}
+		}
+	}
+	t.layouts = append(t.layouts, l)
+	return nil
+}
+
+// nearest words the name most like the one asked for.
+func nearest(name string, names []string) string {
+	best, distance := "", len(name)/2+1
+	for _, n := range names {
+		if d := editDistance(strings.ToLower(name), strings.ToLower(n)); d < distance {
+			best, distance = n, d
+		}
+	}
+	if best != "" {
+		return fmt.Sprintf("the nearest column is %q", best)
+	}
+	if len(names) > 12 {
+		return fmt.Sprintf("the columns are %s, ... (%d in all)", strings.Join(names[:12], ", "), len(names))
+	}
+	return "the columns are " + strings.Join(names, ", ")
+}
+
+// editDistance is Levenshtein's.
+func editDistance(a, b string) int {
+	row := make([]int, len(b)+1)
+	for j := range row {
+		row[j] = j
+	}
+	for i := range len(a) {
+		diagonal := row[0]
+		row[0] = i + 1
+		for j := range len(b) {
+			cost := diagonal
+			if a[i] != b[j] {
+				cost++
+			}
+			diagonal = row[j+1]
+			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
+		}
+	}
+	return row[len(b)]
+}

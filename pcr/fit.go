@@ -1,0 +1,196 @@
+package pcr
+
+import (
+	"fmt"
+	"math"
+	"sort"
+
+	"axisfold/pca"
+)
+
+// Order is the order in which components enter.
+type Order string
+
+// The orders. ByCorrelation looks at the response, so it is made anew in every fold.
+const (
+	ByVariance    Order = "variance"
+	ByCorrelation Order = "correlation"
+)
+
+// Choice is how the number of components is chosen.
+type Choice string
+
+// The choices. OneStandardError takes the fewest components whose cross-validated mean
+// squared error is within one standard error of the smallest (Breiman et al. 1984).
+const (
+	Given            Choice = "given"
+	Minimum          Choice = "cross-validation"
+	OneStandardError Choice = "one-standard-error"
+)
+
+// Options say how to fit.
+type Options struct {
+	Predictors pca.Options // names and scaling of the predictors, the matrix to decompose
+	Responses  []string
+	// ThroughOrigin drops the intercept; the summaries are then taken about zero.
+	ThroughOrigin bool
+	Order         Order
+	Choice        Choice
+	Components    int // for Given
+	// Most bounds the components considered; 0 means as many as the data carry.
+	Most       int
+	Confidence float64 // of the intervals, in (0,1)
+	Threads    int
+}
+
+// Result is a fit of one or several responses on the same components.
+type Result struct {
+	Decomposition *pca.Decomposition
+	Models        []*Model
+}
+
+// Model is the regression of one response.
+type Model struct {
+	Response string
+	Rows     int
+	// Entering lists components (from 0) in the order of entry; the model uses the
+	// first Components of it.
+	Entering   []int
+	Components int
+	// Free is the degrees of freedom of the residual: n - k - 1, or n - k through the origin.
+	Free int
+	// Residual is the residual standard deviation, divisor Free; NaN without freedom.
+	Residual  float64
+	R2        float64
+	Total     float64 // Σ(y-ȳ)², or Σy² through the origin
+	Intercept Term
+	Terms     []Term
+	// Correlations are r(y, t_a) by component, from 0, in no particular order of entry.
+	Correlations []float64
+	// Path holds one step per number of components, from 0.
+	Path     []Step
+	Folds    int
+	Warnings []pca.Warning
+}
+
+// Term is one coefficient in original units: units of y per unit of the channel.
+type Term struct {
+	Name        string
+	Coefficient float64
+	// Error is the conditional standard error (see the package comment).
+	Error        float64
+	Lower, Upper float64
+	// Standardized is the coefficient times the channel's over the response's standard deviation.
+	Standardized float64
+	// Ordinary is the least-squares coefficient and OrdinaryError its standard error; NaN
+	// when the predictors are linearly dependent or too many.
+	Ordinary, OrdinaryError float64
+	// VIF is the variance inflation factor [R⁻¹]_jj; +Inf when the channel is an exact
+	// combination of others. NaN for the intercept.
+	VIF float64
+}
+
+// Step is the fit and its cross-validated error with the first k components.
+type Step struct {
+	Components int
+	Squares    float64 // Σ residual²
+	RootMean   float64 // √(Σ residual²/n)
+	R2         float64
+	// CV is the root mean squared error over held-out rows, divisor n; CVError its standard
+	// error: that of the mean squared error over folds, carried to the root. NaN where the
+	// folds cannot carry k components.
+	CV, CVError float64
+	CVR2        float64 // 1 - Σ held-out error²/Total
+	Chosen      bool
+}
+
+// Fit regresses the responses y on components of the predictors x: positions in the joint
+// summary. folds, if any, are summaries of disjoint parts of the same rows; together they
+// are all rows. Scaling, decomposition and order are made anew without each fold.
+func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Result, error) {
+	if o.ThroughOrigin {
+		joint = joint.AboutOrigin()
+		about := make([]*pca.Summary, len(folds))
+		for i, f := range folds {
+			about[i] = f.AboutOrigin()
+		}
+		folds = about
+	}
+	for i, j := range y {
+		if joint.Constant(j) && !o.ThroughOrigin {
+			return nil, &pca.DataError{Channel: o.Responses[i],
+				Problem: fmt.Sprintf("is the response and holds one value, %.6g, in all rows", joint.Min(j))}
+		}
+	}
+	d, projections, err := pca.DecomposeJoint(joint, x, y, o.Predictors)
+	if err != nil {
+		return nil, err
+	}
+	most := d.Rank
+	if o.Most > 0 {
+		most = min(most, o.Most)
+	}
+	if o.Choice == Given && o.Components > d.Rank {
+		return nil, &pca.DataError{Problem: fmt.Sprintf("%d components asked for, but the predictors span %d", o.Components, d.Rank),
+			Hint: "ask for fewer components"}
+	}
+	var cv *validation
+	if len(folds) > 0 {
+		if cv, err = crossValidate(folds, x, y, most, o); err != nil {
+			return nil, err
+		}
+	}
+	r := &Result{Decomposition: d}
+	for i := range y {
+		m := newModel(joint, d, projections[i], y[i], x, o.Responses[i], o)
+		m.path(projections[i], most)
+		if cv != nil {
+			m.addValidation(cv, i)
+		}
+		if err := m.choose(o); err != nil {
+			return nil, err
+		}
+		m.mapBack(joint, d, projections[i], x, y[i], o)
+		r.Models = append(r.Models, m)
+	}
+	return r, nil
+}
+
+func newModel(joint *pca.Summary, d *pca.Decomposition, pr pca.Projection, y int, x []int, name string, o Options) *Model {
+	m := &Model{Response: name, Rows: joint.Count(), Total: pr.Total, Entering: entering(pr.Along[:d.Rank], o.Order)}
+	m.Correlations = make([]float64, len(pr.Along))
+	for a, v := range pr.Along {
+		m.Correlations[a] = v / math.Sqrt(pr.Total)
+	}
+	return m
+}
+
+// entering returns the components in the order of entry: as they stand, or by falling
+// |u_a'y|, which is falling correlation with the response; the lower component first on ties.
+func entering(along []float64, order Order) []int {
+	out := pca.FirstComponents(len(along))
+	if order == ByCorrelation {
+		sort.SliceStable(out, func(i, j int) bool { return math.Abs(along[out[i]]) > math.Abs(along[out[j]]) })
+	}
+	return out
+}
+
+// path fills the steps: squares left after k components are what lies outside all of them
+// plus what the components not yet entered would take, summed from the small end.
+func (m *Model) path(pr pca.Projection, most int) {
+	left := make([]float64, len(m.Entering)+1)
+	left[len(m.Entering)] = pr.Outside
+	for k := len(m.Entering) - 1; k >= 0; k-- {
+		v := pr.Along[m.Entering[k]]
+		left[k] = left[k+1] + v*v
+	}
+	for k := range most + 1 {
+		m.Path = append(m.Path, Step{Components: k, Squares: left[k],
+			RootMean: math.Sqrt(left[k] / float64(m.Rows)), R2: 1 - left[k]/pr.Total,
+			CV: math.NaN(), CVError: math.NaN(), CVR2: math.NaN()})
+	}
+}
+
+func (m *Model) warn(code, format string, args ...any) {
+	m.Warnings = append(m.Warnings, pca.Warning{Code: code, Text: fmt.Sprintf(format, args...)})
+}
