@@ -12,6 +12,7 @@ const heldRows = 1024
 // Held is a table kept in memory.
 type Held struct {
 	columns []Column
+	pieces  [][]float64 // as appended, until they are joined
 	data    []float64
 	row     []int64
 	times   texts
@@ -45,7 +46,8 @@ func (h *Held) Append(b *Block) {
 	if b.Width != len(h.columns) {
 		panic("table: block and held table differ in width")
 	}
-	h.data = append(h.data, b.Data...)
+	// Kept piece by piece: growing one slice would copy a large table several times.
+	h.pieces = append(h.pieces, append([]float64(nil), b.Data...))
 	for i := range b.Rows {
 		h.row = append(h.row, b.Row+int64(b.Offset[i]))
 		if b.times != nil {
@@ -61,7 +63,23 @@ func (h *Held) Append(b *Block) {
 func (h *Held) Len() int { return len(h.row) }
 
 // Matrix is the data, Len×columns row-major; it must not be changed.
-func (h *Held) Matrix() []float64 { return h.data }
+func (h *Held) Matrix() []float64 {
+	h.join()
+	return h.data
+}
+
+func (h *Held) join() {
+	if len(h.pieces) == 0 {
+		return
+	}
+	joined := make([]float64, 0, h.Len()*len(h.columns))
+	joined = append(joined, h.data...)
+	for i, piece := range h.pieces {
+		joined = append(joined, piece...)
+		h.pieces[i] = nil
+	}
+	h.data, h.pieces = joined, nil
+}
 
 // Group is the text of row i in the group column.
 func (h *Held) Group(i int) []byte { return h.groups.at(i) }
@@ -74,6 +92,7 @@ func (h *Held) Each(ctx context.Context, threads int, work func(worker int, b *B
 	if threads <= 0 {
 		threads = runtime.GOMAXPROCS(0)
 	}
+	h.join()
 	next := 0
 	return inOrder(ctx, threads, func(b *Block) error {
 		if b == nil {

@@ -162,6 +162,12 @@ func (t *Table) align(h *head) error {
 	return nil
 }
 
+// UnknownColumn is the error for a column that a setting names and the table lacks among
+// its columns of numbers.
+func UnknownColumn(setting, name string, names []string) error {
+	return &Error{Kind: WrongInput, Problem: fmt.Sprintf("%s: no column of numbers matches %q", setting, name), Hint: nearest(name, names)}
+}
+
 // nearest words the name most like the one asked for.
 func nearest(name string, names []string) string {
 	best, distance := "", len(name)/2+1

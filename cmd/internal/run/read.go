@@ -11,10 +11,10 @@ import (
 	"axisfold/pca/table"
 )
 
-// heldCells bounds the size of a table that is kept in memory: 8 Mi numbers, 64 MiB. A
+// heldCells bounds the size of a table that is kept in memory: 4 Mi numbers, 32 MiB. A
 // table with more channels than rows is kept up to p² numbers, which is less than its
 // cross-products would take.
-const heldCells = 8 << 20
+const heldCells = 4 << 20
 
 // exactRanks is up to how many rows of a table too large to hold medians are exact.
 const exactRanks = 4096

@@ -40,7 +40,7 @@ func assignRoles(cfg *configs.File, columns []table.Column) (*roles, error) {
 		for _, name := range g.Response {
 			j := slices.Index(names, name)
 			if j < 0 {
-				return nil, unknownColumn("regress.response", name, names)
+				return nil, table.UnknownColumn("regress.response", name, names)
 			}
 			responses = append(responses, j)
 			isResponse[j] = true
@@ -48,7 +48,7 @@ func assignRoles(cfg *configs.File, columns []table.Column) (*roles, error) {
 		for _, pattern := range g.Predictors {
 			matched, hitsResponse := matching(pattern, names), false
 			if len(matched) == 0 {
-				return nil, unknownColumn("regress.predictors", pattern, names)
+				return nil, table.UnknownColumn("regress.predictors", pattern, names)
 			}
 			for _, j := range matched {
 				hitsResponse = hitsResponse || isResponse[j]
@@ -103,7 +103,7 @@ func channelSettings(cfg *configs.File, names []string) ([]configs.Channel, erro
 	for _, c := range cfg.Standardize.Channels {
 		matched := matching(c.Name, names)
 		if len(matched) == 0 {
-			return nil, unknownColumn("standardize.channels", c.Name, names)
+			return nil, table.UnknownColumn("standardize.channels", c.Name, names)
 		}
 		for _, j := range matched {
 			if c.Scaling != "" {

@@ -5,6 +5,7 @@ import (
 	"io"
 	"runtime"
 	"slices"
+	"sync"
 
 	"axisfold/cmd/internal/report"
 	"axisfold/pca"
@@ -59,21 +60,25 @@ func (w *work) rows(ctx context.Context) error {
 		threads = runtime.GOMAXPROCS(0)
 	}
 	makers := make([]*lineMaker, threads)
+	spare := sync.Pool{New: func() any { return new(blockLines) }}
 	done := int64(0)
 	err = w.reading.source.each(ctx, threads, func(worker int, b *table.Block) error {
 		if makers[worker] == nil {
 			makers[worker] = w.newLineMaker(layout, k)
 		}
-		b.Result = makers[worker].lines(b, scores != nil, predictions != nil)
+		lines := spare.Get().(*blockLines)
+		makers[worker].fill(lines, b, scores != nil, predictions != nil)
+		b.Result = lines
 		return nil
 	}, func(b *table.Block) error {
 		lines := b.Result.(*blockLines)
+		defer spare.Put(lines)
 		w.sample.take(b, lines, done, layout.Group)
 		done += int64(b.Rows)
-		if err := writeLines(scores, lines.scoreText); err != nil {
+		if err := writeLines(scores, lines.scoreText.Bytes()); err != nil {
 			return err
 		}
-		return writeLines(predictions, lines.predictionText)
+		return writeLines(predictions, lines.predictionText.Bytes())
 	})
 	if err != nil {
 		return err
@@ -98,12 +103,13 @@ func writeLines(o *output, text []byte) error {
 	return nil
 }
 
-// blockLines is what the rows of one block become.
+// blockLines is what the rows of one block become. It is used again for later blocks:
+// a large table would otherwise keep the collector of garbage busy.
 type blockLines struct {
 	scores                    []float64   // rows × k
 	predicted                 [][]float64 // by model
 	observed                  [][]float64
-	scoreText, predictionText []byte
+	scoreText, predictionText report.RowWriter
 }
 
 // lineMaker scores and predicts the rows of blocks and writes their lines. One per worker.
@@ -116,7 +122,6 @@ type lineMaker struct {
 	x          []float64
 	t2, spe    []float64
 	half       [][]float64
-	writer     report.RowWriter
 }
 
 func (w *work) newLineMaker(layout report.RowLayout, k int) *lineMaker {
@@ -130,44 +135,44 @@ func (w *work) newLineMaker(layout report.RowLayout, k int) *lineMaker {
 	return m
 }
 
-func (m *lineMaker) lines(b *table.Block, wantScores, wantPredictions bool) *blockLines {
+// sized returns a slice of n numbers, the old one where it is long enough.
+func sized(old []float64, n int) []float64 { return slices.Grow(old[:0], n)[:n] }
+
+func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredictions bool) {
 	n, p := b.Rows, len(m.w.active)
-	m.x = slices.Grow(m.x[:0], n*p)[:n*p]
-	m.t2, m.spe = slices.Grow(m.t2[:0], n)[:n], slices.Grow(m.spe[:0], n)[:n]
+	m.x, m.t2, m.spe = sized(m.x, n*p), sized(m.t2, n), sized(m.spe, n)
 	for r := range n {
 		row := b.Data[r*b.Width : r*b.Width+b.Width]
 		for j, i := range m.w.active {
 			m.x[r*p+j] = row[i]
 		}
 	}
-	out := &blockLines{scores: make([]float64, n*m.k)}
+	out.scores = sized(out.scores, n*m.k)
 	m.scorer.Scores(out.scores, m.t2, m.spe, m.x, n)
+	out.scoreText.Reset()
 	if wantScores {
-		m.writer.Reset()
 		for r := range n {
-			m.writer.Scores(m.layout, m.key(b, r), out.scores[r*m.k:(r+1)*m.k], m.t2[r], m.spe[r])
+			out.scoreText.Scores(m.layout, m.key(b, r), out.scores[r*m.k:(r+1)*m.k], m.t2[r], m.spe[r])
 		}
-		out.scoreText = slices.Clone(m.writer.Bytes())
+	}
+	if out.predicted == nil {
+		out.predicted, out.observed = make([][]float64, len(m.predictors)), make([][]float64, len(m.predictors))
 	}
 	for i, predictor := range m.predictors {
-		predicted, observed := make([]float64, n), make([]float64, n)
-		m.half[i] = slices.Grow(m.half[i][:0], n)[:n]
-		predictor.Predict(predicted, m.half[i], m.x, n)
+		out.predicted[i], out.observed[i], m.half[i] = sized(out.predicted[i], n), sized(out.observed[i], n), sized(m.half[i], n)
+		predictor.Predict(out.predicted[i], m.half[i], m.x, n)
 		for r := range n {
-			observed[r] = b.Data[r*b.Width+m.w.roles.channels+i]
+			out.observed[i][r] = b.Data[r*b.Width+m.w.roles.channels+i]
 		}
-		out.predicted, out.observed = append(out.predicted, predicted), append(out.observed, observed)
 	}
+	out.predictionText.Reset()
 	if wantPredictions {
-		m.writer.Reset()
 		for r := range n {
 			for i, response := range m.w.study.Regression.Result.Models {
-				m.writer.Prediction(m.layout, m.key(b, r), response.Response, out.observed[i][r], out.predicted[i][r], m.half[i][r])
+				out.predictionText.Prediction(m.layout, m.key(b, r), response.Response, out.observed[i][r], out.predicted[i][r], m.half[i][r])
 			}
 		}
-		out.predictionText = slices.Clone(m.writer.Bytes())
 	}
-	return out
 }
 
 func (m *lineMaker) key(b *table.Block, r int) report.RowKey {

@@ -1,0 +1,21 @@
+package run
+
+import (
+	"axisfold/configs"
+	"axisfold/pca/retain"
+	"axisfold/pca/table"
+)
+
+// readOptions translates the read section.
+func readOptions(cfg *configs.File, threads int) table.Options {
+	r := cfg.Read
+	return table.Options{Dir: cfg.Dir(), Files: r.Files, Format: r.Format, Separator: r.Separator,
+		DecimalComma: r.Decimal == "comma", Comment: r.Comment, Missing: r.Missing, NoHeader: !r.Header,
+		UnitsRow: r.UnitsRow, Time: r.Time, Groups: r.Groups, LeaveOut: r.LeaveOut}
+}
+
+// settingsOf translates the parameters of a rule.
+func settingsOf(r configs.Rule) retain.Settings {
+	return retain.Settings{Components: r.Components, AtLeast: r.AtLeast, Value: r.Value,
+		Reference: r.Reference, Percentile: r.Percentile, Replicates: r.Replicates}
+}
