@@ -6,9 +6,11 @@ package cli
 
 import (
 	"context"
+	"fmt"
 	"io"
 	"os/signal"
 	"runtime/debug"
+	"strings"
 	"syscall"
 
 	"github.com/spf13/cobra"
@@ -52,7 +54,7 @@ and a manifest from which the run can be repeated.
 		SilenceErrors: true,
 		SilenceUsage:  true,
 		Version:       version(),
-		Args:          cobra.NoArgs,
+		Args:          knownCommand,
 		RunE:          func(c *cobra.Command, _ []string) error { return c.Help() },
 	}
 	root.SetVersionTemplate("axisfold {{.Version}}\n")
@@ -69,4 +71,18 @@ func version() string {
 		return "development"
 	}
 	return info.Main.Version
+}
+
+// knownCommand refuses words that are no command.
+func knownCommand(c *cobra.Command, args []string) error {
+	if len(args) == 0 {
+		return nil
+	}
+	var names []string
+	for _, sub := range c.Commands() {
+		if sub.IsAvailableCommand() {
+			names = append(names, sub.Name())
+		}
+	}
+	return usageError{c.CommandPath(), fmt.Sprintf("unknown command %q; known: %s", args[0], strings.Join(names, ", "))}
 }

@@ -14,7 +14,7 @@ type Manifest struct {
 	Go       string     `json:"go"`
 	Platform string     `json:"platform"`
 	RunFile  RunFile    `json:"run_file"`
-	Inputs   []File     `json:"inputs"`
+	Inputs   []File     `json:"inputs"`  // paths relative to the run file's folder
 	Outputs  []File     `json:"outputs"` // paths relative to the folder
 	Seed     uint64     `json:"seed"`
 	Threads  int        `json:"threads"` // the numbers do not depend on it

@@ -25,6 +25,7 @@ const manifestName = "manifest.json"
 type folder struct {
 	final   string
 	partial string
+	made    []string // folders above, made for this run; the deepest first
 	outputs []report.File
 }
 
@@ -36,15 +37,22 @@ func newFolder(final, runFile string, replace bool) (*folder, error) {
 	if err := mayReplace(final, runFile, replace); err != nil {
 		return nil, err
 	}
+	f := &folder{final: final}
 	parent := filepath.Dir(final)
+	for dir := parent; ; dir = filepath.Dir(dir) {
+		if _, err := os.Stat(dir); !errors.Is(err, fs.ErrNotExist) || dir == filepath.Dir(dir) {
+			break
+		}
+		f.made = append(f.made, dir)
+	}
 	if err := os.MkdirAll(parent, 0o777); err != nil {
 		return nil, &FolderError{final, problemOf(err), "name another folder with --out"}
 	}
 	for attempt := 0; ; attempt++ {
-		partial := filepath.Join(parent, fmt.Sprintf(".%s.partial-%d-%d", filepath.Base(final), os.Getpid(), attempt))
-		err := os.Mkdir(partial, 0o777)
+		f.partial = filepath.Join(parent, fmt.Sprintf(".%s.partial-%d-%d", filepath.Base(final), os.Getpid(), attempt))
+		err := os.Mkdir(f.partial, 0o777)
 		if err == nil {
-			return &folder{final: final, partial: partial}, nil
+			return f, nil
 		}
 		if !errors.Is(err, fs.ErrExist) {
 			return nil, &FolderError{final, problemOf(err), "name another folder with --out"}
@@ -235,5 +243,13 @@ func (f *folder) commit() error {
 	return nil
 }
 
-// discard removes what was written.
-func (f *folder) discard() { os.RemoveAll(f.partial) }
+// discard removes what was written, and the folders made above it; after commit it finds
+// nothing to remove.
+func (f *folder) discard() {
+	os.RemoveAll(f.partial)
+	for _, dir := range f.made {
+		if os.Remove(dir) != nil {
+			return // not empty: it holds the finished folder, or something of others
+		}
+	}
+}

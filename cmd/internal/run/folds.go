@@ -20,6 +20,8 @@ type foldPlan struct {
 	arrangement string
 	folds       int
 	seed        uint64
+	// flexible folds were not asked for: tables of fewer rows get as many as they fill.
+	flexible bool
 }
 
 // deal returns the fold of each of n rows of a block: every run of as many rows as there

@@ -44,6 +44,9 @@ func heldSummaries(held *table.Held, plan *foldPlan, form pca.Form, ranks bool, 
 // foldRows lists the rows of each fold.
 func foldRows(held *table.Held, plan *foldPlan) ([][]int, error) {
 	n := held.Len()
+	if plan.flexible {
+		plan.folds = min(plan.folds, n)
+	}
 	if plan.arrangement != groupFolds && n < plan.folds {
 		return nil, tooFewRows(n, plan.folds)
 	}

@@ -7,7 +7,6 @@ package run
 import (
 	"context"
 	"fmt"
-	"path/filepath"
 
 	"axisfold/cmd/internal/report"
 	"axisfold/configs"
@@ -28,11 +27,7 @@ type Options struct {
 // Execute runs the run file and returns the study and the folder written. On any error,
 // and when ctx ends, nothing is left behind.
 func Execute(ctx context.Context, cfg *configs.File, o Options) (*report.Study, string, error) {
-	final := o.Out
-	if final == "" {
-		final = cfg.Resolve(cfg.Write.Folder)
-	}
-	final = filepath.Clean(final)
+	final := finalFolder(cfg, o)
 	f, err := newFolder(final, cfg.Path, o.Replace)
 	if err != nil {
 		return nil, "", err
@@ -101,7 +96,7 @@ func foldsOf(cfg *configs.File) *foldPlan {
 	r := cfg.Regress.Retain
 	p := &foldPlan{arrangement: r.Arrangement, folds: r.Folds, seed: cfg.Seed}
 	if p.arrangement == "" {
-		p.arrangement, p.folds = blockFolds, 10
+		p.arrangement, p.folds, p.flexible = blockFolds, 10, true
 	}
 	return p
 }

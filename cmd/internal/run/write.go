@@ -55,7 +55,7 @@ func (w *work) inputs(ctx context.Context) ([]report.File, error) {
 		if err != nil {
 			return nil, err
 		}
-		f.Path = relativeTo(w.folder.final, path)
+		f.Path = relativeTo(w.cfg.Dir(), path)
 		out = append(out, f)
 	}
 	return out, nil

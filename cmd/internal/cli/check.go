@@ -1,0 +1,77 @@
+package cli
+
+import (
+	"fmt"
+	"io"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"axisfold/cmd/internal/run"
+	"axisfold/configs"
+)
+
+func newCheck() *cobra.Command {
+	var o run.Options
+	c := &cobra.Command{
+		Use:   "check RUNFILE",
+		Short: "Check a run file against its table without computing, and print every setting",
+		Long: `Check all that can be checked without going through the rows: the run file, the heads
+of the table's files, the roles of the columns, and whether the run folder may be
+written. Prints every setting with its default.
+` + exitHelp,
+		Example: `  axisfold check configs/pump-hall.yaml`,
+		Args:    oneArg("a run file"),
+		RunE: func(c *cobra.Command, args []string) error {
+			cfg, err := configs.Load(args[0], o.Set)
+			if err != nil {
+				return err
+			}
+			p, err := run.Look(c.Context(), cfg, o)
+			if err != nil {
+				return err
+			}
+			writePreview(c.OutOrStdout(), args[0], p, cfg.Settings())
+			return nil
+		},
+	}
+	c.Flags().StringVar(&o.Out, "out", "", "check this run folder, in place of write.folder")
+	c.Flags().BoolVar(&o.Replace, "replace", false, "as for run")
+	c.Flags().StringArrayVar(&o.Set, "set", nil, "override a setting of the run file, `section.key=value`; may be repeated")
+	return c
+}
+
+func writePreview(out io.Writer, runFile string, p *run.Preview, settings []configs.Setting) {
+	fmt.Fprintf(out, "%s is in order.\n\n", runFile)
+	for _, f := range p.Files {
+		fmt.Fprintf(out, "table      %s\n", shown(f))
+	}
+	fmt.Fprintf(out, "channels   %d: %s\n", len(p.Channels), listed(p.Channels))
+	if len(p.Responses) > 0 {
+		fmt.Fprintf(out, "responses  %d: %s\n", len(p.Responses), listed(p.Responses))
+	}
+	for _, n := range p.Notes {
+		fmt.Fprintf(out, "note       %s: %s\n", n.Column, n.Text)
+	}
+	what := "new"
+	if p.Replaces {
+		what = "replaces an earlier run"
+	}
+	fmt.Fprintf(out, "folder     %s (%s)\n\n", shown(p.Folder), what)
+	fmt.Fprintln(out, "settings (* named in the run file or with --set; the rest are defaults)")
+	for _, s := range settings {
+		mark := "*"
+		if s.Default {
+			mark = " "
+		}
+		fmt.Fprintf(out, "%s %-26s %-24s %s\n", mark, s.Path, s.Value, s.Doc)
+	}
+}
+
+// listed joins names, the first and last few of many.
+func listed(names []string) string {
+	if len(names) > 12 {
+		names = append(append([]string(nil), names[:8]...), append([]string{"..."}, names[len(names)-3:]...)...)
+	}
+	return strings.Join(names, ", ")
+}

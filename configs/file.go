@@ -1,0 +1,106 @@
+package configs
+
+import "path/filepath"
+
+// File is a run file with every default filled in. The tag of a field is its key.
+type File struct {
+	Path        string      // of the run file, as given
+	Version     int         `key:"axisfold"`
+	Title       string      `key:"title"`
+	Seed        uint64      `key:"seed"`
+	Read        Read        `key:"read"`
+	Standardize Standardize `key:"standardize"`
+	Decompose   Decompose   `key:"decompose"`
+	Retain      Rule        `key:"retain"`
+	Regress     *Regress    `key:"regress"` // nil when not named
+	Draw        *Draw       `key:"draw"`    // nil when not named
+	Write       Write       `key:"write"`
+
+	// given holds the path of every key that the file or an override names.
+	given map[string]bool
+}
+
+// Read says which table to read and how.
+type Read struct {
+	Files     []string `key:"files"`     // paths and globs, relative to Dir
+	Format    string   `key:"format"`    // empty: from the extension
+	Separator string   `key:"separator"` // one byte; empty: looked up in the header
+	Decimal   string   `key:"decimal"`
+	Comment   string   `key:"comment"` // empty: none
+	Missing   []string `key:"missing"` // as written
+	Header    bool     `key:"header"`
+	UnitsRow  bool     `key:"units_row"`
+	Time      string   `key:"time"`      // empty: none
+	Groups    string   `key:"groups"`    // empty: none
+	LeaveOut  []string `key:"leave_out"` // names and globs
+	Gaps      string   `key:"gaps"`
+}
+
+// Standardize says how channels are centred and scaled.
+type Standardize struct {
+	Scaling  string    `key:"scaling"`
+	Constant string    `key:"constant"`
+	Channels []Channel `key:"channels"` // in the order written; a later one wins
+}
+
+// Channel is what differs for one channel or for those that match a glob. Empty settings
+// leave things as they are.
+type Channel struct {
+	Name      string
+	Scaling   string `key:"scaling"`
+	Transform string `key:"transform"`
+}
+
+// Decompose says of which matrix the components are, and by which route.
+type Decompose struct {
+	Matrix string `key:"matrix"`
+	Route  string `key:"route"`
+}
+
+// Rule is a rule for the number of components and its parameters. Parameters that do not
+// belong to the rule are zero.
+type Rule struct {
+	Rule           string  `key:"rule"`
+	Components     int     `key:"components"`
+	AtLeast        float64 `key:"at_least"`
+	Value          float64 `key:"value"`
+	Reference      string  `key:"reference"`
+	Percentile     float64 `key:"percentile"`
+	Replicates     int     `key:"replicates"`
+	Folds          int     `key:"folds"`
+	Arrangement    string  `key:"arrangement"`
+	Order          string  `key:"order"`
+	MostComponents int     `key:"most_components"` // 0: as many as the data carry
+}
+
+// Regress says what is regressed on the components.
+type Regress struct {
+	Response   []string `key:"response"`
+	Predictors []string `key:"predictors"` // names and globs; empty: all other channels
+	Intercept  bool     `key:"intercept"`
+	Retain     Rule     `key:"retain"`
+	Confidence float64  `key:"confidence"`
+}
+
+// Draw says what is drawn.
+type Draw struct {
+	Formats []string `key:"formats"`
+}
+
+// Write says where the run folder goes and what is in it.
+type Write struct {
+	Folder      string `key:"folder"` // relative to Dir
+	Scores      bool   `key:"scores"`
+	Predictions bool   `key:"predictions"`
+}
+
+// Dir is the folder that relative paths in the run file are relative to.
+func (f *File) Dir() string { return filepath.Dir(f.Path) }
+
+// Resolve turns a path or glob of the run file into one that can be opened from here.
+func (f *File) Resolve(path string) string {
+	if filepath.IsAbs(path) {
+		return path
+	}
+	return filepath.Join(f.Dir(), filepath.FromSlash(path))
+}

@@ -1,0 +1,82 @@
+package configs
+
+import (
+	"path/filepath"
+	"slices"
+	"strings"
+)
+
+var (
+	scalings   = []string{"unit-normal", "unit-length", "center", "pareto", "range", "median-mad", "none"}
+	transforms = []string{"none", "log", "log10", "square-root"}
+)
+
+// sections is the run file, in the order in which it is written. Sections are stages and
+// stand in the order in which data flow.
+var sections = []Key{
+	{Name: "axisfold", Kind: Whole, Required: true, Range: from(1, 1), Doc: "version of the run file's language, 1"},
+	{Name: "title", Kind: Text, Doc: "stands above summary and report"},
+	{Name: "seed", Kind: Whole, Range: atLeast(0), Default: 1, Doc: "starts every random draw: the same seed gives the same results"},
+	{Name: "read", Kind: Section, Doc: "which table to read and how", Keys: []Key{
+		{Name: "files", Kind: Names, Required: true, Filled: true, Doc: "paths and globs, relative to the run file; several files are one table"},
+		{Name: "format", Kind: Word, Allowed: []string{"csv", "tsv"}, Blank: "auto", Doc: "of the files; auto takes it from the extension"},
+		{Name: "separator", Kind: Character, Blank: "auto", Doc: "between cells: comma, semicolon, tab, bar or one character; auto looks at the header"},
+		{Name: "decimal", Kind: Word, Allowed: []string{"point", "comma"}, Default: "point", Doc: "decimal sign of numbers in cells"},
+		{Name: "comment", Kind: Text, Doc: "lines that begin with it are passed over; empty for none"},
+		{Name: "missing", Kind: Codes, Default: []string{"", "NA", "NaN", "nan", "null"}, Doc: "cells that mean a missing value"},
+		{Name: "header", Kind: Switch, Default: true, Doc: "the first row holds the names of the columns"},
+		{Name: "units_row", Kind: Switch, Default: false, Doc: "the next row holds units"},
+		{Name: "time", Kind: Text, Doc: "column of times, carried through to tables of rows; empty for none"},
+		{Name: "groups", Kind: Text, Doc: "column of groups, carried through and used by folds; empty for none"},
+		{Name: "leave_out", Kind: Names, Doc: "columns that take no part; names and globs"},
+		{Name: "gaps", Kind: Word, Allowed: []string{"complete-rows"}, Default: "complete-rows", Doc: "what happens to rows with missing values: complete-rows leaves them out"},
+	}},
+	{Name: "standardize", Kind: Section, Doc: "how channels are centred and scaled", Keys: []Key{
+		{Name: "scaling", Kind: Word, Allowed: scalings, Default: "unit-normal", Doc: "of every channel"},
+		{Name: "constant", Kind: Word, Allowed: []string{"error", "drop"}, Default: "error", Doc: "what a channel that holds one value is: an error, or dropped"},
+		{Name: "channels", Kind: Channels, Doc: "what differs by channel; names and globs, a later one wins", Keys: []Key{
+			{Name: "scaling", Kind: Word, Allowed: scalings, Doc: "of these channels"},
+			{Name: "transform", Kind: Word, Allowed: transforms, Doc: "applied to every value before anything else"},
+		}},
+	}},
+	{Name: "decompose", Kind: Section, Doc: "of which matrix the components are", Keys: []Key{
+		{Name: "matrix", Kind: Word, Allowed: []string{"correlation", "covariance"}, follow: defaultMatrix, Doc: "by default correlation with unit-normal or unit-length scaling, covariance with any other"},
+		{Name: "route", Kind: Word, Allowed: []string{"auto", "eigen", "svd"}, Default: "auto", Doc: "through cross-products or through a factor of the rows; auto looks at shape and condition"},
+	}},
+	{Name: "retain", Kind: Choice, Rules: rulesFor(components), Default: "parallel", Doc: "how many components to keep"},
+	{Name: "regress", Kind: Section, Named: true, Doc: "regression on the components", Keys: []Key{
+		{Name: "response", Kind: Names, Required: true, Filled: true, Doc: "one column or several"},
+		{Name: "predictors", Kind: Names, Doc: "names and globs; empty for all other channels"},
+		{Name: "intercept", Kind: Switch, Default: true, Doc: "false fits through the origin, which needs scaling: none"},
+		{Name: "retain", Kind: Choice, Rules: rulesFor(regressors), Default: "one-standard-error", Doc: "how many components enter the regression"},
+		{Name: "confidence", Kind: Number, Range: below(1), Default: 0.95, Doc: "of intervals for coefficients and predictions"},
+	}},
+	{Name: "draw", Kind: Section, Named: true, Doc: "pictures of the results", Keys: []Key{
+		{Name: "formats", Kind: Words, Filled: true, Allowed: []string{"svg", "png", "pdf"}, Default: []string{"svg"}, Doc: "each picture once in each format"},
+	}},
+	{Name: "write", Kind: Section, Doc: "where the run folder goes and what is in it", Keys: []Key{
+		{Name: "folder", Kind: Text, Filled: true, follow: defaultFolder, Doc: "relative to the run file; by default runs/ and the name of the run file"},
+		{Name: "scores", Kind: Switch, Default: true, Doc: "write the table of scores"},
+		{Name: "predictions", Kind: Switch, Default: true, Doc: "write the table of predictions"},
+	}},
+}
+
+// Keys describes the whole run file, in the order in which it is written.
+func Keys() []Key { return slices.Clone(sections) }
+
+func defaultMatrix(f *File) any {
+	switch f.Standardize.Scaling {
+	case "unit-normal", "unit-length":
+		return "correlation"
+	}
+	return "covariance"
+}
+
+func defaultFolder(f *File) any {
+	base := filepath.Base(f.Path)
+	if name := strings.TrimSuffix(base, filepath.Ext(base)); name != "" {
+		base = name
+	}
+	// A file may have a name that no text can hold.
+	return "runs/" + strings.ToValidUTF8(base, "_")
+}

@@ -1,0 +1,64 @@
+package configs
+
+// target is what a rule decides on.
+type target string
+
+const (
+	components target = "components" // of the table
+	regressors target = "regressors" // components that enter a regression
+)
+
+// listed is a rule and where it may stand.
+type listed struct {
+	targets []target
+	RuleDescription
+}
+
+var (
+	either = []target{components, regressors}
+	first  = []target{components}
+	second = []target{regressors}
+)
+
+// rules is the list of all rules. fixed stands in it twice: a regression may use no
+// component at all and takes them in an order.
+var rules = []listed{
+	{first, RuleDescription{"fixed", "the number given", []Key{
+		{Name: "components", Kind: Whole, Required: true, Range: atLeast(1), Doc: "how many to keep"}}}},
+	{second, RuleDescription{"fixed", "the number given", []Key{
+		{Name: "components", Kind: Whole, Required: true, Range: atLeast(0), Doc: "how many enter"}, order}}},
+	{either, RuleDescription{"share", "the fewest that hold a share of the total variance", []Key{
+		{Name: "at_least", Kind: Number, Range: upTo(1), Default: 0.9, Doc: "share of the total variance"}}}},
+	{either, RuleDescription{"eigenvalue-above", "eigenvalues above a multiple of their mean", []Key{
+		{Name: "value", Kind: Number, Range: above(0), Default: 1.0, Doc: "multiple of the mean eigenvalue"}}}},
+	{either, RuleDescription{"broken-stick", "shares above those of a stick broken at random", nil}},
+	{either, RuleDescription{"parallel", "eigenvalues above those of independent channels of the same shape", []Key{
+		{Name: "reference", Kind: Word, Allowed: []string{"percentile", "mean"}, Default: "percentile", Doc: "what of the replicates an eigenvalue must exceed"},
+		{Name: "percentile", Kind: Number, Range: below(100), Default: 95.0, Doc: "with reference: percentile"},
+		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Default: 1000, Doc: "tables of independent channels to draw"}}}},
+	{second, RuleDescription{"cross-validation", "the smallest error on held-out rows", heldOut}},
+	{second, RuleDescription{"one-standard-error", "the fewest within one standard error of the smallest error on held-out rows", heldOut}},
+}
+
+var order = Key{Name: "order", Kind: Word, Allowed: []string{"variance", "correlation"}, Default: "variance",
+	Doc: "in which components enter: by their variance, or by their correlation with the response"}
+
+// heldOut are the parameters of rules that judge by held-out rows.
+var heldOut = []Key{
+	{Name: "folds", Kind: Whole, Range: atLeast(2), Default: 10, Doc: "parts, each held out once"},
+	{Name: "arrangement", Kind: Word, Allowed: []string{"random", "blocks", "groups"}, Default: "blocks", Doc: "of rows into folds: dealt at random, in stretches, or by read.groups"},
+	order,
+	{Name: "most_components", Kind: Whole, Range: atLeast(1), Blank: "all", Doc: "how many to consider; all takes as many as the data carry"},
+}
+
+func rulesFor(t target) []RuleDescription {
+	var out []RuleDescription
+	for _, r := range rules {
+		for _, have := range r.targets {
+			if have == t {
+				out = append(out, r.RuleDescription)
+			}
+		}
+	}
+	return out
+}
