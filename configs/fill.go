@@ -154,17 +154,17 @@ func (l *loader) channels(k *Key, path string, node *yaml.Node, into reflect.Val
 	}
 }
 
-// unknownKey words the problem and, in the hint, the nearest key, or where else the key
-// belongs, or the keys there are.
+// unknownKey words the problem and, in the hint, where else the key belongs, or the
+// nearest key, or the keys there are.
 func unknownKey(path, name string, keys []Key) (problem, hint string) {
 	problem = fmt.Sprintf("unknown key %q%s", clip(name), in(path))
-	known := namesOf(keys)
-	if nearest(name, known) == "" {
-		if home := homeOf("", name, sections); home != "" {
-			return problem, fmt.Sprintf("%q belongs in %s", name, home)
-		}
+	if find(sections, name) != nil {
+		return problem, fmt.Sprintf("%q belongs on the top level", name)
 	}
-	return problem, suggest(name, known)
+	if home := homeOf("", name, sections); home != "" {
+		return problem, fmt.Sprintf("%q belongs in %s", name, home)
+	}
+	return problem, suggest(name, namesOf(keys))
 }
 
 // homeOf is the first section that has the key.

@@ -2,6 +2,7 @@ package configs
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 )
 
@@ -18,12 +19,16 @@ func suggest(word string, known []string) string {
 
 // nearest returns the known word most like word, or nothing when none is: about one slip
 // in three letters is forgiven, and case, hyphens, underscores and blanks do not count.
-// Among words equally like it one with the same first letter is nearer.
+// Among words equally like it one with the same first letter is nearer; the beginning of
+// a word counts as one slip.
 func nearest(word string, known []string) string {
 	best, least := "", 2*min(3, 1+len(word)/4)+2
 	a := alike(word)
 	for _, k := range known {
 		b := alike(k)
+		if len(a) >= 3 && len(a) < len(b) && slices.Equal(a, b[:len(a)]) && least > 2 {
+			best, least = k, 2
+		}
 		if 2*(len(a)-len(b)) >= least || 2*(len(b)-len(a)) >= least {
 			continue // as many slips at least, and words of any length may come in
 		}

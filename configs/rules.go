@@ -45,7 +45,7 @@ var order = Key{Name: "order", Kind: Word, Allowed: []string{"variance", "correl
 
 // heldOut are the parameters of rules that judge by held-out rows.
 var heldOut = []Key{
-	{Name: "folds", Kind: Whole, Range: atLeast(2), Default: 10, Doc: "parts, each held out once"},
+	{Name: "folds", Kind: Whole, Range: from(2, 100000), Default: 10, Doc: "parts, each held out once"},
 	{Name: "arrangement", Kind: Word, Allowed: []string{"random", "blocks", "groups"}, Default: "blocks", Doc: "of rows into folds: dealt at random, in stretches, or by read.groups"},
 	order,
 	{Name: "most_components", Kind: Whole, Range: atLeast(1), Blank: "all", Doc: "how many to consider; all takes as many as the data carry"},

@@ -31,7 +31,8 @@ func applyParallel(e *Evidence, s Settings) Verdict {
 		v.Setting += fmt.Sprintf(", %d replicates", s.Replicates)
 	}
 	if e.Width() == 1 {
-		v.Abstains, v.Note = true, "one channel has nothing to be parallel to"
+		v.Components, v.Note = 1, "one channel is one component"
+		v.Steps = []Step{{Value: e.Values[0], Kept: true}}
 		return v
 	}
 	roots := NullRoots(e, s.Replicates)
