@@ -184,9 +184,14 @@ func (m *Model) path(pr pca.Projection, most int) {
 		v := pr.Along[m.Entering[k]]
 		left[k] = left[k+1] + v*v
 	}
+	taken := 0.0
 	for k := range most + 1 {
+		if k > 0 {
+			v := pr.Along[m.Entering[k-1]]
+			taken += v * v
+		}
 		m.Path = append(m.Path, Step{Components: k, Squares: left[k],
-			RootMean: math.Sqrt(left[k] / float64(m.Rows)), R2: 1 - left[k]/pr.Total,
+			RootMean: math.Sqrt(left[k] / float64(m.Rows)), R2: taken / (taken + left[k]),
 			CV: math.NaN(), CVError: math.NaN(), CVR2: math.NaN()})
 	}
 }

@@ -18,8 +18,11 @@ var share = Rule{
 				reached = sum >= e.Total*s.AtLeast*(1-1e-12)
 			}
 		}
-		v.Note = fmt.Sprintf("the first %d carry %.2f %% of the variance; %g %% were asked for",
-			v.Components, 100*v.Steps[v.Components-1].Value, 100*s.AtLeast)
+		carry := fmt.Sprintf("the first %d carry", v.Components)
+		if v.Components == 1 {
+			carry = "the first carries"
+		}
+		v.Note = fmt.Sprintf("%s %.2f %% of the variance; asked for %g %%", carry, 100*v.Steps[v.Components-1].Value, 100*s.AtLeast)
 		return v
 	},
 }

@@ -141,7 +141,7 @@ func pumpHall(out *bufio.Writer) {
 				out.WriteString(fixed(values[j], c.decimals))
 			}
 		}
-		loss := 6.2 + 1.35*q + .95*f - .22*w + .21*rng.NormFloat64()
+		loss := 6.2 + 1.35*q + .95*f - .22*w + .55*rng.NormFloat64()
 		out.WriteString("," + fixed(loss, 3) + "\n")
 	}
 }

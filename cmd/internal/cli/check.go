@@ -59,12 +59,17 @@ func writePreview(out io.Writer, runFile string, p *run.Preview, settings []conf
 	}
 	fmt.Fprintf(out, "folder     %s (%s)\n\n", shown(p.Folder), what)
 	fmt.Fprintln(out, "settings (* named in the run file or with --set; the rest are defaults)")
+	path, value := 0, 0
+	for _, s := range settings {
+		path = max(path, len(s.Path))
+		value = max(value, min(len(s.Value), 30))
+	}
 	for _, s := range settings {
 		mark := "*"
 		if s.Default {
 			mark = " "
 		}
-		fmt.Fprintf(out, "%s %-26s %-24s %s\n", mark, s.Path, s.Value, s.Doc)
+		fmt.Fprintf(out, "%s %-*s  %-*s  %s\n", mark, path, s.Path, value, s.Value, s.Doc)
 	}
 }
 
