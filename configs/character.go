@@ -13,7 +13,7 @@ var characters = []struct{ word, text string }{{"comma", ","}, {"semicolon", ";"
 // neither ends a line nor belongs to a number, a name or quotes.
 func parseCharacter(n *yaml.Node) (v any, expected, hint string) {
 	const words = "comma, semicolon, tab, bar, or one character in quotes"
-	if n.Kind != yaml.ScalarNode || n.ShortTag() == "!!null" {
+	if n.Kind != yaml.ScalarNode || isNull(n) {
 		return nil, words, ""
 	}
 	for _, c := range characters {

@@ -8,12 +8,20 @@ import (
 	"regexp"
 	"strconv"
 	"strings"
+	"unicode/utf8"
 
 	"gopkg.in/yaml.v3"
 )
 
-// document returns the root of the only YAML document in text, nil when there is none.
+// document returns the root of the only YAML document in text, nil when it holds nothing.
 func document(text []byte) (root *yaml.Node, problem *Error) {
+	if !utf8.Valid(text) {
+		before := 0
+		for r, n := utf8.DecodeRune(text); r != utf8.RuneError || n > 1; r, n = utf8.DecodeRune(text[before:]) {
+			before += n
+		}
+		return nil, &Error{Line: len(split(text[:before+1])), Problem: "is not UTF-8 text", Hint: "save it as UTF-8"}
+	}
 	decoder := yaml.NewDecoder(bytes.NewReader(text))
 	var doc, second yaml.Node
 	switch err := decoder.Decode(&doc); {
@@ -29,6 +37,9 @@ func document(text []byte) (root *yaml.Node, problem *Error) {
 	default:
 		return nil, &Error{Line: second.Line, Column: second.Column, Problem: "a second document begins, expected one run file",
 			Hint: `take out the line "---"`}
+	}
+	if isNull(doc.Content[0]) {
+		return nil, nil
 	}
 	return doc.Content[0], nil
 }
@@ -51,15 +62,16 @@ func syntaxError(text []byte, err error) *Error {
 	case line > 0 && (strings.HasPrefix(message, "did not find expected ','") || strings.HasPrefix(message, "did not find expected node")):
 		line++
 	case line == 0 || strings.HasPrefix(message, "did not find expected"):
-		line = linesRead(text)
+		line = len(split(reached(text)))
 	}
-	return &Error{Line: line, Problem: "is not valid YAML: " + message, Hint: syntaxHint(text, line, message)}
+	lines := split(text)
+	line = min(line, len(lines)) // the end counts as a line of its own
+	return &Error{Line: line, Problem: "is not valid YAML: " + message, Hint: syntaxHint(lines[line-1], message)}
 }
 
-func syntaxHint(text []byte, line int, message string) string {
-	lines := strings.Split(string(text), "\n")
+func syntaxHint(line, message string) string {
 	switch {
-	case line <= len(lines) && strings.HasPrefix(strings.TrimLeft(lines[line-1], " "), "\t"):
+	case strings.HasPrefix(strings.TrimLeft(line, " "), "\t"):
 		return "indent with blanks, not with tabs"
 	case strings.HasPrefix(message, "mapping values are not allowed"):
 		return `is the line indented like its neighbours? a text that holds ": " needs quotes`
@@ -77,38 +89,44 @@ func syntaxHint(text []byte, line int, message string) string {
 	return ""
 }
 
-// linesRead is the line that the YAML reader has reached when it fails, handed one byte
-// at a time so that it does not run ahead.
-func linesRead(text []byte) int {
-	feed := &byteFeed{rest: text, line: 1}
+// breaks are the line ends of YAML 1.1, which the reader counts.
+var breaks = regexp.MustCompile("\r\n|[\n\r\u0085\u2028\u2029]")
+
+// split cuts text into lines, at least one.
+func split(text []byte) []string {
+	lines := breaks.Split(string(text), -1)
+	if last := len(lines) - 1; last > 0 && lines[last] == "" {
+		return lines[:last]
+	}
+	return lines
+}
+
+// reached is the text that the YAML reader has taken in when it fails, handed one byte at
+// a time so that it does not run ahead.
+func reached(text []byte) []byte {
+	feed := &byteFeed{rest: text}
 	decoder := yaml.NewDecoder(feed)
 	for {
 		var n yaml.Node
 		if err := decoder.Decode(&n); err != nil {
-			return feed.line
+			return text[:len(text)-len(feed.rest)]
 		}
 	}
 }
 
-// byteFeed hands out one byte per read and knows the line of the last one.
-type byteFeed struct {
-	rest  []byte
-	line  int
-	ended bool // the last byte ended its line
-}
+type byteFeed struct{ rest []byte }
 
 func (f *byteFeed) Read(b []byte) (int, error) {
-	if len(f.rest) == 0 || len(b) == 0 {
+	if len(f.rest) == 0 {
 		return 0, io.EOF
 	}
-	if f.ended {
-		f.line++
-	}
-	b[0] = f.rest[0]
-	f.ended = b[0] == '\n'
-	f.rest = f.rest[1:]
-	return 1, nil
+	n := copy(b[:min(1, len(b))], f.rest)
+	f.rest = f.rest[n:]
+	return n, nil
 }
+
+// isNull tells whether nothing, or YAML's word for it, stands at a node.
+func isNull(n *yaml.Node) bool { return n.Kind == yaml.ScalarNode && n.ShortTag() == "!!null" }
 
 // found words what stands at a node.
 func found(n *yaml.Node) string {

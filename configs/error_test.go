@@ -38,6 +38,10 @@ hint: a run file begins with "axisfold: 1"
 pump.yaml:1:1: is empty, expected a run file
 hint: a run file begins with "axisfold: 1"
 `},
+	{"nothing in a document", "---\n", nil, `
+pump.yaml:1:1: is empty, expected a run file
+hint: a run file begins with "axisfold: 1"
+`},
 	{"a list", "- a.csv\n", nil, `
 pump.yaml:1:1: expected a mapping of sections, found a list
 `},
@@ -46,7 +50,7 @@ pump.yaml:4:1: a second document begins, expected one run file
 hint: take out the line "---"
 `},
 	{"problem after the end", start + "---\n[\n", nil, `
-pump.yaml:6: is not valid YAML: did not find expected node content
+pump.yaml:5: is not valid YAML: did not find expected node content
 `},
 	{"version", "axisfold: 2\nread: {files: a}\n", nil, `
 pump.yaml:1:11: axisfold: expected 1, found 2
@@ -91,7 +95,15 @@ pump.yaml:4: is not valid YAML: unknown anchor '_raw' referenced
 hint: put a text that begins with "*" in quotes
 `},
 	{"not UTF-8", start + "title: \xff\n", nil, `
-pump.yaml:4: is not valid YAML: invalid leading UTF-8 octet
+pump.yaml:4: is not UTF-8 text
+hint: save it as UTF-8
+`},
+	{"UTF-16", "\xfe\xff\x00a", nil, `
+pump.yaml:1: is not UTF-8 text
+hint: save it as UTF-8
+`},
+	{"control character", start + "title: \x00\n", nil, `
+pump.yaml:4: is not valid YAML: control characters are not allowed
 `},
 	{"alias", "axisfold: 1\ntitle: &t x\nread: {files: *t}\n", nil, `
 pump.yaml:3:15: aliases are not part of a run file, found *t
@@ -341,10 +353,12 @@ hint: known: unit-normal, unit-length, center, pareto, range, median-mad, none
 `},
 
 	// Overrides.
-	{"not an override", start, []string{"seed", "=3"}, `
+	{"not an override", start, []string{"seed", "=3", ""}, `
 --set seed: expected section.key=value
 hint: such as retain.rule=parallel
 --set =3: expected section.key=value
+hint: such as retain.rule=parallel
+--set "": expected section.key=value
 hint: such as retain.rule=parallel
 `},
 	{"override of nothing", start, []string{"reed.files=b", "retain.percentil=90", "read.decimal.sign=1", "standardize.channels.a.transfrom=log"}, `

@@ -22,7 +22,7 @@ func (l *loader) entries(path string, node *yaml.Node) ([]entry, bool) {
 	if !l.plain(path, node) {
 		return nil, false
 	}
-	if node.Kind == yaml.ScalarNode && node.ShortTag() == "!!null" {
+	if isNull(node) {
 		return nil, true
 	}
 	if node.Kind != yaml.MappingNode {

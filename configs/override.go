@@ -1,6 +1,7 @@
 package configs
 
 import (
+	"cmp"
 	"strings"
 
 	"gopkg.in/yaml.v3"
@@ -12,7 +13,7 @@ func (l *loader) override(root *yaml.Node, set string) {
 	path, text, ok := strings.Cut(set, "=")
 	refuse := func(hint, problem string, args ...any) {
 		at := &yaml.Node{}
-		l.flags[at] = set
+		l.flags[at] = cmp.Or(set, `""`)
 		l.fail(at, path, hint, problem, args...)
 	}
 	if !ok || path == "" {
@@ -36,7 +37,7 @@ func (l *loader) override(root *yaml.Node, set string) {
 	at := root
 	for i, step := range steps {
 		switch {
-		case at.Kind == yaml.ScalarNode && at.ShortTag() == "!!null":
+		case isNull(at):
 			// A section that is named and left at its defaults.
 			at.Kind, at.Tag, at.Value, at.Style = yaml.MappingNode, "!!map", "", 0
 		case at.Kind != yaml.MappingNode:

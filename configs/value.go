@@ -42,7 +42,7 @@ func (l *loader) scalar(k *Key, path string, n *yaml.Node) (any, bool) {
 // parse returns the value, or nil with what was expected and a hint. Nothing is expected
 // of a word that is not known: there the hint says it.
 func (k *Key) parse(n *yaml.Node) (v any, expected, hint string) {
-	isText, null := n.Kind == yaml.ScalarNode, n.ShortTag() == "!!null"
+	isText, null := n.Kind == yaml.ScalarNode, isNull(n)
 	if isText && k.Blank != "" && n.Value == k.Blank {
 		return reflect.Zero(zeros[k.Kind]).Interface(), "", ""
 	}
@@ -142,7 +142,7 @@ func (l *loader) list(k *Key, path string, node *yaml.Node, into reflect.Value) 
 	switch {
 	case node.Kind == yaml.SequenceNode:
 		items = node.Content
-	case node.Kind == yaml.MappingNode, node.ShortTag() == "!!null":
+	case node.Kind == yaml.MappingNode, isNull(node):
 		hint := ""
 		if !k.Filled {
 			hint = "an empty list is []"

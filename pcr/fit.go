@@ -85,6 +85,8 @@ type Term struct {
 	// Ordinary is the least-squares coefficient and OrdinaryError its standard error; NaN
 	// when the predictors are linearly dependent or too many.
 	Ordinary, OrdinaryError float64
+	// OrdinaryStandardized is Ordinary on the scale of Standardized.
+	OrdinaryStandardized float64
 	// VIF is the variance inflation factor [R⁻¹]_jj; +Inf when the channel is an exact
 	// combination of others. NaN for the intercept.
 	VIF float64

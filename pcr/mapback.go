@@ -49,12 +49,13 @@ func (m *Model) mapBack(joint *pca.Summary, d *pca.Decomposition, pr pca.Project
 		b0, e0, ob0, oe0 = 0, 0, 0, 0
 	}
 	m.Intercept = Term{Name: "intercept", Coefficient: b0, Error: e0, Lower: b0 - t*e0, Upper: b0 + t*e0,
-		Standardized: math.NaN(), Ordinary: ob0, OrdinaryError: oe0, VIF: math.NaN()}
+		Standardized: math.NaN(), OrdinaryStandardized: math.NaN(), Ordinary: ob0, OrdinaryError: oe0, VIF: math.NaN()}
 	for j := range p {
+		scale := joint.Deviation(x[j]) / deviation
 		m.Terms = append(m.Terms, Term{Name: d.Channels[j], Coefficient: b[j], Error: e[j],
 			Lower: b[j] - t*e[j], Upper: b[j] + t*e[j],
-			Standardized: b[j] * joint.Deviation(x[j]) / deviation,
-			Ordinary:     ob[j], OrdinaryError: oe[j], VIF: inflation(d, j)})
+			Standardized: b[j] * scale, OrdinaryStandardized: ob[j] * scale,
+			Ordinary: ob[j], OrdinaryError: oe[j], VIF: inflation(d, j)})
 	}
 	if m.Path[m.Components].Squares <= float64(m.Rows)*1e-28*m.Total {
 		m.warn("perfect-fit", "the fit is exact to the last digits: standard errors say nothing, and the response may be among the predictors in disguise")

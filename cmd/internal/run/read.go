@@ -3,7 +3,6 @@ package run
 import (
 	"context"
 	"fmt"
-	"runtime"
 	"sync"
 	"sync/atomic"
 
@@ -31,10 +30,7 @@ type reading struct {
 
 // readTable goes through the table once. Small tables end up in memory; once a table
 // proves too large, what was read is summarised and the rest streams through summaries.
-func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, form pca.Form, threads int) (*reading, error) {
-	if threads <= 0 {
-		threads = runtime.GOMAXPROCS(0)
-	}
+func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, form pca.Form, o Options) (*reading, error) {
 	out := &reading{missing: make([]int64, r.width())}
 	held := table.NewHeld(labelledColumns(r))
 	prepare := newPreparers(r)
@@ -44,8 +40,13 @@ func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, f
 		missing []int64
 		sums    []keyed
 	}
-	limit := int64(heldCells)
-	err := rows.Each(ctx, threads, func(worker int, b *table.Block) error {
+	limit := int64(r.width()) * int64(r.width())
+	if o.held > 0 {
+		limit = o.held
+	} else {
+		limit = max(limit, heldCells)
+	}
+	err := rows.Each(ctx, o.Threads, func(worker int, b *table.Block) error {
 		res := &result{missing: make([]int64, r.width())}
 		if err := prepare(b, res.missing); err != nil {
 			return err
@@ -64,8 +65,7 @@ func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, f
 		out.rows = b.Row + int64(b.Count)
 		if held != nil {
 			held.Append(b)
-			cells := int64(held.Len()) * int64(r.width())
-			if cells <= max(limit, int64(r.width())*int64(r.width())) {
+			if int64(held.Len())*int64(r.width()) <= limit {
 				return nil
 			}
 			streaming.Store(true)
@@ -142,8 +142,20 @@ func (c *collector) summarize(b *table.Block) []keyed {
 	defer c.builders.Put(builder)
 	var key func(i int) string
 	switch {
-	case c.plan == nil || c.plan.arrangement == blockFolds:
+	case c.plan == nil:
 		return []keyed{{"", builder.Summarize(b.Data, b.Rows)}}
+	case c.plan.arrangement == blockFolds:
+		// Cut finer the more folds there are, so that their ends come close to exact.
+		cuts := stretches(b.Rows, 1+c.plan.folds/4)
+		out := make([]keyed, 0, len(cuts))
+		start := 0
+		for _, end := range cuts {
+			if end > start {
+				out = append(out, keyed{"", builder.Summarize(b.Data[start*b.Width:end*b.Width], end-start)})
+			}
+			start = end
+		}
+		return out
 	case c.plan.arrangement == randomFolds:
 		folds := c.plan.deal(b.Index, b.Rows)
 		key = func(i int) string { return fmt.Sprint(folds[i]) }

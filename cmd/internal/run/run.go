@@ -22,6 +22,8 @@ type Options struct {
 	Threads int // 0 takes all cores
 	Version string
 	Set     []string // overrides, for the manifest
+
+	held int64 // in place of heldCells, for tests; 0 takes it
 }
 
 // Execute runs the run file and returns the study and the folder written. On any error,
@@ -80,7 +82,7 @@ func (w *work) read(ctx context.Context) error {
 	if w.cfg.Decompose.Route == string(pca.SVD) {
 		form = pca.Factor
 	}
-	if w.reading, err = readTable(ctx, t, w.roles, w.plan, form, w.options.Threads); err != nil {
+	if w.reading, err = readTable(ctx, t, w.roles, w.plan, form, w.options); err != nil {
 		return err
 	}
 	w.study = &report.Study{Title: w.cfg.Title, Seed: w.cfg.Seed}
