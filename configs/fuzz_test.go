@@ -4,6 +4,7 @@ import (
 	"errors"
 	"strings"
 	"testing"
+	"unicode/utf8"
 )
 
 // FuzzLoad: no text brings the loader down; an error has its place in the text; and
@@ -56,6 +57,21 @@ func FuzzLoad(f *testing.F) {
 			if e.Problem == "" || e.File != "pump.yaml" {
 				t.Errorf("%+v", e)
 			}
+		}
+	})
+}
+
+// FuzzNames: whatever a column, a path or a code is called, it is written back as it is.
+func FuzzNames(f *testing.F) {
+	for _, name := range awkward {
+		f.Add(name)
+	}
+	if len(awkward) == 0 {
+		f.Fatal("no seeds")
+	}
+	f.Fuzz(func(t *testing.T, name string) {
+		if name != "" && utf8.ValidString(name) {
+			roundTrip(t, named(t, name))
 		}
 	})
 }

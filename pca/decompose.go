@@ -61,7 +61,6 @@ type Options struct {
 	Names   []string
 	Methods []Method // one per channel
 	Matrix  Matrix
-	Threads int // for large matrices; the result does not depend on it
 }
 
 // EffectiveMethods returns the scaling that is applied: under the correlation matrix every
@@ -106,7 +105,7 @@ func Decompose(s *Summary, o Options) (*Decomposition, error) {
 		d.warn("approximate-medians", "medians come from a sketch of the rows: their rank is right to within %.2g %% of the rows", 100*e)
 	}
 	if s.form == CrossProducts {
-		err = d.eigen(s, o.Threads)
+		err = d.eigen(s)
 	} else {
 		err = d.svd(s)
 	}

@@ -12,7 +12,7 @@ import (
 )
 
 func options(names []string, matrix pca.Matrix, method pca.Method) pca.Options {
-	o := pca.Options{Names: names, Matrix: matrix, Threads: 2}
+	o := pca.Options{Names: names, Matrix: matrix}
 	for range names {
 		o.Methods = append(o.Methods, method)
 	}

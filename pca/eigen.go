@@ -9,13 +9,13 @@ import (
 
 // eigen decomposes the matrix made of the cross-products of s. The error of every root is
 // near p·ε·l₁ (Weyl), so small roots keep fewer digits than large ones.
-func (d *Decomposition) eigen(s *Summary, threads int) error {
+func (d *Decomposition) eigen(s *Summary) error {
 	p := s.p
 	a := d.scaledCrossProducts(s)
 	for j := range p {
 		d.Total += a[j*p+j]
 	}
-	values, vectors, err := symeig.Decompose(a, p, threads)
+	values, vectors, err := symeig.Decompose(a, p)
 	if err != nil {
 		return errors.Join(errors.New("eigen decomposition failed"), err)
 	}

@@ -64,7 +64,6 @@ func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([][]f
 	// it has no slope in this fold.
 	var moving []int
 	po := o.Predictors
-	po.Threads = 1 // the folds share the cores
 	po.Names, po.Methods = nil, nil
 	for i, j := range x {
 		if !train.Constant(j) {

@@ -45,7 +45,8 @@ type Block struct {
 	extra  []byte // unescaped text of quoted cells
 	times  []span
 	groups []span
-	lines  []int32 // physical line of each row, from the block's first
+	lines  []int32 // physical line of each row, from the block's first; of a held table, its row
+	held   *Held   // the rows come from there
 	file   string
 	names  []Column
 	line   int // physical line of the block's first, from 1; known in merge
@@ -98,8 +99,22 @@ func (b *Block) Keep(rows []int32) {
 }
 
 // Problem returns an error about the value in row i, column j of the columns the table
-// has; Each completes it with the line.
+// has. Each completes it with the line, so work must return it as it is: the text of an
+// error that wraps it would hold the wrong line.
 func (b *Block) Problem(i, j int, problem, hint string) error {
-	return &Error{Kind: BadContent, File: b.file, Line: int(b.lines[i]), Column: b.names[j].Position,
+	e := &Error{Kind: BadContent, File: b.file, Line: int(b.lines[i]), Column: b.names[j].Position,
 		Name: b.names[j].Name, Problem: problem, Hint: hint}
+	if b.held != nil {
+		e.File, e.Line = b.held.place(int(b.lines[i]))
+		e.absolute = true
+	}
+	return e
+}
+
+// place is the file and the line of row i; right in merge.
+func (b *Block) place(i int) (file string, line int) {
+	if b.held != nil {
+		return b.held.place(int(b.lines[i]))
+	}
+	return b.file, b.line - 1 + int(b.lines[i])
 }

@@ -12,6 +12,9 @@ const chunkBytes = 1 << 20
 // longestRow bounds a row; a line that goes on longer is no row of a table.
 const longestRow = 64 << 20
 
+// byteOrderMark is what some programs write before the first row of UTF-8 text.
+var byteOrderMark = []byte("\xef\xbb\xbf")
+
 // chunker cuts a text into pieces that end at row ends.
 type chunker struct {
 	r       io.Reader
@@ -46,12 +49,15 @@ func (c *chunker) next(buf []byte) ([]byte, error) {
 				return nil, readError(c.file, err)
 			}
 		}
+		if c.lines == 0 && scan.at == 0 && bytes.HasPrefix(buf, byteOrderMark) {
+			scan.at = len(byteOrderMark) // a quote right after it opens a cell
+		}
 		cut = scan.lastRowEnd(buf)
 		if cut > 0 || c.ended {
 			break
 		}
 		if len(buf) >= longestRow {
-			return nil, &Error{Kind: BadContent, File: c.file, Problem: "a row is longer than 64 MiB", Hint: "a quote may be open, or this is not a table"}
+			return nil, &Error{Kind: BadContent, File: c.file, Line: c.lines + 1, absolute: true, Problem: "the row is longer than 64 MiB", Hint: "a quote may be open, or this is not a table"}
 		}
 		want = 2 * len(buf)
 	}

@@ -42,6 +42,7 @@ func (d *dialect) startsComment(b []byte) bool {
 
 // value reads a trimmed cell: NaN for a missing one; ok is false when it is neither.
 func (d *dialect) value(cell []byte) (v float64, ok bool) {
+	cell = trim(cell)
 	if d.missing[string(cell)] {
 		return math.NaN(), true
 	}
@@ -62,6 +63,15 @@ func (d *dialect) coded(v float64) float64 {
 	return v
 }
 
+// quoteFault is what can be wrong with a quoted cell.
+type quoteFault int
+
+const (
+	wellQuoted quoteFault = iota
+	textAfterQuote
+	openQuote
+)
+
 // trim takes blanks off both ends.
 func trim(b []byte) []byte {
 	for len(b) > 0 && (b[0] == ' ' || b[0] == '\t') {
@@ -75,8 +85,7 @@ func trim(b []byte) []byte {
 
 // cell finds the cell that starts at b[i] and returns its trimmed text, unescaped into
 // extra where it was quoted, and the position of the separator or line end after it.
-// trailing is true when text follows a closing quote.
-func (d *dialect) cell(b []byte, i int, extra *[]byte) (text []byte, end int, quoted, trailing bool) {
+func (d *dialect) cell(b []byte, i int, extra *[]byte) (text []byte, end int, quoted bool, fault quoteFault) {
 	j := i
 	for b[j] == ' ' || b[j] == '\t' && d.separator != '\t' {
 		j++
@@ -86,7 +95,7 @@ func (d *dialect) cell(b []byte, i int, extra *[]byte) (text []byte, end int, qu
 		for b[end] != d.separator && b[end] != '\n' {
 			end++
 		}
-		return trim(b[i:end]), end, false, false
+		return trim(b[i:end]), end, false, wellQuoted
 	}
 	from := len(*extra)
 	for j++; j < len(b); j++ {
@@ -102,14 +111,30 @@ func (d *dialect) cell(b []byte, i int, extra *[]byte) (text []byte, end int, qu
 		break
 	}
 	if j >= len(b) { // an open quote runs to the end of the text
-		return (*extra)[from:], len(b) - 1, true, true
+		return (*extra)[from:], len(b) - 1, true, openQuote
 	}
 	end = j + 1
 	for b[end] != d.separator && b[end] != '\n' {
 		if b[end] != ' ' && b[end] != '\t' && b[end] != '\r' {
-			trailing = true
+			fault = textAfterQuote
 		}
 		end++
 	}
-	return (*extra)[from:], end, true, trailing
+	return (*extra)[from:], end, true, fault
+}
+
+// emptyRow tells whether no cell of the row that starts at b[i] holds anything, and where
+// the row ends.
+func (d *dialect) emptyRow(b []byte, i int) (end int, empty bool) {
+	var scratch []byte
+	for {
+		text, end, _, _ := d.cell(b, i, &scratch)
+		if len(trim(text)) > 0 {
+			return end, false
+		}
+		if b[end] == '\n' {
+			return end, true
+		}
+		i = end + 1
+	}
 }

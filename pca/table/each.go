@@ -16,13 +16,19 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 	if threads <= 0 {
 		threads = runtime.GOMAXPROCS(0)
 	}
+	for i, f := range t.files {
+		if err := checkUnchanged(f, t.before[i]); err != nil {
+			return err
+		}
+	}
 	counted := t.starts != nil
 	var starts []int64
 	p := &parser{columns: t.columns, time: t.options.Time != "", group: t.options.Groups != ""}
 	row, blank := int64(0), int64(0)
 	line, file := 1, ""
 	err := inOrder(ctx, threads, t.pieceReader(), func(worker int, b *Block) error {
-		if counted {
+		// A file that grows meanwhile is found out at the end of the pass.
+		if counted && b.Index < len(t.starts) {
 			b.Row = t.starts[b.Index]
 		}
 		if err := p.parse(b, b.layout); err != nil {

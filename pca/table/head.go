@@ -82,7 +82,8 @@ func readHead(o *Options, open opener, file string) (*head, error) {
 	defer s.Close()
 	text := make([]byte, 0, 1<<16)
 	whole := false
-	for lines := 0; lines < sampleRows+3 && len(text) < sampleBytes; {
+	// A row or two may be longer than the whole sample of an ordinary table.
+	for lines := 0; lines < sampleRows+3 && len(text) < sampleBytes || lines < 3 && len(text) < 3*longestRow; {
 		if cap(text)-len(text) < 1<<15 {
 			text = append(text, make([]byte, cap(text))...)[:len(text)]
 		}
@@ -99,7 +100,7 @@ func readHead(o *Options, open opener, file string) (*head, error) {
 		}
 	}
 	mark := len(text)
-	text = bytes.TrimPrefix(text, []byte("\xef\xbb\xbf"))
+	text = bytes.TrimPrefix(text, byteOrderMark)
 	mark -= len(text)
 	if i := bytes.IndexByte(text, 0); i >= 0 {
 		return nil, &Error{Kind: BadContent, File: file, Line: 1 + bytes.Count(text[:i], []byte{'\n'}),
@@ -108,7 +109,7 @@ func readHead(o *Options, open opener, file string) (*head, error) {
 	h := &head{file: file, dialect: newDialect(o, separatorOf(o, f, text))}
 	text = text[:bytes.LastIndexByte(text, '\n')+1]
 	if len(text) == 0 {
-		return nil, &Error{Kind: BadContent, File: file, Line: 1, Problem: "goes on for 8 MiB without a line end", Hint: "this is not a table"}
+		return nil, &Error{Kind: BadContent, File: file, Line: 1, Problem: "goes on for 64 MiB without a line end", Hint: "this is not a table"}
 	}
 	err = h.read(o, text, whole)
 	h.bytes += mark
@@ -164,6 +165,9 @@ func (h *head) read(o *Options, text []byte, whole bool) error {
 	if !ok {
 		return &Error{Kind: BadContent, File: h.file, Problem: "is empty"}
 	}
+	if rows.open {
+		return &Error{Kind: BadContent, File: h.file, Line: line, Problem: openQuoteProblem, Hint: openQuoteHint}
+	}
 	h.unnamed = make([]bool, len(first))
 	h.units = make([]string, len(first))
 	if o.NoHeader {
@@ -189,12 +193,15 @@ func (h *head) read(o *Options, text []byte, whole bool) error {
 		if !ok {
 			break
 		}
+		if rows.open {
+			if !whole {
+				break // the sample ends within a quoted cell
+			}
+			return h.openQuote(len(cells), line)
+		}
 		if len(cells) != len(h.names) {
 			if strings.TrimSpace(strings.Join(cells, "")) == "" {
 				continue
-			}
-			if !whole && rows.at >= len(text) {
-				break // the sample ends within a quoted cell
 			}
 			return &Error{Kind: BadContent, File: h.file, Line: line, Problem: fmt.Sprintf("%d cells, expected %d", len(cells), len(h.names)),
 				Hint: "a cell may hold the separator without quotes, or the row is cut off"}
@@ -209,17 +216,34 @@ func (h *head) read(o *Options, text []byte, whole bool) error {
 	return nil
 }
 
+// openQuote is the error about a row whose nth cell never ends.
+func (h *head) openQuote(n, line int) error {
+	e := &Error{Kind: BadContent, File: h.file, Line: line, Problem: openQuoteProblem, Hint: openQuoteHint}
+	if n <= len(h.names) {
+		e.Column, e.Name = n, h.names[n-1]
+	}
+	return e
+}
+
 // header checks the names.
 func (h *head) header(cells []string, line int) error {
+	numbers, unnamed := 0, 0
+	for _, name := range cells {
+		if name == "" {
+			unnamed++
+		} else if _, ok := parseNumber([]byte(name), h.dialect.point); ok {
+			numbers++
+		}
+	}
+	// Before the look for duplicates: rows of numbers often hold one twice.
+	if numbers > 0 && numbers+unnamed == len(cells) {
+		return &Error{Kind: BadContent, File: h.file, Line: line, Problem: "the header holds only numbers", Hint: "set read.header: false if the table has no header"}
+	}
 	seen := map[string]int{}
-	numbers := 0
 	for j, name := range cells {
 		if name == "" {
 			h.unnamed[j] = true
 			name = "column_" + strconv.Itoa(j+1)
-		}
-		if _, finite := looseNumber([]byte(name)); finite {
-			numbers++
 		}
 		if before, ok := seen[name]; ok {
 			return &Error{Kind: BadContent, File: h.file, Line: line, Column: j + 1, Name: name,
@@ -227,9 +251,6 @@ func (h *head) header(cells []string, line int) error {
 		}
 		seen[name] = j + 1
 		h.names = append(h.names, name)
-	}
-	if numbers == len(cells) {
-		return &Error{Kind: BadContent, File: h.file, Line: line, Problem: "the header holds only numbers", Hint: "set read.header: false if the table has no header"}
 	}
 	return nil
 }
@@ -240,9 +261,12 @@ type rowReader struct {
 	text []byte
 	at   int
 	line int
+	open bool
 }
 
+// next returns the cells of the next row; open is set when a quote in it is not closed.
 func (r *rowReader) next() (cells []string, line int, ok bool) {
+	r.open = false
 	for r.at < len(r.text) {
 		rest := r.text[r.at:]
 		end := bytes.IndexByte(rest, '\n')
@@ -254,8 +278,9 @@ func (r *rowReader) next() (cells []string, line int, ok bool) {
 		line = r.line
 		for {
 			var extra []byte
-			text, end, quoted, _ := r.d.cell(r.text, r.at, &extra)
-			cells = append(cells, string(text))
+			text, end, quoted, fault := r.d.cell(r.text, r.at, &extra)
+			r.open = r.open || fault == openQuote
+			cells = append(cells, string(trim(text)))
 			if quoted {
 				r.line += bytes.Count(r.text[r.at:end], []byte{'\n'})
 			}

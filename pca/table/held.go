@@ -17,6 +17,14 @@ type Held struct {
 	row     []int64
 	times   texts
 	groups  texts
+	lines   []int // physical line of each row in its file
+	files   []heldFile
+}
+
+// heldFile says from which row on the rows come from a file.
+type heldFile struct {
+	name string
+	from int
 }
 
 // texts keeps many short texts in one piece of memory.
@@ -45,6 +53,13 @@ func NewHeld(columns []Column) *Held { return &Held{columns: columns} }
 func (h *Held) Append(b *Block) {
 	if b.Width != len(h.columns) {
 		panic("table: block and held table differ in width")
+	}
+	for i := range b.Rows {
+		file, line := b.place(i)
+		if n := len(h.files); n == 0 || h.files[n-1].name != file {
+			h.files = append(h.files, heldFile{file, h.Len() + i})
+		}
+		h.lines = append(h.lines, line)
 	}
 	// Kept piece by piece: growing one slice would copy a large table several times.
 	h.pieces = append(h.pieces, append([]float64(nil), b.Data...))
@@ -117,10 +132,10 @@ func (h *Held) Each(ctx context.Context, threads int, work func(worker int, b *B
 // fill makes b the rows from..to. Blocks get a copy: work may change them.
 func (h *Held) fill(b *Block, from, to int) {
 	w := len(h.columns)
-	b.Width, b.Rows, b.Count, b.names = w, to-from, to-from, h.columns
+	b.Width, b.Rows, b.Count, b.names, b.held = w, to-from, to-from, h.columns, h
 	b.Data = append(b.Data[:0], h.data[from*w:to*w]...)
 	b.Row = h.row[from]
-	b.Offset, b.text, b.times, b.groups = b.Offset[:0], b.text[:0], b.times[:0], b.groups[:0]
+	b.Offset, b.lines, b.text, b.times, b.groups = b.Offset[:0], b.lines[:0], b.text[:0], b.times[:0], b.groups[:0]
 	keep := func(t *texts, i int) span {
 		start := int32(len(b.text))
 		b.text = append(b.text, t.at(i)...)
@@ -128,6 +143,7 @@ func (h *Held) fill(b *Block, from, to int) {
 	}
 	for i := from; i < to; i++ {
 		b.Offset = append(b.Offset, int32(h.row[i]-b.Row))
+		b.lines = append(b.lines, int32(i))
 		if len(h.times.ends) > 0 {
 			b.times = append(b.times, keep(&h.times, i))
 		}
@@ -135,4 +151,14 @@ func (h *Held) fill(b *Block, from, to int) {
 			b.groups = append(b.groups, keep(&h.groups, i))
 		}
 	}
+}
+
+// place is the file and the line from which row i came.
+func (h *Held) place(i int) (file string, line int) {
+	for _, f := range h.files {
+		if f.from <= i {
+			file = f.name
+		}
+	}
+	return file, h.lines[i]
 }

@@ -68,6 +68,12 @@ func scanNumber(b []byte, i int, point byte) (v float64, end int, ok bool) {
 // parseNumber reads a trimmed cell the slow way: every finite decimal number, nothing
 // else (no hexadecimal, no underscores, no words).
 func parseNumber(cell []byte, point byte) (v float64, ok bool) {
+	v, ok = readNumber(cell, point)
+	return v, ok && !math.IsInf(v, 0)
+}
+
+// readNumber is parseNumber but for numbers too large, which are infinite and not ok.
+func readNumber(cell []byte, point byte) (v float64, ok bool) {
 	if len(cell) == 0 {
 		return 0, false
 	}
@@ -88,5 +94,5 @@ func parseNumber(cell []byte, point byte) (v float64, ok bool) {
 		}
 	}
 	v, err := strconv.ParseFloat(unsafe.String(&text[0], len(text)), 64)
-	return v, err == nil && !math.IsInf(v, 0)
+	return v, err == nil
 }

@@ -8,6 +8,7 @@ import (
 	"io"
 	"os"
 	"path/filepath"
+	"slices"
 	"sort"
 	"strings"
 
@@ -22,18 +23,24 @@ func expand(dir string, patterns []string) ([]string, error) {
 	}
 	var files []string
 	for _, pattern := range patterns {
-		full := pattern
-		if !filepath.IsAbs(full) {
-			full = filepath.Join(dir, full)
+		full, glob := pattern, pattern
+		if !filepath.IsAbs(pattern) {
+			full = filepath.Join(dir, pattern)
+			// What the folder's own name holds is no pattern.
+			glob = filepath.Join(globMarks.Replace(dir), pattern)
 		}
 		if _, err := os.Lstat(full); err == nil || !strings.ContainsAny(pattern, "*?[") {
 			files = append(files, full)
 			continue
 		}
-		matched, err := filepath.Glob(full)
+		matched, err := filepath.Glob(glob)
 		if err != nil {
 			return nil, &Error{Kind: WrongInput, File: pattern, Problem: "is not a pattern for file names", Hint: "close the [ or write the name out"}
 		}
+		matched = slices.DeleteFunc(matched, func(f string) bool {
+			info, err := os.Stat(f)
+			return err == nil && info.IsDir()
+		})
 		if len(matched) == 0 {
 			return nil, &Error{Kind: WrongInput, File: pattern, Problem: "no file matches"}
 		}
@@ -49,6 +56,8 @@ func expand(dir string, patterns []string) ([]string, error) {
 	}
 	return files, nil
 }
+
+var globMarks = strings.NewReplacer(`*`, `\*`, `?`, `\?`, `[`, `\[`, `\`, `\\`)
 
 // opener opens a file for reading; tests put others in its place.
 type opener func(path string) (io.ReadCloser, error)
@@ -85,7 +94,7 @@ func openText(open opener, path string) (*stream, error) {
 	magic, err := buffered.Peek(4)
 	if err != nil && err != io.EOF {
 		s.Close()
-		return nil, pathError(path, err)
+		return nil, readError(path, err)
 	}
 	switch {
 	case bytes.HasPrefix(magic, []byte{0x1f, 0x8b}):
@@ -96,7 +105,7 @@ func openText(open opener, path string) (*stream, error) {
 		}
 		s.closers = append(s.closers, z.Close)
 		s.Reader = z
-	case bytes.HasPrefix(magic, []byte{0x28, 0xb5, 0x2f, 0xfd}):
+	case bytes.HasPrefix(magic, []byte{0x28, 0xb5, 0x2f, 0xfd}), skippableFrame(magic):
 		z, err := zstd.NewReader(buffered, zstd.WithDecoderConcurrency(1), zstd.WithDecoderMaxMemory(256<<20))
 		if err != nil {
 			s.Close()
@@ -111,6 +120,11 @@ func openText(open opener, path string) (*stream, error) {
 		s.Reader = buffered
 	}
 	return s, nil
+}
+
+// skippableFrame tells the other way for zstd data to start (RFC 8878, 3.1.2).
+func skippableFrame(magic []byte) bool {
+	return len(magic) == 4 && magic[0]&0xf0 == 0x50 && magic[1] == 0x2a && magic[2] == 0x4d && magic[3] == 0x18
 }
 
 // readError words an error met while reading.
@@ -137,6 +151,9 @@ func fingerprintOf(path string) (fingerprint, error) {
 	info, err := os.Stat(path)
 	if err != nil {
 		return fingerprint{}, pathError(path, err)
+	}
+	if !info.Mode().IsRegular() && !info.IsDir() {
+		return fingerprint{}, &Error{Kind: WrongInput, File: path, Problem: "is not a regular file, and a table is read more than once", Hint: "write it to a file first"}
 	}
 	return fingerprint{info.Size(), info.ModTime().UnixNano()}, nil
 }

@@ -15,6 +15,7 @@ const (
 	number
 	timeText
 	groupText
+	timeAndGroupText
 )
 
 // layout is how one file's columns become the columns of the table.
@@ -64,8 +65,9 @@ func (p *parser) parse(b *Block, l *layout) error {
 		start, startLine := i, line
 		at := len(b.Data)
 		b.Data = slices.Grow(b.Data, width)[:at+width]
-		row := b.Data[at : at+width]
+		cells := b.Data[at : at+width]
 		gaps := 0
+	row:
 		for c := 0; ; c++ {
 			switch l.uses[c] {
 			case number:
@@ -82,10 +84,17 @@ func (p *parser) parse(b *Block, l *layout) error {
 						}
 					}
 				} else {
-					cell, end, quoted, trailing := d.cell(text, i, &b.extra)
-					v, ok = d.value(trim(cell))
-					if trailing || !ok {
-						return p.badCell(b, l, c, startLine, cell, trailing)
+					cell, end, quoted, fault := d.cell(text, i, &b.extra)
+					v, ok = d.value(cell)
+					if fault == wellQuoted && !ok && len(trim(cell)) == 0 {
+						// Where "" is no missing code, an empty row is still no row of data.
+						if rowEnd, empty := d.emptyRow(text, start); empty {
+							i, gaps = rowEnd, width
+							break row
+						}
+					}
+					if fault != wellQuoted || !ok {
+						return p.badCell(b, l, c, startLine, cell, fault)
 					}
 					if quoted {
 						line += bytes.Count(text[i:end], []byte{'\n'})
@@ -96,13 +105,13 @@ func (p *parser) parse(b *Block, l *layout) error {
 					}
 					i = end
 				}
-				row[l.to[c]] = v
+				cells[l.to[c]] = v
 			case skipped:
-				i, line = d.skip(text, i, line)
+				i, line = d.skip(text, i, line, &b.extra)
 			default:
-				cell, end, quoted, trailing := d.cell(text, i, &b.extra)
-				if trailing {
-					return p.badCell(b, l, c, startLine, cell, true)
+				cell, end, quoted, fault := d.cell(text, i, &b.extra)
+				if fault != wellQuoted {
+					return p.badCell(b, l, c, startLine, cell, fault)
 				}
 				s := span{quoted: quoted}
 				if quoted {
@@ -113,30 +122,32 @@ func (p *parser) parse(b *Block, l *layout) error {
 					s.from = int32(i + bytes.Index(text[i:end], cell))
 					s.to = s.from + int32(len(cell))
 				}
-				if l.uses[c] == timeText {
+				if l.uses[c] != groupText {
 					b.times = append(b.times, s)
-				} else {
+				}
+				if l.uses[c] != timeText {
 					b.groups = append(b.groups, s)
 				}
 				i = end
 			}
-			if text[i] == '\n' {
-				if c < last {
-					if blankLine(text[start:i], d.separator) {
-						gaps = width + 1
-						break
-					}
-					return p.ragged(b, l, text[start:i], startLine)
+			ended := text[i] == '\n'
+			if ended != (c == last) {
+				if rowEnd, empty := d.emptyRow(text, start); empty {
+					i, gaps = rowEnd, width
+					break row
 				}
-				break
+				return p.ragged(b, l, text[start:], startLine)
 			}
-			if c == last {
-				end := i + bytes.IndexByte(text[i:], '\n')
-				return p.ragged(b, l, text[start:end], startLine)
+			if ended {
+				break row
 			}
 			i++
 		}
-		if gaps >= width && blankLine(text[start:i], d.separator) {
+		empty := false
+		if gaps >= width {
+			_, empty = d.emptyRow(text, start)
+		}
+		if empty {
 			// A row without any cell is no row of data.
 			b.Data = b.Data[:at]
 			b.times, b.groups = b.times[:min(len(b.times), b.Rows)], b.groups[:min(len(b.groups), b.Rows)]
@@ -162,7 +173,7 @@ func (p *parser) parse(b *Block, l *layout) error {
 
 // passHead returns position and line of the first row of data.
 func (d *dialect) passHead(text []byte, rows int) (at, line int) {
-	head := &rowReader{d: d, text: text, at: len(text) - len(bytes.TrimPrefix(text, []byte("\xef\xbb\xbf")))}
+	head := &rowReader{d: d, text: text, at: len(text) - len(bytes.TrimPrefix(text, byteOrderMark))}
 	for range rows {
 		head.next()
 	}
@@ -170,7 +181,7 @@ func (d *dialect) passHead(text []byte, rows int) (at, line int) {
 }
 
 // skip passes over a cell nobody needs; only quotes make that more than a search.
-func (d *dialect) skip(text []byte, i, line int) (int, int) {
+func (d *dialect) skip(text []byte, i, line int, extra *[]byte) (int, int) {
 	j := i
 	for text[j] == ' ' || text[j] == '\t' && d.separator != '\t' {
 		j++
@@ -181,31 +192,22 @@ func (d *dialect) skip(text []byte, i, line int) (int, int) {
 		}
 		return j, line
 	}
-	var scratch []byte
-	_, end, _, _ := d.cell(text, i, &scratch)
+	cell, end, _, _ := d.cell(text, i, extra)
+	*extra = (*extra)[:len(*extra)-len(cell)]
 	return end, line + bytes.Count(text[i:end], []byte{'\n'})
 }
 
-func blankLine(line []byte, separator byte) bool {
-	for _, c := range line {
-		if c != separator && c != ' ' && c != '\t' && c != '\r' {
-			return false
-		}
-	}
-	return true
-}
-
-func (p *parser) badCell(b *Block, l *layout, c, line int, cell []byte, trailing bool) error {
-	shown := string(cell)
-	if len(shown) > 40 {
-		shown = shown[:40] + "…"
-	}
+func (p *parser) badCell(b *Block, l *layout, c, line int, cell []byte, fault quoteFault) error {
+	cell = trim(cell)
+	shown := shorten(string(cell), 40)
 	e := &Error{Kind: BadContent, File: b.file, Line: line, Column: c + 1, Name: l.names[c]}
-	switch v, finite := looseNumber(cell); {
-	case trailing:
+	switch {
+	case fault == openQuote:
+		e.Problem, e.Hint = openQuoteProblem, openQuoteHint
+	case fault == textAfterQuote:
 		e.Problem = fmt.Sprintf("text follows the closing quote of %q", shown)
 		e.Hint = "a quote within a quoted cell is written twice"
-	case finite || v != 0:
+	case infinite(cell, l.dialect.point):
 		e.Problem = fmt.Sprintf("%q is not a finite number", shown)
 		e.Hint = fmt.Sprintf("add %q to read.missing if it stands for a missing value", shown)
 	default:
@@ -218,13 +220,21 @@ func (p *parser) badCell(b *Block, l *layout, c, line int, cell []byte, trailing
 	return e
 }
 
-func (p *parser) ragged(b *Block, l *layout, row []byte, line int) error {
+const (
+	openQuoteProblem = "a quote is never closed"
+	openQuoteHint    = "a quote within a quoted cell is written twice"
+)
+
+// ragged is the error about the row that starts the text.
+func (p *parser) ragged(b *Block, l *layout, text []byte, line int) error {
 	var extra []byte
 	found := 1
-	ended := append(slices.Clone(row), '\n')
 	for i := 0; ; i++ {
-		_, end, _, _ := l.dialect.cell(ended, i, &extra)
-		if ended[end] == '\n' {
+		_, end, _, fault := l.dialect.cell(text, i, &extra)
+		if fault == openQuote {
+			return &Error{Kind: BadContent, File: b.file, Line: line, Problem: openQuoteProblem, Hint: openQuoteHint}
+		}
+		if text[end] == '\n' {
 			break
 		}
 		found++

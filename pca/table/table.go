@@ -44,6 +44,9 @@ type Table struct {
 func Open(_ context.Context, o Options) (*Table, error) { return openWith(o, openFile, chunkBytes) }
 
 func openWith(o Options, open opener, pieces int) (*Table, error) {
+	if err := checkSeparator(&o); err != nil {
+		return nil, err
+	}
 	files, err := expand(o.Dir, o.Files)
 	if err != nil {
 		return nil, err
@@ -72,6 +75,20 @@ func openWith(o Options, open opener, pieces int) (*Table, error) {
 	return t, nil
 }
 
+// checkSeparator refuses separators that could be part of a number or of the quoting.
+func checkSeparator(o *Options) error {
+	if o.Separator == "" {
+		return nil
+	}
+	if len(o.Separator) > 1 || strings.Contains("\"\r\n +-.eE0123456789", o.Separator) || o.Separator >= "\x80" {
+		return &Error{Kind: WrongInput, Problem: fmt.Sprintf("separator %q cannot stand between numbers; expected one character, such as , ; | or a tab", o.Separator)}
+	}
+	if o.DecimalComma && o.Separator == "," {
+		return &Error{Kind: WrongInput, Problem: `separator "," is the decimal comma too`, Hint: "such tables usually have ; between cells"}
+	}
+	return nil
+}
+
 // Files are the paths of the files read, in order.
 func (t *Table) Files() []string { return t.files }
 
@@ -83,7 +100,11 @@ func (t *Table) Notes() []Note {
 	if t.blank == 0 {
 		return t.notes
 	}
-	return append(slices.Clone(t.notes), Note{Text: fmt.Sprintf("%d empty rows were passed over", t.blank)})
+	text := fmt.Sprintf("%d empty rows were passed over", t.blank)
+	if t.blank == 1 {
+		text = "1 empty row was passed over"
+	}
+	return append(slices.Clone(t.notes), Note{Text: text})
 }
 
 // assign decides what the columns of the first file are.
@@ -111,6 +132,8 @@ func (t *Table) assign(h *head) error {
 	for j, n := range h.names {
 		s := &h.sample[j]
 		switch {
+		case n == o.Time && n == o.Groups:
+			l.uses[j] = timeAndGroupText
 		case n == o.Time && n != "":
 			l.uses[j] = timeText
 		case n == o.Groups && n != "":

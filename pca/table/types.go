@@ -5,18 +5,28 @@ import (
 	"math"
 	"strconv"
 	"strings"
+	"unicode/utf8"
 )
 
-// looseNumber reads what a person would call a number, infinite or not.
-func looseNumber(cell []byte) (v float64, finite bool) {
-	v, err := strconv.ParseFloat(string(cell), 64)
-	if err != nil && !math.IsInf(v, 0) {
-		return 0, false
+// infinite tells whether a cell is a number too large for double precision, or the word.
+func infinite(cell []byte, point byte) bool {
+	word := strings.ToLower(strings.TrimLeft(string(cell), "+-"))
+	if word == "inf" || word == "infinity" {
+		return true
 	}
-	if math.IsNaN(v) {
-		return 0, false
+	v, _ := readNumber(cell, point)
+	return math.IsInf(v, 0)
+}
+
+// shorten cuts a text to show to n bytes, between characters.
+func shorten(text string, n int) string {
+	if len(text) <= n {
+		return text
 	}
-	return v, !math.IsInf(v, 0)
+	for n > 0 && !utf8.RuneStart(text[n]) {
+		n--
+	}
+	return text[:n] + "…"
 }
 
 func looksDecimalComma(cell []byte) bool {
@@ -34,15 +44,19 @@ type sampleColumn struct {
 }
 
 func (s *sampleColumn) add(cell []byte, d *dialect) {
+	cell = trim(cell)
 	v, ok := d.value(cell)
 	switch {
+	case len(cell) == 0: // says nothing about the kind, missing code or not
+		s.missing++
+		return
 	case ok && math.IsNaN(v):
 		s.missing++
 		return
 	case ok:
 		s.numbers++
 	default:
-		if v, _ := looseNumber(cell); math.IsInf(v, 0) {
+		if infinite(cell, d.point) {
 			s.numbers++ // an infinite value is an error of a column of numbers, not text
 			break
 		}
@@ -60,10 +74,7 @@ func (s *sampleColumn) isText() bool { return 2*s.numbers < s.filled }
 func (s *sampleColumn) note() string {
 	quoted := make([]string, len(s.examples))
 	for i, e := range s.examples {
-		if len(e) > 24 {
-			e = e[:24] + "…"
-		}
-		quoted[i] = strconv.Quote(e)
+		quoted[i] = strconv.Quote(shorten(e, 24))
 	}
 	return "left out: text (" + strings.Join(quoted, ", ") + ")"
 }

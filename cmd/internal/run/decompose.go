@@ -88,7 +88,7 @@ func sameMethods(a, b []pca.Method) bool {
 }
 
 func (w *work) decomposeOptions() pca.Options {
-	o := pca.Options{Matrix: pca.Matrix(w.cfg.Decompose.Matrix), Threads: w.options.Threads}
+	o := pca.Options{Matrix: pca.Matrix(w.cfg.Decompose.Matrix)}
 	for _, i := range w.active {
 		o.Names = append(o.Names, w.roles.labels[i])
 		o.Methods = append(o.Methods, w.roles.methods[i])
