@@ -53,8 +53,6 @@ func (l *loader) choice(k *Key, path string, at, node *yaml.Node, into reflect.V
 
 // withoutRule reports a rule that is not known, and the keys that no rule has.
 func (l *loader) withoutRule(k *Key, path string, entries []entry) {
-	// Of all that belongs to the rule nothing can be said.
-	l.bad[path] = true
 	known := k.parameters()
 	for _, e := range entries {
 		switch {

@@ -246,6 +246,9 @@ hint: an empty list is []
 pump.yaml:5:14: read.leave_out: expected a list, found a mapping
 hint: an empty list is []
 `},
+	{"item without a name", start + "  leave_out: [\"\"]\n", nil, `
+pump.yaml:4:15: read.leave_out: expected text that is not empty, found text ""
+`},
 	{"items", "axisfold: 1\nread:\n  files: [a, [b], \"\", ~, a]\n  missing: [NA, {a: b}, 9, \"9\"]\ndraw: {formats: [svg, gif, svg]}\n", nil, `
 pump.yaml:3:14: read.files: expected text, found a list
 pump.yaml:3:19: read.files: expected text that is not empty, found text ""

@@ -61,7 +61,8 @@ var sections = []Key{
 	}},
 }
 
-// Keys describes the whole run file, in the order in which it is written.
+// Keys describes the whole run file, in the order in which it is written. It is there to
+// be read: sections share their keys with the loader.
 func Keys() []Key { return slices.Clone(sections) }
 
 func defaultMatrix(f *File) any {

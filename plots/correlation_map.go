@@ -37,7 +37,7 @@ var correlationMap = Picture{Name: "correlation-map",
 		p := len(names)
 		strong, r := strongestPair(m.Correlations, p)
 		c = page(c, fmt.Sprintf("Correlations of %d channels, like beside like", p),
-			fmt.Sprintf("strongest: %s and %s, %+.3f", names[strong[0]], names[strong[1]], r))
+			fmt.Sprintf("strongest: %s and %s, %+.4g", names[strong[0]], names[strong[1]], r))
 		style := textStyle(smallSize, ink, text.XRight, text.YCenter)
 		column := vg.Length(0)
 		for _, n := range names {

@@ -4,7 +4,6 @@ import (
 	"math"
 	"strconv"
 
-	"gonum.org/v1/plot"
 	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
@@ -86,13 +85,25 @@ func (f *frame) base(y float64) {
 	f.c.StrokeLine2(line(ink, hairline), f.left, f.y(y), f.right, f.y(y))
 }
 
-// ticks are round numbers within the range.
+// ticks are round numbers within the range, about five: multiples of 1, 2, 2.5 or 5 times
+// a power of ten.
 func ticks(low, high float64) []float64 {
-	var out []float64
-	for _, t := range (plot.DefaultTicks{}).Ticks(low, high) {
-		if t.Label != "" && t.Value >= low-1e-9*(high-low) && t.Value <= high+1e-9*(high-low) {
-			out = append(out, t.Value)
+	span := high - low
+	if !(span > 0) {
+		return nil
+	}
+	raw := span / 5
+	power := math.Pow(10, math.Floor(math.Log10(raw)))
+	step := 10 * power
+	for _, m := range []float64{1, 2, 2.5, 5} {
+		if m*power >= raw*.999 {
+			step = m * power
+			break
 		}
+	}
+	var out []float64
+	for i := math.Ceil(low/step - 1e-9); i*step <= high+1e-9*span; i++ {
+		out = append(out, i*step)
 	}
 	return out
 }

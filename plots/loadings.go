@@ -49,7 +49,10 @@ var loadings = Picture{Name: "loadings", ready: always,
 		if m.Verdict.Components == 0 {
 			title = "No component kept; what the first is made of"
 		}
-		if k == 1 && m.Verdict.Components == 1 {
+		if k < m.Verdict.Components {
+			title = fmt.Sprintf("What the first %d of %d components kept are made of", k, m.Verdict.Components)
+		}
+		if m.Verdict.Components == 1 {
 			title = "What the component kept is made of"
 		}
 		c = page(c, title, subtitle)

@@ -37,7 +37,7 @@ var loadingsPlane = Picture{Name: "loadings-plane", ready: twoKept, size: square
 		subtitle = "loadings; farther from the middle: more of the channel's variance told by these two"
 	}
 	if unlabelled > 0 {
-		subtitle += fmt.Sprintf("; %d channels have no room for a name", unlabelled)
+		subtitle += fmt.Sprintf("; no room for %d of %d names", unlabelled, p)
 	}
 	page(c, fmt.Sprintf("Channels in the plane of C1 and C2: %s of the variance", percent(d.CumulativeShare(1))), subtitle)
 	f.xAxis(axisName(m, 0), false)

@@ -122,7 +122,7 @@ func newCanvas(format string, w, h vg.Length) (canvas, error) {
 	case "png":
 		return vgimg.PngCanvas{Canvas: vgimg.NewWith(vgimg.UseWH(w, h), vgimg.UseDPI(pixelsPerInch))}, nil
 	case "pdf":
-		return vgpdf.New(w, h), nil
+		return outlined{vgpdf.New(w, h)}, nil
 	}
 	return nil, fmt.Errorf("unknown format %q; known: %s", format, strings.Join(Formats, ", "))
 }

@@ -7,6 +7,7 @@ import (
 
 	xfont "golang.org/x/image/font"
 	"gonum.org/v1/plot/font"
+	"gonum.org/v1/plot/font/liberation"
 	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
@@ -42,6 +43,9 @@ const (
 	strongLine = vg.Length(1.3)
 )
 
+// fonts holds the Liberation family, which comes with the drawing library.
+var fonts = font.NewCache(liberation.Collection())
+
 func face(size vg.Length, bold bool) font.Font {
 	f := font.Font{Typeface: "Liberation", Variant: "Sans", Size: size}
 	if bold {
@@ -51,7 +55,7 @@ func face(size vg.Length, bold bool) font.Font {
 }
 
 func textStyle(size vg.Length, c color.Color, x text.XAlignment, y text.YAlignment) text.Style {
-	return text.Style{Color: c, Font: face(size, false), XAlign: x, YAlign: y, Handler: text.Plain{Fonts: font.DefaultCache}}
+	return text.Style{Color: c, Font: face(size, false), XAlign: x, YAlign: y, Handler: text.Plain{Fonts: fonts}}
 }
 
 // tickStyle is that of numbers below an axis.
