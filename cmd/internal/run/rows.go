@@ -3,6 +3,7 @@ package run
 import (
 	"context"
 	"io"
+	"math"
 	"runtime"
 	"slices"
 	"sync"
@@ -59,6 +60,14 @@ func (w *work) rows(ctx context.Context) error {
 	if threads <= 0 {
 		threads = runtime.GOMAXPROCS(0)
 	}
+	follow := newLag(min(k, 1) + models)
+	values := make([]float64, min(k, 1)+models)
+	base := 0.0 // score of the mean row on C1, where a scaling does not centre at the mean
+	if k > 0 {
+		for j, v := range w.study.Decomposition.Offset {
+			base += v * w.study.Decomposition.Vector(j, 0)
+		}
+	}
 	makers := make([]*lineMaker, threads)
 	spare := sync.Pool{New: func() any { return new(blockLines) }}
 	done := int64(0)
@@ -74,6 +83,16 @@ func (w *work) rows(ctx context.Context) error {
 		lines := b.Result.(*blockLines)
 		defer spare.Put(lines)
 		w.sample.take(b, lines, done, layout.Group)
+		for r := range b.Rows {
+			at := 0
+			if k > 0 {
+				values[0], at = lines.scores[r*k]-base, 1
+			}
+			for i := range models {
+				values[at+i] = lines.observed[i][r] - lines.predicted[i][r]
+			}
+			follow.add(b, r, layout.Group, values)
+		}
 		done += int64(b.Rows)
 		if err := writeLines(scores, lines.scoreText.Bytes()); err != nil {
 			return err
@@ -83,6 +102,7 @@ func (w *work) rows(ctx context.Context) error {
 	if err != nil {
 		return err
 	}
+	w.warnOfFollowing(follow, min(k, 1))
 	for _, o := range []*output{scores, predictions} {
 		if o != nil {
 			if err := o.Close(); err != nil {
@@ -91,6 +111,25 @@ func (w *work) rows(ctx context.Context) error {
 		}
 	}
 	return nil
+}
+
+// warnOfFollowing says where rows are not independent of the rows before them. The first
+// series, if there is one, is that of C1; the rest are residuals.
+func (w *work) warnOfFollowing(l *lag, scores int) {
+	if scores == 1 && l.notable(0) {
+		w.warn("autocorrelated-rows", "rows follow one another: C1 has an autocorrelation of %.2f at lag one, so that the %d rows say about as much as %.0f independent ones; what takes rows as independent (parallel analysis, standard errors of roots) is too sure of itself",
+			l.correlation(0), l.rows, l.effective(0))
+	}
+	if w.study.Regression == nil {
+		return
+	}
+	for i, m := range w.study.Regression.Result.Models {
+		if s := scores + i; l.notable(s) {
+			r := l.correlation(s)
+			w.warn("autocorrelated-residuals", "%s: residuals have an autocorrelation of %.2f at lag one; the standard errors take them as independent and may be too small by a factor of about %.1f",
+				m.Response, r, math.Sqrt((1+r)/(1-math.Min(r, .9999))))
+		}
+	}
 }
 
 func writeLines(o *output, text []byte) error {
