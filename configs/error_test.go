@@ -305,11 +305,11 @@ hint: known: fixed, share, eigenvalue-above, broken-stick, parallel
 pump.yaml:5:39: regress.retain.rule: expected a word, found nothing
 hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, cross-validation, one-standard-error
 `},
-	{"parameters of other rules", start + "retain: {rule: fixed, components: 3, percentile: 95}\nregress: {response: y, retain: {rule: broken-stick, folds: 5}}\n", nil, `
+	{"parameters of other rules", start + "retain: {rule: fixed, components: 3, percentile: 95}\nregress: {response: y, retain: {rule: broken-stick, at_least: 5}}\n", nil, `
 pump.yaml:4:38: retain: rule fixed takes no "percentile"
 hint: it takes components
-pump.yaml:5:53: regress.retain: rule broken-stick takes no "folds"
-hint: it takes no parameters
+pump.yaml:5:53: regress.retain: rule broken-stick takes no "at_least"
+hint: it takes folds, arrangement, order
 `},
 	{"slip in a parameter", start + "retain: {rule: parallel, percentil: 95}\n", nil, `
 pump.yaml:4:26: retain: rule parallel takes no "percentil"

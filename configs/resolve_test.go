@@ -108,14 +108,15 @@ func TestDefaultsOfRules(t *testing.T) {
 		}
 	}
 	for text, want := range map[string]Rule{
-		"fixed, components: 0": {Order: "variance"},
+		"fixed, components: 0": {},
 		"share":                {AtLeast: 0.9},
 		"eigenvalue-above":     {Value: 1},
 		"broken-stick":         {},
 		"parallel":             {Reference: "percentile", Percentile: 95, Replicates: 1000},
-		"cross-validation":     {Folds: 10, Arrangement: "blocks", Order: "variance"},
-		"one-standard-error":   {Folds: 10, Arrangement: "blocks", Order: "variance"},
+		"cross-validation":     {},
+		"one-standard-error":   {},
 	} {
+		want.Folds, want.Arrangement, want.Order = 10, "blocks", "variance"
 		f := load(t, start+"regress: {response: y, retain: {rule: "+text+"}}\n")
 		want.Rule = f.Regress.Retain.Rule
 		if f.Regress.Retain != want {

@@ -1,5 +1,7 @@
 package configs
 
+import "slices"
+
 // target is what a rule decides on.
 type target string
 
@@ -26,7 +28,7 @@ var rules = []listed{
 	{first, RuleDescription{"fixed", "the number given", []Key{
 		{Name: "components", Kind: Whole, Required: true, Range: atLeast(1), Doc: "how many to keep"}}}},
 	{second, RuleDescription{"fixed", "the number given", []Key{
-		{Name: "components", Kind: Whole, Required: true, Range: atLeast(0), Doc: "how many enter"}, order}}},
+		{Name: "components", Kind: Whole, Required: true, Range: atLeast(0), Doc: "how many enter"}}}},
 	{either, RuleDescription{"share", "the fewest that hold a share of the total variance", []Key{
 		{Name: "at_least", Kind: Number, Range: upTo(1), Default: 0.9, Doc: "share of the total variance"}}}},
 	{either, RuleDescription{"eigenvalue-above", "eigenvalues above a multiple of their mean", []Key{
@@ -43,21 +45,30 @@ var rules = []listed{
 var order = Key{Name: "order", Kind: Word, Allowed: []string{"variance", "correlation"}, Default: "variance",
 	Doc: "in which components enter: by their variance, or by their correlation with the response"}
 
-// heldOut are the parameters of rules that judge by held-out rows.
-var heldOut = []Key{
+// judged are parameters of every rule in a regression: whatever decides, the error of the
+// fit is judged on held-out rows.
+var judged = []Key{
 	{Name: "folds", Kind: Whole, Range: from(2, 100000), Default: 10, Doc: "parts, each held out once"},
 	{Name: "arrangement", Kind: Word, Allowed: []string{"random", "blocks", "groups"}, Default: "blocks", Doc: "of rows into folds: dealt at random, in stretches, or by read.groups"},
 	order,
-	{Name: "most_components", Kind: Whole, Range: atLeast(1), Blank: "all", Doc: "how many to consider; all takes as many as the data carry"},
 }
+
+// heldOut are the parameters of rules that decide by held-out rows.
+var heldOut = append(slices.Clone(judged), Key{Name: "most_components", Kind: Whole, Range: atLeast(1), Blank: "all",
+	Doc: "how many to consider; all takes as many as the data carry"})
 
 func rulesFor(t target) []RuleDescription {
 	var out []RuleDescription
 	for _, r := range rules {
 		for _, have := range r.targets {
-			if have == t {
-				out = append(out, r.RuleDescription)
+			if have != t {
+				continue
 			}
+			d := r.RuleDescription
+			if t == regressors && !slices.ContainsFunc(d.Parameters, func(k Key) bool { return k.Name == "folds" }) {
+				d.Parameters = slices.Concat(d.Parameters, judged)
+			}
+			out = append(out, d)
 		}
 	}
 	return out

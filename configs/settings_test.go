@@ -49,6 +49,8 @@ regress.predictors [] (default)
 regress.intercept true (default)
 regress.retain.rule fixed
 regress.retain.components 2
+regress.retain.folds 10 (default)
+regress.retain.arrangement blocks (default)
 regress.retain.order variance (default)
 regress.confidence 0.95 (default)
 draw.formats [svg] (default)

@@ -20,7 +20,7 @@ type foldPlan struct {
 	arrangement string
 	folds       int
 	seed        uint64
-	// flexible folds were not asked for: tables of fewer rows get as many as they fill.
+	// flexible: a table of fewer rows gets as many folds as it fills.
 	flexible bool
 }
 

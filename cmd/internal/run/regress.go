@@ -18,9 +18,6 @@ func (w *work) regress(context.Context) error {
 	}
 	o := pcr.Options{Predictors: w.decomposeOptions(), ThroughOrigin: !g.Intercept, Order: pcr.Order(g.Retain.Order),
 		Confidence: g.Confidence, Most: g.Retain.MostComponents, Threads: w.options.Threads}
-	if o.Order == "" {
-		o.Order = pcr.ByVariance
-	}
 	reg := &report.Regression{Rule: g.Retain.Rule, Order: o.Order, Confidence: g.Confidence, Origin: o.ThroughOrigin}
 	if w.plan != nil {
 		reg.Arrangement = w.plan.arrangement

@@ -13,6 +13,7 @@ import (
 	"axisfold/pca"
 	"axisfold/pca/retain"
 	"axisfold/pca/table"
+	"axisfold/pcr"
 )
 
 // Options are what the command line adds to the run file.
@@ -89,18 +90,17 @@ func (w *work) read(ctx context.Context) error {
 	return w.checkRows()
 }
 
-// foldsOf returns the folds that the regression's rule asks for. Rules that look at no
-// folds still get the default ones, so that every fit comes with its held-out error.
+// foldsOf returns the folds of the regression. Rules that do not decide by them still
+// have them, so that every fit comes with its held-out error; there a table of fewer rows
+// gets as many folds as it fills.
 func foldsOf(cfg *configs.File) *foldPlan {
 	if cfg.Regress == nil {
 		return nil
 	}
 	r := cfg.Regress.Retain
-	p := &foldPlan{arrangement: r.Arrangement, folds: r.Folds, seed: cfg.Seed}
-	if p.arrangement == "" {
-		p.arrangement, p.folds, p.flexible = blockFolds, 10, true
-	}
-	return p
+	choice := pcr.Choice(r.Rule)
+	return &foldPlan{arrangement: r.Arrangement, folds: r.Folds, seed: cfg.Seed,
+		flexible: choice != pcr.Minimum && choice != pcr.OneStandardError}
 }
 
 // checkRows refuses tables that cannot carry any analysis, before anything is computed.

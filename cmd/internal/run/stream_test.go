@@ -67,7 +67,7 @@ func TestStreamedEqualsHeld(t *testing.T) {
 axisfold: 1
 read: {files: x.csv, groups: g}
 retain: {rule: fixed, components: 2}
-regress: {response: y, retain: {rule: cross-validation, folds: 4}}
+regress: {response: y, retain: {rule: fixed, components: 3, folds: 4}}
 `
 		path := filepath.Join(dir, "run.yaml")
 		if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
