@@ -102,8 +102,12 @@ func referenceRoot(sorted []float64, s Settings) (reference, slip float64) {
 
 // NullRoots returns the leading min(p, n-1) roots of replicates tables of e's shape whose
 // channels are independent and normal, replicates×m row-major, each row descending. Every
-// replicate has its own random stream, so the numbers do not depend on the threads.
+// replicate has its own random stream, so the numbers do not depend on the threads. They
+// are kept with e and must not be changed.
 func NullRoots(e *Evidence, replicates int) []float64 {
+	if have, ok := e.null[replicates]; ok {
+		return have
+	}
 	m := len(e.Values)
 	out := make([]float64, replicates*m)
 	threads := e.Threads
@@ -121,5 +125,9 @@ func NullRoots(e *Evidence, replicates int) []float64 {
 		})
 	}
 	wg.Wait()
+	if e.null == nil {
+		e.null = map[int][]float64{}
+	}
+	e.null[replicates] = out
 	return out
 }

@@ -25,6 +25,10 @@ type Evidence struct {
 	Rank       int
 	Seed       uint64
 	Threads    int // the verdict does not depend on it
+
+	// null keeps the roots of independent channels by number of replicates: several
+	// verdicts rest on the same draws.
+	null map[int][]float64
 }
 
 // EvidenceFor gathers the evidence from a decomposition. deviations are the standard

@@ -26,6 +26,7 @@ type folder struct {
 	final   string
 	partial string
 	made    []string // folders above, made for this run; the deepest first
+	open    func(path string) (io.WriteCloser, error)
 	outputs []report.File
 }
 
@@ -37,7 +38,7 @@ func newFolder(final, runFile string, replace bool) (*folder, error) {
 	if err := mayReplace(final, runFile, replace); err != nil {
 		return nil, err
 	}
-	f := &folder{final: final}
+	f := &folder{final: final, open: func(path string) (io.WriteCloser, error) { return os.Create(path) }}
 	parent := filepath.Dir(final)
 	for dir := parent; ; dir = filepath.Dir(dir) {
 		if _, err := os.Stat(dir); !errors.Is(err, fs.ErrNotExist) || dir == filepath.Dir(dir) {
@@ -160,7 +161,7 @@ func relativeTo(dir, path string) string {
 // output is a file of the run folder being written; it is hashed and counted on the way.
 type output struct {
 	*bufio.Writer
-	file *os.File
+	file io.WriteCloser
 	sum  hash.Hash
 	to   *folder
 	name string
@@ -182,7 +183,7 @@ func (f *folder) create(name string) (*output, error) {
 	if err := os.MkdirAll(filepath.Dir(path), 0o777); err != nil {
 		return nil, f.writeError(name, err)
 	}
-	file, err := os.Create(path)
+	file, err := f.open(path)
 	if err != nil {
 		return nil, f.writeError(name, err)
 	}

@@ -60,8 +60,7 @@ func (w *work) chooseRegressors(o *pcr.Options) error {
 		o.Components = r.Components
 		return nil
 	}
-	e := w.evidence()
-	v, err := retain.Apply(r.Rule, &e, settingsOf(r))
+	v, err := retain.Apply(r.Rule, w.roots, settingsOf(r))
 	if err != nil {
 		return err
 	}

@@ -23,8 +23,7 @@ type roles struct {
 	notes      []report.Note
 }
 
-func (r *roles) width() int     { return len(r.use) }
-func (r *roles) responses() int { return len(r.use) - r.channels }
+func (r *roles) width() int { return len(r.use) }
 
 // assignRoles matches the run file with the columns of the table.
 func assignRoles(cfg *configs.File, columns []table.Column) (*roles, error) {

@@ -7,6 +7,7 @@ package run
 import (
 	"context"
 	"fmt"
+	"io"
 
 	"axisfold/cmd/internal/report"
 	"axisfold/configs"
@@ -24,7 +25,9 @@ type Options struct {
 	Version string
 	Set     []string // overrides, for the manifest
 
-	held int64 // in place of heldCells, for tests; 0 takes it
+	// For tests: a bound in place of heldCells, and files that fail.
+	held int64
+	open func(path string) (io.WriteCloser, error)
 }
 
 // Execute runs the run file and returns the study and the folder written. On any error,
@@ -36,6 +39,9 @@ func Execute(ctx context.Context, cfg *configs.File, o Options) (*report.Study, 
 		return nil, "", err
 	}
 	defer f.discard()
+	if o.open != nil {
+		f.open = o.open
+	}
 	w := &work{cfg: cfg, options: o, folder: f}
 	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.retain, w.regress, w.rows, w.draw, w.write} {
 		if err := stage(ctx); err != nil {
@@ -65,6 +71,7 @@ type work struct {
 	active  []int         // channels that take part, by position in the prepared rows
 	dropped []report.Note // channels that do not
 	study   *report.Study
+	roots   *retain.Evidence // what retention rules judge, with the draws they share
 	sample  sample
 }
 
@@ -123,18 +130,14 @@ func (w *work) checkRows() error {
 	return &pca.DataError{Problem: problem, Hint: hint}
 }
 
-// evidence is what retention rules judge.
-func (w *work) evidence() retain.Evidence {
+// retain runs the rule of the run file and, beside it, all others.
+func (w *work) retain(context.Context) error {
 	deviations := make([]float64, len(w.active))
 	for j, i := range w.active {
 		deviations[j] = w.whole.Deviation(i)
 	}
-	return retain.EvidenceFor(w.study.Decomposition, deviations, w.cfg.Seed, w.options.Threads)
-}
-
-// retain runs the rule of the run file and, beside it, all others.
-func (w *work) retain(context.Context) error {
-	e := w.evidence()
+	e := retain.EvidenceFor(w.study.Decomposition, deviations, w.cfg.Seed, w.options.Threads)
+	w.roots = &e
 	r := w.cfg.Retain
 	verdict, err := retain.Apply(r.Rule, &e, settingsOf(r))
 	if err != nil {
