@@ -71,7 +71,12 @@ func status(err error) int {
 	switch {
 	case errors.As(err, &interrupted{}):
 		return statusInterrupted
-	case errors.As(err, &usage), errors.As(err, &config), errors.As(err, &folder):
+	case errors.As(err, &usage), errors.As(err, &config):
+		return statusUsage
+	case errors.As(err, &folder):
+		if folder.Broken {
+			return statusUnexpected
+		}
 		return statusUsage
 	case errors.As(err, &tableError):
 		if tableError.Kind == table.WrongInput {

@@ -47,7 +47,7 @@ func newFolder(final, runFile string, replace bool) (*folder, error) {
 		f.made = append(f.made, dir)
 	}
 	if err := os.MkdirAll(parent, 0o777); err != nil {
-		return nil, &FolderError{final, problemOf(err), "name another folder with --out"}
+		return nil, &FolderError{final, problemOf(err), "name another folder with --out", false}
 	}
 	for attempt := 0; ; attempt++ {
 		f.partial = filepath.Join(parent, fmt.Sprintf(".%s.partial-%d-%d", filepath.Base(final), os.Getpid(), attempt))
@@ -56,7 +56,7 @@ func newFolder(final, runFile string, replace bool) (*folder, error) {
 			return f, nil
 		}
 		if !errors.Is(err, fs.ErrExist) {
-			return nil, &FolderError{final, problemOf(err), "name another folder with --out"}
+			return nil, &FolderError{final, problemOf(err), "name another folder with --out", false}
 		}
 	}
 }
@@ -64,6 +64,8 @@ func newFolder(final, runFile string, replace bool) (*folder, error) {
 // FolderError says why a run folder cannot be written.
 type FolderError struct {
 	Path, Problem, Hint string
+	// Broken: the folder was fine to write to, but writing failed, on a full disk say.
+	Broken bool
 }
 
 func (e *FolderError) Error() string { return e.Path + ": " + e.Problem }
@@ -85,27 +87,27 @@ func mayReplace(final, runFile string, replace bool) error {
 		return nil
 	}
 	if err != nil {
-		return &FolderError{final, problemOf(err), ""}
+		return &FolderError{final, problemOf(err), "", false}
 	}
 	if !info.IsDir() {
-		return &FolderError{final, "exists and is not a folder", "name another folder with --out"}
+		return &FolderError{final, "exists and is not a folder", "name another folder with --out", false}
 	}
 	entries, err := os.ReadDir(final)
 	if err != nil {
-		return &FolderError{final, problemOf(err), ""}
+		return &FolderError{final, problemOf(err), "", false}
 	}
 	if len(entries) == 0 {
 		return nil
 	}
 	m, err := readManifest(final)
 	if err != nil {
-		return &FolderError{final, "exists and is not a run folder", "name another folder with --out; this one stays as it is"}
+		return &FolderError{final, "exists and is not a run folder", "name another folder with --out; this one stays as it is", false}
 	}
 	if extra := strangers(final, m); extra != "" && !replace {
-		return &FolderError{final, fmt.Sprintf("holds %q, which no run wrote", extra), "move it, name another folder with --out, or give --replace to lose it"}
+		return &FolderError{final, fmt.Sprintf("holds %q, which no run wrote", extra), "move it, name another folder with --out, or give --replace to lose it", false}
 	}
 	if m.RunFile.Path != relativeTo(final, runFile) && !replace {
-		return &FolderError{final, fmt.Sprintf("was written by another run file, %q", m.RunFile.Path), "name another folder with --out, or give --replace"}
+		return &FolderError{final, fmt.Sprintf("was written by another run file, %q", m.RunFile.Path), "name another folder with --out, or give --replace", false}
 	}
 	return nil
 }
@@ -206,7 +208,7 @@ func (o *output) Close() error {
 }
 
 func (f *folder) writeError(name string, err error) error {
-	return &FolderError{filepath.Join(f.final, filepath.FromSlash(name)), "writing: " + problemOf(err), "nothing was kept of this run"}
+	return &FolderError{filepath.Join(f.final, filepath.FromSlash(name)), "writing: " + problemOf(err), "nothing was kept of this run", true}
 }
 
 // write makes one file from what fill writes.
@@ -229,14 +231,14 @@ func (f *folder) commit() error {
 	if _, err := os.Lstat(f.final); err == nil {
 		old = f.partial + "-old"
 		if err := os.Rename(f.final, old); err != nil {
-			return &FolderError{f.final, "moving the earlier folder aside: " + problemOf(err), ""}
+			return &FolderError{f.final, "moving the earlier folder aside: " + problemOf(err), "", false}
 		}
 	}
 	if err := os.Rename(f.partial, f.final); err != nil {
 		if old != "" {
 			os.Rename(old, f.final)
 		}
-		return &FolderError{f.final, problemOf(err), ""}
+		return &FolderError{f.final, problemOf(err), "", false}
 	}
 	if old != "" {
 		return os.RemoveAll(old)
