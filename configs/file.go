@@ -67,6 +67,9 @@ type Rule struct {
 	Reference      string  `key:"reference"`
 	Percentile     float64 `key:"percentile"`
 	Replicates     int     `key:"replicates"`
+	Power          int     `key:"power"`
+	Alpha          float64 `key:"alpha"`
+	Noise          float64 `key:"noise"`
 	Folds          int     `key:"folds"`
 	Arrangement    string  `key:"arrangement"`
 	Order          string  `key:"order"`

@@ -38,9 +38,21 @@ var rules = []listed{
 		{Name: "reference", Kind: Word, Allowed: []string{"percentile", "mean"}, Default: "percentile", Doc: "what of the replicates an eigenvalue must exceed"},
 		{Name: "percentile", Kind: Number, Range: below(100), Default: 95.0, Doc: "with reference: percentile"},
 		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Default: 1000, Doc: "tables of independent channels to draw"}}}},
+	{either, RuleDescription{"minimum-average-partial", "the number after which channels are least correlated with one another", []Key{
+		{Name: "power", Kind: Whole, Range: from(2, 4), Default: 4, Doc: "of the partial correlations; 2 is the first form, 4 the revised one"}}}},
+	{either, RuleDescription{"equal-roots", "up to where the remaining eigenvalues may be equal", []Key{alpha}}},
+	{either, RuleDescription{"tracy-widom", "eigenvalues above the largest of noise, tested one after another", []Key{alpha}}},
+	{either, RuleDescription{"hard-threshold", "singular values above the best threshold for white noise", []Key{
+		{Name: "noise", Kind: Number, Range: atLeast(0), Default: 0.0, Doc: "standard deviation of the noise in the scaled channels; 0 takes it from the median"}}}},
+	{either, RuleDescription{"evidence", "the largest evidence for components plus equal noise", nil}},
+	{either, RuleDescription{"bic", "the Bayesian information criterion of components plus equal noise", nil}},
+	{either, RuleDescription{"knee", "eigenvalues before the sharpest bend, a heuristic", nil}},
+	{either, RuleDescription{"agreement", "the number that most rules with a model of noise name", nil}},
 	{second, RuleDescription{"cross-validation", "the smallest error on held-out rows", heldOut}},
 	{second, RuleDescription{"one-standard-error", "the fewest within one standard error of the smallest error on held-out rows", heldOut}},
 }
+
+var alpha = Key{Name: "alpha", Kind: Number, Range: below(1), Default: 0.05, Doc: "probability of error of each test"}
 
 var order = Key{Name: "order", Kind: Word, Allowed: []string{"variance", "correlation"}, Default: "variance",
 	Doc: "in which components enter: by their variance, or by their correlation with the response"}

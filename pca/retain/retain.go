@@ -17,6 +17,9 @@ type Evidence struct {
 	Matrix pca.Matrix
 	// Values are the eigenvalues, descending, min(p, n-1) of them.
 	Values []float64
+	// Vectors are the eigenvectors, p×len(Values) row-major; rules that look at single
+	// channels need them.
+	Vectors []float64
 	// Total is the trace of the matrix: the sum of all p eigenvalues.
 	Total float64
 	// Deviations are the standard deviations of the p columns that were decomposed: all
@@ -34,7 +37,7 @@ type Evidence struct {
 // EvidenceFor gathers the evidence from a decomposition. deviations are the standard
 // deviations of the channels in their own units, divisor n-1.
 func EvidenceFor(d *pca.Decomposition, deviations []float64, seed uint64, threads int) Evidence {
-	e := Evidence{Rows: d.Rows, Matrix: d.Matrix, Values: d.Values, Total: d.Total, Rank: d.Rank,
+	e := Evidence{Rows: d.Rows, Matrix: d.Matrix, Values: d.Values, Vectors: d.Vectors, Total: d.Total, Rank: d.Rank,
 		Seed: seed, Threads: threads, Deviations: make([]float64, len(deviations))}
 	for j, s := range deviations {
 		e.Deviations[j] = 1
@@ -56,11 +59,14 @@ type Settings struct {
 	Reference  string  // parallel: "mean" or "percentile"
 	Percentile float64 // parallel
 	Replicates int     // parallel
+	Power      int     // minimum-average-partial: 2 (1976) to 4 (2000)
+	Alpha      float64 // equal-roots, tracy-widom: of each test
+	Noise      float64 // hard-threshold: standard deviation of the noise; 0 estimates it
 }
 
 // Defaults returns the settings a careful analyst would start from.
 func Defaults() Settings {
-	return Settings{Components: 1, AtLeast: 0.9, Value: 1, Reference: "percentile", Percentile: 95, Replicates: 1000}
+	return Settings{Components: 1, AtLeast: 0.9, Value: 1, Reference: "percentile", Percentile: 95, Replicates: 1000, Power: 4, Alpha: 0.05}
 }
 
 // Step is the evidence of a rule on one component: kept while value beats threshold.
@@ -97,7 +103,8 @@ type Rule struct {
 }
 
 // Rules is the list of all rules.
-var Rules = []Rule{fixed, share, eigenvalueAbove, brokenStick, parallel}
+var Rules = []Rule{fixed, share, eigenvalueAbove, brokenStick, parallel, minimumAveragePartial, equalRoots,
+	tracyWidom, hardThreshold, laplaceEvidence, bayesianInformation, knee, agreement}
 
 // Names returns the names of all rules.
 func Names() []string {

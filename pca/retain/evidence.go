@@ -1,0 +1,107 @@
+package retain
+
+import (
+	"fmt"
+	"math"
+)
+
+// Minka 2000 (Advances in Neural Information Processing Systems 13): Laplace's
+// approximation to the evidence of k components plus equal noise, and the cruder Bayesian
+// information criterion of the same model. Roots are taken with divisor n, as the maximum
+// likelihood has them.
+var (
+	laplaceEvidence = Rule{
+		Name:     "evidence",
+		Summary:  "the number with the largest evidence for components plus equal noise (Minka 2000)",
+		variants: []Settings{Defaults()},
+		apply: func(e *Evidence, _ Settings) Verdict {
+			return largest(e, Verdict{}, "log evidence", logEvidence)
+		},
+	}
+	bayesianInformation = Rule{
+		Name:     "bic",
+		Summary:  "the Bayesian information criterion of components plus equal noise",
+		variants: []Settings{Defaults()},
+		apply: func(e *Evidence, _ Settings) Verdict {
+			return largest(e, Verdict{}, "criterion", bic)
+		},
+	}
+)
+
+// largest takes the k with the largest score among 1..p-1; k = 0 has no rotation to
+// weigh and is left to other rules.
+func largest(e *Evidence, v Verdict, what string, score func(l []float64, p, k int, n float64) float64) Verdict {
+	p := e.Width()
+	n := float64(e.Rows)
+	if p < 3 {
+		return v.abstain("it needs three channels")
+	}
+	roots := make([]float64, p)
+	for a, l := range e.Values {
+		roots[a] = l * (n - 1) / n
+	}
+	best := math.Inf(-1)
+	most := min(p-1, e.Rank-1, e.Rows-2)
+	if most < 1 || e.Rank < min(p, e.Rows-1) || e.Values[len(e.Values)-1] <= 0 {
+		return v.abstain("some roots are zero: there is no noise to measure")
+	}
+	scores := make([]float64, len(e.Values))
+	for k := 1; k <= most; k++ {
+		scores[k-1] = score(roots, p, k, n)
+		if scores[k-1] > best {
+			best, v.Components = scores[k-1], k
+		}
+	}
+	for a := range e.Values {
+		s := scores[min(a, most-1)]
+		v.Steps = append(v.Steps, Step{Value: s, Threshold: best, Kept: a < v.Components})
+	}
+	v.Note = fmt.Sprintf("%s is largest (%.5g) with %d", what, best, v.Components)
+	if v.Components == most {
+		v.Note += ", the most it can weigh"
+	}
+	return v
+}
+
+// fitTerms is the log likelihood part shared by both: -(n/2)Σ ln l - (n(p-k)/2) ln v, and
+// the noise v, mean of the roots after k.
+func fitTerms(l []float64, p, k int, n float64) (fit, noise float64) {
+	for _, x := range l[k:p] {
+		noise += x / float64(p-k)
+	}
+	for _, x := range l[:k] {
+		fit -= n / 2 * math.Log(x)
+	}
+	return fit - n*float64(p-k)/2*math.Log(noise), noise
+}
+
+func logEvidence(l []float64, p, k int, n float64) float64 {
+	fit, noise := fitTerms(l, p, k, n)
+	pk, kk := float64(p), float64(k)
+	m := pk*kk - kk*(kk+1)/2
+	u := -kk * math.Ln2
+	for i := 1; i <= k; i++ {
+		half := (pk - float64(i) + 1) / 2
+		lg, _ := math.Lgamma(half)
+		u += lg - half*math.Log(math.Pi)
+	}
+	// ln|A|: equal roots would give ln 0; a gap of ε·l stands in for them.
+	logA := 0.0
+	for i := range k {
+		for j := i + 1; j < p; j++ {
+			hat := noise
+			if j < k {
+				hat = l[j]
+			}
+			tiny := 0x1p-52 * l[i]
+			logA += math.Log(math.Max(1/hat-1/l[i], tiny/(l[i]*l[i]))) + math.Log(math.Max(l[i]-l[j], tiny)) + math.Log(n)
+		}
+	}
+	return u + fit + (m+kk)/2*math.Log(2*math.Pi) - logA/2 - kk/2*math.Log(n)
+}
+
+func bic(l []float64, p, k int, n float64) float64 {
+	fit, _ := fitTerms(l, p, k, n)
+	m := float64(p*k) - float64(k*(k+1))/2
+	return fit - (m+float64(k))/2*math.Log(n)
+}
