@@ -2,7 +2,7 @@ package retain
 
 import (
 	"fmt"
-	"sort"
+	"slices"
 	"strings"
 )
 
@@ -12,36 +12,32 @@ var voters = []Rule{parallel, minimumAveragePartial, tracyWidom, laplaceEvidence
 
 var agreement = Rule{
 	Name: "agreement",
-	Summary: "the number that most of parallel, minimum-average-partial, tracy-widom, evidence, bic and broken-stick name; " +
-		"the smaller one when two are level",
+	Summary: "the middle of what parallel, minimum-average-partial, tracy-widom, evidence, bic and broken-stick say; " +
+		"the lower of two middles",
 	variants: []Settings{Defaults()},
 	apply: func(e *Evidence, _ Settings) Verdict {
 		var v Verdict
-		votes := map[int][]string{}
+		var numbers []int
+		by := map[int][]string{}
 		for _, r := range voters {
 			if one := r.run(e, Defaults()); !one.Abstains {
-				votes[one.Components] = append(votes[one.Components], r.Name)
+				numbers = append(numbers, one.Components)
+				by[one.Components] = append(by[one.Components], r.Name)
 			}
 		}
-		if len(votes) == 0 {
+		if len(numbers) == 0 {
 			return v.abstain("no rule speaks")
 		}
-		var numbers []int
-		for k := range votes {
-			numbers = append(numbers, k)
-		}
-		sort.Ints(numbers)
-		var said []string
-		for _, k := range numbers {
-			if len(votes[k]) > len(votes[v.Components]) {
-				v.Components = k
-			}
-			said = append(said, fmt.Sprintf("%d by %s", k, strings.Join(votes[k], ", ")))
-		}
+		slices.Sort(numbers)
+		v.Components = numbers[(len(numbers)-1)/2]
 		for a, l := range e.Values {
 			v.Steps = append(v.Steps, Step{Value: l, Kept: a < v.Components})
 		}
-		v.Note = strings.Join(said, "; ")
+		var said []string
+		for _, k := range slices.Compact(numbers) {
+			said = append(said, fmt.Sprintf("%d by %s", k, strings.Join(by[k], ", ")))
+		}
+		v.Note = "the middle of " + strings.Join(said, "; ")
 		return v
 	},
 }

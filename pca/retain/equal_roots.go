@@ -47,7 +47,7 @@ var equalRoots = Rule{
 			v.Note = fmt.Sprintf("the last %d roots may be equal (P = %.3g)", p-v.Components, last)
 		}
 		if v.Components > 1 && e.Matrix == pca.Correlation {
-			v.Note += "; beyond the second a heuristic for the correlation matrix"
+			v.Note += "; a heuristic beyond the second"
 		}
 		return v
 	},

@@ -52,14 +52,14 @@ func largest(e *Evidence, v Verdict, what string, score func(l []float64, p, k i
 			best, v.Components = scores[k-1], k
 		}
 	}
+	if unequalNoise(&v, e) {
+		return v.abstain("the noise differs between channels: no number leaves roots like those of equal noise")
+	}
 	for a := range e.Values {
 		s := scores[min(a, most-1)]
 		v.Steps = append(v.Steps, Step{Value: s, Threshold: best, Kept: a < v.Components})
 	}
 	v.Note = fmt.Sprintf("%s is largest (%.5g) with %d", what, best, v.Components)
-	if v.Components == most {
-		v.Note += ", the most it can weigh"
-	}
 	return v
 }
 

@@ -15,7 +15,7 @@ var hardThreshold = Rule{
 	Summary:  "singular values above the best threshold for white noise (Gavish & Donoho 2014); wrong when channels differ in noise",
 	variants: []Settings{with(func(s *Settings) { s.Noise = 0 })},
 	apply: func(e *Evidence, s Settings) Verdict {
-		v := Verdict{Setting: "noise from the median"}
+		v := Verdict{Setting: "noise unknown"}
 		if s.Noise > 0 {
 			v.Setting = fmt.Sprintf("noise %g", s.Noise)
 		}
@@ -40,7 +40,7 @@ var hardThreshold = Rule{
 		v.Components = leading(v.Steps)
 		v.Note = fmt.Sprintf("%d singular values are above %.4g", v.Components, limit)
 		if e.Matrix == pca.Correlation {
-			v.Note += "; it takes the noise as equal in all channels, which scaling to unit variance seldom leaves"
+			v.Note += "; takes the noise as equal in all channels"
 		}
 		return v
 	},

@@ -46,7 +46,7 @@ var minimumAveragePartial = Rule{
 			}
 			v.Steps = append(v.Steps, step)
 		}
-		v.Note = fmt.Sprintf("mean partial correlation to the power %d is smallest (%.4g) after %d; before any it is %.4g", s.Power, f[v.Components], v.Components, f[0])
+		v.Note = fmt.Sprintf("what is left between channels is least (%.3g) after %d; it was %.3g", f[v.Components], v.Components, f[0])
 		return v
 	},
 }

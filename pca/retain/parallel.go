@@ -57,8 +57,8 @@ func applyParallel(e *Evidence, s Settings) Verdict {
 	v.Components = leading(v.Steps)
 	if v.Components < m {
 		next := v.Steps[v.Components]
-		v.Note = fmt.Sprintf("root %d is %.3f; independent channels reach %.3f (%s of %d replicates)",
-			v.Components+1, next.Value, next.Threshold, v.Setting, s.Replicates)
+		v.Note = fmt.Sprintf("root %d is %.3f; independent channels reach %.3f",
+			v.Components+1, next.Value, next.Threshold)
 	} else {
 		v.Note = "every root is above its reference"
 	}

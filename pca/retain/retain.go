@@ -167,3 +167,10 @@ func leading(steps []Step) int {
 	}
 	return len(steps)
 }
+
+// unequalNoise tells whether a rule that takes the noise as equal in all channels found no
+// number of components that leaves equal roots: fewer than a third of them would be noise.
+// That is what it looks like when channels differ in their noise.
+func unequalNoise(v *Verdict, e *Evidence) bool {
+	return 3*(e.Width()-v.Components) < e.Width()
+}

@@ -22,7 +22,7 @@ var share = Rule{
 		if v.Components == 1 {
 			carry = "the first carries"
 		}
-		v.Note = fmt.Sprintf("%s %.2f %% of the variance; asked for %g %%", carry, 100*v.Steps[v.Components-1].Value, 100*s.AtLeast)
+		v.Note = fmt.Sprintf("%s %.4f of the variance", carry, v.Steps[v.Components-1].Value)
 		return v
 	},
 }

@@ -43,6 +43,9 @@ var tracyWidom = Rule{
 			v.Reference = append(v.Reference, step.Threshold)
 		}
 		v.Components = leading(v.Steps)
+		if unequalNoise(&v, e) {
+			return v.abstain("the noise differs between channels: no number leaves roots like those of equal noise")
+		}
 		if v.Components < len(v.Steps) {
 			next := v.Steps[v.Components]
 			v.Note = fmt.Sprintf("root %d is %.4g; noise reaches %.4g", v.Components+1, next.Value, next.Threshold)

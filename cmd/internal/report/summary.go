@@ -187,8 +187,8 @@ func (p *page) howMany(s *Study) {
 		if v.Abstains {
 			count = "-"
 		}
-		first := fmt.Sprintf("  %s %4s  %-30s ", mark, count, ruleText(v.Rule, v.Setting))
-		p.paragraph(first, strings.Repeat(" ", 41), v.Note)
+		first := fmt.Sprintf("  %s %4s  %-32s ", mark, count, ruleText(v.Rule, v.Setting))
+		p.paragraph(first, strings.Repeat(" ", 43), v.Note)
 	}
 	p.line("  > decides, as the run file says")
 }
