@@ -41,7 +41,7 @@ func (m *Model) choose(o Options) error {
 		for last > 0 && math.IsNaN(m.Path[last].CV) {
 			last--
 		}
-		if best == last && last > 0 && last < len(m.Entering) {
+		if m.Components == last && last > 0 && last < len(m.Entering) {
 			m.warn("at-ceiling", "the error is smallest with the most components considered (%d): more may be better", last)
 		}
 	default:

@@ -17,6 +17,7 @@ type resultsFile struct {
 	Table         Table              `json:"table"`
 	Channels      []channelFacts     `json:"channels"`
 	Decomposition decompositionFacts `json:"decomposition"`
+	Adequacy      *adequacyFacts     `json:"adequacy,omitempty"`
 	Retention     []verdictFacts     `json:"retention"`
 	Regression    []regressionFacts  `json:"regression,omitempty"`
 	Warnings      []pca.Warning      `json:"warnings"`
@@ -32,6 +33,17 @@ type channelFacts struct {
 	Minimum     Number `json:"minimum"`
 	Maximum     Number `json:"maximum"`
 	Communality Number `json:"communality"`
+}
+
+type adequacyFacts struct {
+	Defined    bool     `json:"defined"`
+	Reason     string   `json:"reason,omitempty"`
+	KMO        Number   `json:"kmo"`
+	Channel    []Number `json:"kmo_by_channel"`
+	Sphericity Number   `json:"sphericity"`
+	Freedom    int      `json:"degrees_of_freedom"`
+	P          Number   `json:"p"`
+	Log10Det   Number   `json:"log10_determinant"`
 }
 
 type decompositionFacts struct {
@@ -116,6 +128,9 @@ func WriteResults(s *Study, out io.Writer) error {
 	for j, c := range s.Channels {
 		f.Channels = append(f.Channels, channelFacts{c.Name, c.Unit, c.Count, c.Missing, Number(c.Mean), Number(c.Deviation),
 			Number(c.Minimum), Number(c.Maximum), Number(d.Communality(j, s.Retained()))})
+	}
+	if a := s.Adequacy; a != nil {
+		f.Adequacy = &adequacyFacts{a.Defined, a.Reason, Number(a.KMO), numbers(a.Channel), Number(a.Sphericity), a.Freedom, Number(a.P), Number(a.Log10Det)}
 	}
 	for i, v := range s.Overview {
 		f.Retention = append(f.Retention, verdictOf(v, i == 0))

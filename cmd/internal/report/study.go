@@ -19,7 +19,8 @@ type Study struct {
 	Decomposition *pca.Decomposition
 	Verdict       retain.Verdict
 	Overview      []retain.Verdict
-	Regression    *Regression // nil when the run file has no regression
+	Adequacy      *pca.Adequacy // nil when channels are too many to measure it
+	Regression    *Regression   // nil when the run file has no regression
 	Warnings      []pca.Warning
 }
 

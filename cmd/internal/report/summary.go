@@ -28,6 +28,7 @@ func WriteSummary(s *Study, out io.Writer) error {
 	p.decision(s)
 	p.table(s)
 	p.components(s)
+	p.adequacy(s)
 	p.howMany(s)
 	if s.Regression != nil {
 		for _, m := range s.Regression.Result.Models {
@@ -154,6 +155,47 @@ func (p *page) components(s *Study) {
 	} else {
 		p.line("  * kept")
 	}
+}
+
+// adequacy says whether the channels have stories in common at all.
+func (p *page) adequacy(s *Study) {
+	a := s.Adequacy
+	if a == nil {
+		return
+	}
+	p.heading("Whether channels share stories")
+	if !a.Defined {
+		p.paragraph("  ", "  ", "not measured: "+a.Reason)
+		return
+	}
+	p.paragraph("  ", "  ", fmt.Sprintf("Kaiser-Meyer-Olkin measure %.2f: %s; log10 of the determinant %.1f, condition %s", a.KMO, pca.Grade(a.KMO), a.Log10Det, short3(s.Decomposition.Condition())))
+	if low := leastAdequate(s); low != "" {
+		p.paragraph("  ", "  ", "channels on their own (measure below 0.5): "+low)
+	}
+	if a.P > .01 {
+		p.paragraph("  ", "  ", fmt.Sprintf("Bartlett's test does not tell the correlations from chance (%.4g on %d, P = %.2g)", a.Sphericity, a.Freedom, a.P))
+	}
+}
+
+// leastAdequate lists channels whose own measure is below a half.
+func leastAdequate(s *Study) string {
+	var names []string
+	more := 0
+	for j, v := range s.Adequacy.Channel {
+		if v >= .5 {
+			continue
+		}
+		if len(names) < 8 {
+			names = append(names, fmt.Sprintf("%s %.2f", middle(s.Channels[j].Name, 24), v))
+		} else {
+			more++
+		}
+	}
+	text := strings.Join(names, ", ")
+	if more > 0 {
+		text += fmt.Sprintf(" and %d more", more)
+	}
+	return text
 }
 
 // strongest lists channels by falling size of their loading, as many as fit the width.

@@ -41,12 +41,17 @@ func (t *TableFile) Write(s *Study, out io.Writer) error {
 }
 
 func fillChannels(s *Study, w *csvWriter) {
-	w.header("channel", "unit", "count", "missing", "mean", "standard_deviation", "minimum", "maximum", "center", "scale", "communality")
+	w.header("channel", "unit", "count", "missing", "mean", "standard_deviation", "minimum", "maximum", "center", "scale", "communality", "kmo")
 	d := s.Decomposition
 	for j, c := range s.Channels {
 		w.text(c.Name).text(c.Unit).whole(c.Count).whole(c.Missing)
 		w.number(c.Mean).number(c.Deviation).number(c.Minimum).number(c.Maximum)
 		w.number(d.Scaling.Center[j]).number(d.Scaling.Scale[j]).number(d.Communality(j, s.Retained()))
+		if s.Adequacy != nil && s.Adequacy.Defined {
+			w.number(s.Adequacy.Channel[j])
+		} else {
+			w.number(math.NaN())
+		}
 		w.end()
 	}
 }

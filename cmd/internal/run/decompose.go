@@ -3,6 +3,7 @@ package run
 import (
 	"context"
 	"fmt"
+	"strings"
 
 	"axisfold/cmd/internal/report"
 	"axisfold/pca"
@@ -75,7 +76,33 @@ func (w *work) attempt(ctx context.Context, form pca.Form, reason string) error 
 		w.warn("scaling-without-effect", "the correlation matrix brings every channel to unit variance, so the scaling asked for (%s) has no effect; decompose.matrix: covariance would use it", w.cfg.Standardize.Scaling)
 	}
 	w.describe()
+	w.correlate()
 	return nil
+}
+
+// correlate measures how channels correlate and names those that are copies of others:
+// they count twice in every component, and least squares cannot tell them apart.
+func (w *work) correlate() {
+	p := len(w.active)
+	if p > mostCorrelated {
+		return
+	}
+	w.correlations = w.whole.Pick(w.active).Correlations()
+	w.study.Adequacy = pca.Adequate(w.correlations, p, int(w.reading.complete))
+	pairs := pca.Twins(w.correlations, p)
+	if len(pairs) == 0 {
+		return
+	}
+	names := w.study.Decomposition.Channels
+	var said []string
+	for i, pair := range pairs {
+		if i == 5 {
+			said = append(said, fmt.Sprintf("and %d more pairs", len(pairs)-i))
+			break
+		}
+		said = append(said, fmt.Sprintf("%s of %s", names[pair[1]], names[pair[0]]))
+	}
+	w.warn("copies", "copies up to scale and offset, which count twice in every component: %s", strings.Join(said, ", "))
 }
 
 func sameMethods(a, b []pca.Method) bool {

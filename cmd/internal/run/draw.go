@@ -8,7 +8,7 @@ import (
 	"axisfold/plots"
 )
 
-// mostCorrelated is up to how many channels all pairs are correlated for pictures.
+// mostCorrelated is up to how many channels all pairs are looked at.
 const mostCorrelated = 2000
 
 // draw draws the pictures.
@@ -19,9 +19,9 @@ func (w *work) draw(context.Context) error {
 	s := w.study
 	m := plots.Material{Decomposition: s.Decomposition, Verdict: s.Verdict, TotalRows: s.Table.Complete,
 		Groups: w.sample.groups, GroupNames: w.sample.names, Observed: w.sample.observed, Predicted: w.sample.predicted}
-	if p := len(w.active); p <= mostCorrelated {
-		m.Correlations = w.whole.Pick(w.active).Correlations()
-		m.SimilarOrder = pca.SimilarOrder(m.Correlations, p)
+	if w.correlations != nil {
+		m.Correlations = w.correlations
+		m.SimilarOrder = pca.SimilarOrder(m.Correlations, len(w.active))
 	}
 	if w.sample.width == 2 {
 		m.Scores, m.ScoreRows = w.sample.scores, len(w.sample.scores)/2

@@ -71,8 +71,10 @@ type work struct {
 	active  []int         // channels that take part, by position in the prepared rows
 	dropped []report.Note // channels that do not
 	study   *report.Study
-	roots   *retain.Evidence // what retention rules judge, with the draws they share
-	sample  sample
+	// correlations of the active channels, p×p; nil when they are too many.
+	correlations []float64
+	roots        *retain.Evidence // what retention rules judge, with the draws they share
+	sample       sample
 }
 
 // read opens the table, gives every column its role and goes through the rows once.
