@@ -154,10 +154,8 @@ pump.yaml:4:8: unknown key "colour" in draw
 hint: known: formats
 `},
 	{"stages to come", start + "reduce: {rebuild: 0.95}\nwatch:\n", nil, `
-pump.yaml:4:1: unknown key "reduce"
-hint: known: axisfold, title, seed, read, standardize, decompose, retain, regress, draw, write
 pump.yaml:5:1: unknown key "watch"
-hint: known: axisfold, title, seed, read, standardize, decompose, retain, regress, draw, write
+hint: known: axisfold, title, seed, read, standardize, decompose, retain, reduce, regress, draw, write
 `},
 	{"required in a section", "axisfold: 1\nread:\n  time: t\nregress:\n", nil, `
 pump.yaml:2:1: required key "files" is missing in read

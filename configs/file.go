@@ -12,6 +12,7 @@ type File struct {
 	Standardize Standardize `key:"standardize"`
 	Decompose   Decompose   `key:"decompose"`
 	Retain      Rule        `key:"retain"`
+	Reduce      *Reduce     `key:"reduce"`  // nil when not named
 	Regress     *Regress    `key:"regress"` // nil when not named
 	Draw        *Draw       `key:"draw"`    // nil when not named
 	Write       Write       `key:"write"`
@@ -74,6 +75,27 @@ type Rule struct {
 	Arrangement    string  `key:"arrangement"`
 	Order          string  `key:"order"`
 	MostComponents int     `key:"most_components"` // 0: as many as the data carry
+}
+
+// Reduce says which channels may be dropped and how well they must be rebuilt. It is
+// judged on the folds of regress.retain, or on ten stretches of rows without them.
+type Reduce struct {
+	Rebuild   float64       `key:"rebuild"`
+	Size      int           `key:"size"` // 0: the fewest that rebuild the others
+	Criterion string        `key:"criterion"`
+	Protect   []string      `key:"protect"`
+	Prefer    []string      `key:"prefer"`
+	Together  []string      `key:"together"`
+	Channels  []KeptChannel `key:"channels"` // in the order written; a later one wins
+	ExactUpTo int           `key:"exact_up_to"`
+}
+
+// KeptChannel is what differs for one channel or for those that match a glob; 0 leaves
+// things as they are.
+type KeptChannel struct {
+	Name      string
+	Cost      float64 `key:"cost"`
+	Tolerance float64 `key:"tolerance"`
 }
 
 // Regress says what is regressed on the components.

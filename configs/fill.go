@@ -148,9 +148,10 @@ func (l *loader) channels(k *Key, path string, node *yaml.Node, into reflect.Val
 			l.fail(e.key, p, suggest("", namesOf(k.Keys)), "%q has no settings", clip(e.name))
 			continue
 		}
-		c := Channel{Name: e.name}
-		l.fill(p, k.Keys, e.key, own, reflect.ValueOf(&c).Elem(), nil)
-		into.Set(reflect.Append(into, reflect.ValueOf(c)))
+		c := reflect.New(into.Type().Elem()).Elem()
+		c.FieldByName("Name").SetString(e.name)
+		l.fill(p, k.Keys, e.key, own, c, nil)
+		into.Set(reflect.Append(into, c))
 	}
 }
 

@@ -8,6 +8,7 @@ import (
 
 var (
 	scalings   = []string{"unit-normal", "unit-length", "center", "pareto", "range", "median-mad", "none"}
+	criteria   = []string{"worst-r2", "rm", "rv", "gcd", "mccabe-det", "mccabe-trace", "mccabe-frobenius", "mccabe-canonical"}
 	transforms = []string{"none", "log", "log10", "square-root"}
 )
 
@@ -44,6 +45,19 @@ var sections = []Key{
 		{Name: "route", Kind: Word, Allowed: []string{"auto", "eigen", "svd"}, Default: "auto", Doc: "through cross-products or through a factor of the rows; auto looks at shape and condition"},
 	}},
 	{Name: "retain", Kind: Choice, Rules: rulesFor(components), Default: "parallel", Doc: "how many components to keep"},
+	{Name: "reduce", Kind: Section, Named: true, Doc: "which channels to keep, and how the others are rebuilt from them", Keys: []Key{
+		{Name: "rebuild", Kind: Number, Range: upTo(1), Default: 0.95, Doc: "R-squared with which every dropped channel must be rebuilt; not used when size is given"},
+		{Name: "size", Kind: Whole, Range: atLeast(1), Blank: "any", Doc: "how many channels to keep; any takes the fewest that rebuild the others"},
+		{Name: "criterion", Kind: Word, Allowed: criteria, Default: "worst-r2", Doc: "what makes one set of channels better than another of its size"},
+		{Name: "protect", Kind: Names, Doc: "channels never dropped; names and globs"},
+		{Name: "prefer", Kind: Names, Doc: "channels kept rather than their twins; names and globs"},
+		{Name: "together", Kind: Names, Doc: "globs: the channels that one of them matches are kept or dropped together"},
+		{Name: "channels", Kind: Channels, Doc: "what differs by channel; names and globs, a later one wins", Keys: []Key{
+			{Name: "cost", Kind: Number, Range: atLeast(0), Doc: "of keeping a channel, 1 when left out or 0"},
+			{Name: "tolerance", Kind: Number, Range: atLeast(0), Doc: "largest residual standard deviation of the rebuilt channel in its unit, in place of rebuild; 0 is none"},
+		}},
+		{Name: "exact_up_to", Kind: Whole, Range: from(1, 40), Default: 30, Doc: "channels up to which the best set is searched for and proved best"},
+	}},
 	{Name: "regress", Kind: Section, Named: true, Doc: "regression on the components", Keys: []Key{
 		{Name: "response", Kind: Names, Required: true, Filled: true, Doc: "one column or several"},
 		{Name: "predictors", Kind: Names, Doc: "names and globs; empty for all other channels"},

@@ -57,8 +57,9 @@ func (k *Key) node(v reflect.Value) *yaml.Node {
 		return m
 	case Channels:
 		m := &yaml.Node{Kind: yaml.MappingNode}
-		for _, c := range v.Interface().([]Channel) {
-			m.Content = append(m.Content, textNode(c.Name), c.node(k.Keys))
+		for i := range v.Len() {
+			c := v.Index(i)
+			m.Content = append(m.Content, textNode(c.FieldByName("Name").String()), channelNode(c, k.Keys))
 		}
 		return m
 	case Names, Words, Codes:
@@ -82,13 +83,13 @@ func (k *Key) node(v reflect.Value) *yaml.Node {
 	return plainNode(fmt.Sprint(v.Interface()))
 }
 
-// node holds the settings that are given: empty ones leave earlier entries as they are.
-func (c Channel) node(keys []Key) *yaml.Node {
+// channelNode holds the settings of one channel that are given: empty ones leave earlier
+// entries as they are.
+func channelNode(c reflect.Value, keys []Key) *yaml.Node {
 	m := &yaml.Node{Kind: yaml.MappingNode, Style: yaml.FlowStyle}
-	v := reflect.ValueOf(c)
-	for _, k := range keys {
-		if text := field(v, k.Name).String(); text != "" {
-			m.Content = append(m.Content, plainNode(k.Name), plainNode(text))
+	for i := range keys {
+		if v := field(c, keys[i].Name); !v.IsZero() {
+			m.Content = append(m.Content, plainNode(keys[i].Name), keys[i].node(v))
 		}
 	}
 	return m

@@ -6,6 +6,7 @@ import (
 
 	"axisfold/configs"
 	"axisfold/pca"
+	"axisfold/pca/reduce"
 	"axisfold/pca/retain"
 	"axisfold/pca/table"
 	"axisfold/pcr"
@@ -46,6 +47,7 @@ func TestWordsOfTheStages(t *testing.T) {
 	sameWords(t, []string{"standardize", "channels", "scaling"}, pca.Methods)
 	sameWords(t, []string{"standardize", "channels", "transform"}, pca.Transforms)
 	sameWords(t, []string{"decompose", "matrix"}, []pca.Matrix{pca.Correlation, pca.Covariance})
+	sameWords(t, []string{"reduce", "criterion"}, reduce.Criteria)
 	sameWords(t, []string{"decompose", "route"}, []pca.Route{pca.Auto, pca.Eigen, pca.SVD})
 }
 

@@ -39,5 +39,6 @@ var cumulativeShare = Picture{Name: "cumulative-share", ready: always, size: wid
 		}
 		f.c.FillText(style, at, label)
 	}
-	f.componentTicks(n)
+	f.numberTicks(n)
+	f.xTitle("component")
 }}

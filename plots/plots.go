@@ -19,6 +19,7 @@ import (
 	"gonum.org/v1/plot/vg/vgsvg"
 
 	"axisfold/pca"
+	"axisfold/pca/reduce"
 	"axisfold/pca/retain"
 	"axisfold/pcr"
 )
@@ -36,6 +37,8 @@ type Material struct {
 	TotalRows  int64
 	Groups     []int
 	GroupNames []string
+	Reduction  *reduce.Result
+	Rebuild    float64 // target of the reduction; 0 without
 	Regression *pcr.Result
 	Units      []string // of the responses
 	Confidence float64
@@ -56,7 +59,7 @@ type Picture struct {
 }
 
 // Pictures lists all pictures.
-var Pictures = []Picture{scree, cumulativeShare, loadings, loadingsPlane, scoresPlane, correlationMap, validation, coefficients, predictions}
+var Pictures = []Picture{scree, cumulativeShare, loadings, loadingsPlane, scoresPlane, correlationMap, tradeoff, validation, coefficients, predictions}
 
 // Formats lists the formats, the default first.
 var Formats = []string{"svg", "png", "pdf"}

@@ -66,12 +66,13 @@ var scree = Picture{Name: "scree", ready: always, size: widePage, draw: func(m *
 		}
 		entries = append(entries, entry{"what the rule asks for", stroke(line(against, strongLine))})
 	}
-	f.componentTicks(n)
+	f.numberTicks(n)
+	f.xTitle("component")
 	f.legend(entries...)
 }}
 
-// componentTicks labels components 1..n, every few of many.
-func (f *frame) componentTicks(n int) {
+// numberTicks labels 1..n, every few of many.
+func (f *frame) numberTicks(n int) {
 	every := 1
 	if n > 20 {
 		every = 5 * (1 + n/101)
@@ -81,5 +82,4 @@ func (f *frame) componentTicks(n int) {
 			f.c.FillText(tickStyle, vg.Point{X: f.x(float64(a)), Y: f.low - 4}, fmt.Sprint(a))
 		}
 	}
-	f.xTitle("component")
 }

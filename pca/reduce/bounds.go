@@ -107,14 +107,16 @@ func (b *search) listAlone(n node) {
 
 // tail is the sum of all but the r largest roots of what the kept channels leave.
 func (b *search) tail(n node, r int, scaled bool) float64 {
-	roots := b.rootsLeft(n.inner, func(j int) float64 {
-		if scaled {
-			return 1 / math.Sqrt(b.m[j*b.p+j])
-		}
-		return 1
-	}, func(j int) bool { return !n.inner.kept[j] })
+	if n.known.byGoal == nil {
+		n.known.byGoal = slices.Clone(b.rootsLeft(n.inner, func(j int) float64 {
+			if scaled {
+				return 1 / math.Sqrt(b.m[j*b.p+j])
+			}
+			return 1
+		}, func(j int) bool { return !n.inner.kept[j] }))
+	}
 	sum := 0.0
-	for _, v := range roots[min(r, len(roots)):] {
+	for _, v := range n.known.byGoal[min(r, len(n.known.byGoal)):] {
 		sum += math.Max(v, 0)
 	}
 	return sum
@@ -208,9 +210,11 @@ func (b *search) tooDear(n node) bool {
 	room := n.outer.count - count
 	need := 1
 	if room >= eigenFrom {
-		roots := b.rootsLeft(n.inner, func(j int) float64 { return 1 / math.Sqrt(b.limitAtBest(j, n)) },
-			func(j int) bool { return !n.inner.kept[j] })
-		tail := 0.0
+		if n.known.byLimit == nil {
+			n.known.byLimit = slices.Clone(b.rootsLeft(n.inner, func(j int) float64 { return 1 / math.Sqrt(b.limitAtBest(j, n)) },
+				func(j int) bool { return !n.inner.kept[j] }))
+		}
+		roots, tail := n.known.byLimit, 0.0
 		for _, v := range roots {
 			tail += math.Max(v, 0)
 		}

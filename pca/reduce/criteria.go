@@ -198,30 +198,31 @@ func (q *problem) after(c criterion, s *swept, u int, scratch *swept) float64 {
 		return s.logDet + math.Log(d)
 	}
 	sum, worst := 0.0, 1.0
-	for i, kept := range s.kept {
-		if kept || i == k {
-			continue
-		}
-		left := math.Max(0, s.a[i*p+i]-row[i]*row[i]*share)
-		switch c {
-		case worstR2:
-			r2 := 1 - left/q.m[i*p+i]
-			worst = math.Min(worst, r2)
-			sum += r2
-		case excess:
-			sum -= math.Max(0, left/q.limit(i, s.count+1)-1)
-		default:
-			sum += left
-		}
-	}
 	switch c {
 	case worstR2:
 		if s.count+1 == p {
 			return 1 + meanWeight
 		}
+		for i, kept := range s.kept {
+			if !kept && i != k {
+				r2 := 1 - max(0, s.a[i*p+i]-row[i]*row[i]*share)/q.m[i*p+i]
+				worst = min(worst, r2)
+				sum += r2
+			}
+		}
 		return worst + meanWeight*sum/float64(p-s.count-1)
 	case excess:
+		for i, kept := range s.kept {
+			if left := s.a[i*p+i] - row[i]*row[i]*share; !kept && i != k && left > 0 {
+				sum -= max(0, left/q.limit(i, s.count+1)-1)
+			}
+		}
 		return sum
+	}
+	for i, kept := range s.kept {
+		if !kept && i != k {
+			sum += max(0, s.a[i*p+i]-row[i]*row[i]*share)
+		}
 	}
 	return 1 - sum/q.trace
 }

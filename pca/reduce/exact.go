@@ -46,7 +46,12 @@ func (f found) beats(g found) bool {
 type node struct {
 	inner, outer *swept
 	depth        int
+	known        *known
 }
+
+// known are the roots of what inner leaves, found when first asked for: p³ work that a
+// node shares with those below that only drop units.
+type known struct{ byGoal, byLimit []float64 }
 
 // search walks part of the tree.
 type search struct {
@@ -79,7 +84,7 @@ func (q *problem) exact(start *swept) (best *swept, proved bool, nodes int64) {
 	}
 	var jobs []node
 	top := &search{problem: q, best: q.found(start), limit: maxNodes, jobs: &jobs}
-	top.visit(node{inner: q.start(), outer: all})
+	top.visit(node{inner: q.start(), outer: all, known: &known{}})
 	proved, nodes = true, top.nodes
 	incumbent := top.best
 	for len(jobs) > 0 {
@@ -146,17 +151,17 @@ func (b *search) visit(n node) {
 		}
 	}
 	if b.jobs != nil && n.depth == splitDepth {
-		*b.jobs = append(*b.jobs, node{inner: n.inner.clone(), outer: n.outer.clone(), depth: n.depth})
+		*b.jobs = append(*b.jobs, node{inner: n.inner.clone(), outer: n.outer.clone(), depth: n.depth, known: &known{}})
 		return
 	}
 	u := b.branch(n)
 	s := b.take(n.inner)
 	s.keep(b.units[u])
-	b.visit(node{s, n.outer, n.depth + 1})
+	b.visit(node{s, n.outer, n.depth + 1, &known{}})
 	b.pool = append(b.pool, s)
 	s = b.take(n.outer)
 	s.drop(b.units[u])
-	b.visit(node{n.inner, s, n.depth + 1})
+	b.visit(node{n.inner, s, n.depth + 1, n.known})
 	b.pool = append(b.pool, s)
 }
 
@@ -182,31 +187,23 @@ func (b *search) offer(s *swept) {
 // residual standard deviations are widest with the fewest kept channels.
 func (b *search) limitAtBest(j int, n node) float64 { return b.problem.limit(j, n.inner.count) }
 
-// branch picks the undecided unit whose loss hurts most on its own beside all others,
-// together with what it explains beyond the kept ones.
+// branch picks the undecided unit to decide next: one that no set may lose where a target
+// says so, else the one that explains most beyond those kept.
 func (b *search) branch(n node) int {
 	best, top := -1, math.Inf(-1)
-	p := b.p
+	if b.scratch == nil {
+		b.scratch = n.inner.clone()
+	}
 	for u, unit := range b.units {
 		if b.has(n.inner, u) || !b.has(n.outer, u) {
 			continue
 		}
-		v := 0.0
 		for _, j := range unit {
-			scale := b.m[j*p+j]
-			if b.Size == 0 {
-				scale = b.limitAtBest(j, n)
+			if b.Size == 0 && n.outer.alone(j, b.m) > b.limitAtBest(j, n) {
+				return u
 			}
-			v = math.Max(v, n.outer.alone(j, b.m)/scale)
 		}
-		if b.Size == 0 && v <= 1 {
-			// Above its limit a unit is forced; below, what it explains counts.
-			if b.scratch == nil {
-				b.scratch = n.inner.clone()
-			}
-			v = b.after(rm, n.inner, u, b.scratch)
-		}
-		if v > top {
+		if v := b.after(rm, n.inner, u, b.scratch); v > top {
 			best, top = u, v
 		}
 	}

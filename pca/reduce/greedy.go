@@ -30,7 +30,7 @@ func (q *problem) forward(s *swept, perCost bool, done func() bool, fits func(u 
 			}
 			gain := (v - now) / float64(len(q.units[u]))
 			if perCost {
-				gain = (v - now) / math.Max(q.cost[u], math.SmallestNonzeroFloat64*0x1p60)
+				gain = (v - now) / math.Max(q.cost[u], 1e-300)
 			}
 			if q.preferred[u] > 0 {
 				gain += preferBonus * math.Abs(gain)

@@ -169,10 +169,10 @@ func (q *problem) reachable(chosen []bool, size int) bool {
 func (q *problem) limit(j, m int) float64 {
 	v := q.allowed[j]
 	if q.byError[j] {
-		v *= math.Max(float64(q.n-m-1), 0) / float64(q.n-1)
+		v *= max(float64(q.n-m-1), 0) / float64(q.n-1)
 	}
 	// Rounding must not turn R² = 1 into a miss, nor an R² that equals the target.
-	return math.Max(v*(1+1e-12), 4*q.floor[j])
+	return max(v*(1+1e-12), 4*q.floor[j])
 }
 
 // meets tells whether every dropped channel is within its limit.

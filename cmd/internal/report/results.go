@@ -19,6 +19,7 @@ type resultsFile struct {
 	Decomposition decompositionFacts `json:"decomposition"`
 	Adequacy      *adequacyFacts     `json:"adequacy,omitempty"`
 	Retention     []verdictFacts     `json:"retention"`
+	Reduction     *reductionFacts    `json:"reduction,omitempty"`
 	Regression    []regressionFacts  `json:"regression,omitempty"`
 	Warnings      []pca.Warning      `json:"warnings"`
 }
@@ -134,6 +135,9 @@ func WriteResults(s *Study, out io.Writer) error {
 	}
 	for i, v := range s.Overview {
 		f.Retention = append(f.Retention, verdictOf(v, i == 0))
+	}
+	if s.Reduction != nil {
+		f.Reduction = reductionOf(s)
 	}
 	if s.Regression != nil {
 		for _, m := range s.Regression.Result.Models {

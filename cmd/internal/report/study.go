@@ -4,6 +4,7 @@ package report
 
 import (
 	"axisfold/pca"
+	"axisfold/pca/reduce"
 	"axisfold/pca/retain"
 	"axisfold/pcr"
 )
@@ -20,6 +21,7 @@ type Study struct {
 	Verdict       retain.Verdict
 	Overview      []retain.Verdict
 	Adequacy      *pca.Adequacy // nil when channels are too many to measure it
+	Reduction     *Reduction    // nil when the run file asks for none
 	Regression    *Regression   // nil when the run file has no regression
 	Warnings      []pca.Warning
 }
@@ -76,4 +78,13 @@ type Regression struct {
 	Order       pcr.Order
 	Confidence  float64
 	Origin      bool
+}
+
+// Reduction is the choice of channels to keep and what was asked for.
+type Reduction struct {
+	Result  *reduce.Result
+	Rebuild float64 // target; unused when Size is above 0
+	Size    int
+	// Protected and Preferred mark channels, by position.
+	Protected, Preferred []bool
 }

@@ -30,6 +30,9 @@ func WriteSummary(s *Study, out io.Writer) error {
 	p.components(s)
 	p.adequacy(s)
 	p.howMany(s)
+	if s.Reduction != nil {
+		p.reduction(s)
+	}
 	if s.Regression != nil {
 		for _, m := range s.Regression.Result.Models {
 			p.regression(s, m)
@@ -78,6 +81,9 @@ func (p *page) decision(s *Study) {
 	default:
 		p.paragraph("", "", fmt.Sprintf("%s of %d kept: together %s of the variance (%s).",
 			plural(k, "component"), d.Components(), percent(d.CumulativeShare(k-1)), ruleText(s.Verdict.Rule, s.Verdict.Setting)))
+	}
+	if s.Reduction != nil {
+		p.paragraph("", "", reductionDecision(s))
 	}
 	if s.Regression == nil {
 		return

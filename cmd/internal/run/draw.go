@@ -26,6 +26,12 @@ func (w *work) draw(context.Context) error {
 	if w.sample.width == 2 {
 		m.Scores, m.ScoreRows = w.sample.scores, len(w.sample.scores)/2
 	}
+	if r := s.Reduction; r != nil {
+		m.Reduction = r.Result
+		if r.Size == 0 {
+			m.Rebuild = r.Rebuild
+		}
+	}
 	if r := s.Regression; r != nil {
 		m.Regression, m.Confidence = r.Result, r.Confidence
 		for _, c := range r.Responses {

@@ -43,7 +43,7 @@ func Execute(ctx context.Context, cfg *configs.File, o Options) (*report.Study, 
 		f.open = o.open
 	}
 	w := &work{cfg: cfg, options: o, folder: f}
-	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.retain, w.regress, w.rows, w.draw, w.write} {
+	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.retain, w.reduce, w.regress, w.rows, w.draw, w.write} {
 		if err := stage(ctx); err != nil {
 			return nil, "", err
 		}
@@ -99,12 +99,16 @@ func (w *work) read(ctx context.Context) error {
 	return w.checkRows()
 }
 
-// foldsOf returns the folds of the regression. Rules that do not decide by them still
+// foldsOf returns the folds that regression and reduction are judged on: those of
+// regress.retain, or ten stretches of rows. Rules that do not decide by them still
 // have them, so that every fit comes with its held-out error; there a table of fewer rows
 // gets as many folds as it fills.
 func foldsOf(cfg *configs.File) *foldPlan {
-	if cfg.Regress == nil {
+	switch {
+	case cfg.Regress == nil && cfg.Reduce == nil:
 		return nil
+	case cfg.Regress == nil:
+		return &foldPlan{arrangement: blockFolds, folds: 10, seed: cfg.Seed, flexible: true}
 	}
 	r := cfg.Regress.Retain
 	choice := pcr.Choice(r.Rule)

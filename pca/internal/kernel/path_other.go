@@ -4,10 +4,13 @@ package kernel
 
 func best() way { return plain }
 
-func tileSums(tile *[tileRows * tileColumns]float64, left, right *float64, rows, stride int) {
-	panic("kernel: no assembly on this machine")
-}
+func (t *tile) whole(int) { panic("kernel: no assembly on this machine") }
+func (t *tile) square()   { panic("kernel: no assembly on this machine") }
 
-func multiplyTile(tile *[multiplyRows * multiplyColumns]float64, x, v *float64, p, stride int) {
-	panic("kernel: no assembly on this machine")
-}
+func pack(dst, x []float64, ld, n, p, strip int) { packPlain(dst, x, ld, n, p, strip) }
+
+func dot(a, b []float64) float64                     { return dotPlain(a, b) }
+func axpy(alpha float64, x, y []float64)             { axpyPlain(alpha, x, y) }
+func rotate(x, y []float64, c, s float64)            { rotatePlain(x, y, c, s) }
+func columnSums(sum, x []float64, n, p int)          { columnSumsPlain(sum, x, n, p, 0) }
+func centerColumns(dst, x, mean []float64, n, p int) { centerColumnsPlain(dst, x, mean, n, p, 0) }

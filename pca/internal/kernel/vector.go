@@ -1,52 +1,24 @@
 package kernel
 
-import "math"
+// dotLanes is how many sums a dot product is made of: part of its specification.
+const dotLanes = 32
 
-// Dot returns Σ a[i]·b[i]: four sums of every fourth product, each by fused multiply-adds
-// in order, added as (s0+s1)+(s2+s3); what is left over follows in order.
-func Dot(a, b []float64) float64 {
-	b = b[:len(a)]
-	var s0, s1, s2, s3 float64
-	i := 0
-	for ; i+4 <= len(a); i += 4 {
-		s0 = math.FMA(a[i], b[i], s0)
-		s1 = math.FMA(a[i+1], b[i+1], s1)
-		s2 = math.FMA(a[i+2], b[i+2], s2)
-		s3 = math.FMA(a[i+3], b[i+3], s3)
-	}
-	sum := (s0 + s1) + (s2 + s3)
-	for ; i < len(a); i++ {
-		sum = math.FMA(a[i], b[i], sum)
-	}
-	return sum
-}
+// Dot returns Σ a[i]·b[i] over the length of a. Product i goes to lane i mod 32, each lane
+// being a sum from zero by fused multiply-adds in order; then lane l+16 is added to lane
+// l, l+8 to l, l+4, l+2 and l+1.
+func Dot(a, b []float64) float64 { return dot(a, b[:len(a)]) }
 
-// Axpy adds alpha·x to y, each element by one fused multiply-add.
-func Axpy(alpha float64, x, y []float64) {
-	y = y[:len(x)]
-	for i, v := range x {
-		y[i] = math.FMA(alpha, v, y[i])
-	}
-}
+// Axpy adds alpha·x to y over the length of x, each element by one fused multiply-add.
+func Axpy(alpha float64, x, y []float64) { axpy(alpha, x, y[:len(x)]) }
+
+// Rotate turns the vectors x and y, of one length, in their plane: x becomes c·x + s·y and
+// y becomes c·y - s·x; the product with s is rounded, that with c is fused.
+func Rotate(x, y []float64, c, s float64) { rotate(x, y[:len(x)], c, s) }
 
 // ColumnSums adds to sum, by column, the n rows of x (n×p) in order.
-func ColumnSums(sum, x []float64, n, p int) {
-	sum = sum[:p]
-	for r := range n {
-		row := x[r*p : r*p+p]
-		for j, v := range row {
-			sum[j] += v
-		}
-	}
-}
+func ColumnSums(sum, x []float64, n, p int) { columnSums(sum[:p], x[:n*p], n, p) }
 
-// CenterColumns sets dst to x - mean, row by row; dst may be x.
+// CenterColumns sets dst to x - mean, row by row (both n×p); dst may be x.
 func CenterColumns(dst, x, mean []float64, n, p int) {
-	mean = mean[:p]
-	for r := range n {
-		from, to := x[r*p:r*p+p], dst[r*p:r*p+p]
-		for j, v := range from {
-			to[j] = v - mean[j]
-		}
-	}
+	centerColumns(dst[:n*p], x[:n*p], mean[:p], n, p)
 }

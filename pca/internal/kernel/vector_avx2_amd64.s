@@ -1,0 +1,152 @@
+//go:build !purego
+
+#include "textflag.h"
+
+// These loops take whole groups of 32, 4 or 16 numbers; Go does what is left over.
+
+#define PRODUCTS(OFFSET, T, S) \
+	VMOVUPD OFFSET(SI), T \
+	VFMADD231PD OFFSET(DX), T, S
+
+// func dotAVX2(lanes *[32]float64, a, b *float64, groups int)
+TEXT ·dotAVX2(SB), NOSPLIT, $0-32
+	MOVQ lanes+0(FP), DI
+	MOVQ a+8(FP), SI
+	MOVQ b+16(FP), DX
+	MOVQ groups+24(FP), CX
+	VXORPD Y0, Y0, Y0
+	VXORPD Y1, Y1, Y1
+	VXORPD Y2, Y2, Y2
+	VXORPD Y3, Y3, Y3
+	VXORPD Y4, Y4, Y4
+	VXORPD Y5, Y5, Y5
+	VXORPD Y6, Y6, Y6
+	VXORPD Y7, Y7, Y7
+	TESTQ CX, CX
+	JZ    end
+
+loop:
+	PRODUCTS(0, Y8, Y0)
+	PRODUCTS(32, Y9, Y1)
+	PRODUCTS(64, Y10, Y2)
+	PRODUCTS(96, Y11, Y3)
+	PRODUCTS(128, Y12, Y4)
+	PRODUCTS(160, Y13, Y5)
+	PRODUCTS(192, Y14, Y6)
+	PRODUCTS(224, Y15, Y7)
+	ADDQ $256, SI
+	ADDQ $256, DX
+	DECQ CX
+	JNZ  loop
+
+end:
+	VMOVUPD Y0, (DI)
+	VMOVUPD Y1, 32(DI)
+	VMOVUPD Y2, 64(DI)
+	VMOVUPD Y3, 96(DI)
+	VMOVUPD Y4, 128(DI)
+	VMOVUPD Y5, 160(DI)
+	VMOVUPD Y6, 192(DI)
+	VMOVUPD Y7, 224(DI)
+	VZEROUPPER
+	RET
+
+// func axpyAVX2(alpha float64, x, y *float64, groups int)
+TEXT ·axpyAVX2(SB), NOSPLIT, $0-32
+	VBROADCASTSD alpha+0(FP), Y0
+	MOVQ x+8(FP), SI
+	MOVQ y+16(FP), DX
+	MOVQ groups+24(FP), CX
+
+loop:
+	VMOVUPD (DX), Y1
+	VFMADD231PD (SI), Y0, Y1
+	VMOVUPD Y1, (DX)
+	ADDQ $32, SI
+	ADDQ $32, DX
+	DECQ CX
+	JNZ  loop
+	VZEROUPPER
+	RET
+
+// func rotateAVX2(x, y *float64, groups int, c, s float64)
+TEXT ·rotateAVX2(SB), NOSPLIT, $0-40
+	MOVQ x+0(FP), SI
+	MOVQ y+8(FP), DX
+	MOVQ groups+16(FP), CX
+	VBROADCASTSD c+24(FP), Y0
+	VBROADCASTSD s+32(FP), Y1
+
+loop:
+	VMOVUPD (SI), Y4
+	VMOVUPD (DX), Y5
+	VMULPD Y5, Y1, Y6
+	VMULPD Y4, Y1, Y7
+	VFMADD231PD Y4, Y0, Y6
+	VFMSUB231PD Y5, Y0, Y7
+	VMOVUPD Y6, (SI)
+	VMOVUPD Y7, (DX)
+	ADDQ $32, SI
+	ADDQ $32, DX
+	DECQ CX
+	JNZ  loop
+	VZEROUPPER
+	RET
+
+// func columnSumsAVX2(sum, x *float64, n, stride int)
+TEXT ·columnSumsAVX2(SB), NOSPLIT, $0-32
+	MOVQ sum+0(FP), DI
+	MOVQ x+8(FP), SI
+	MOVQ n+16(FP), CX
+	MOVQ stride+24(FP), R8
+	VMOVUPD (DI), Y0
+	VMOVUPD 32(DI), Y1
+	VMOVUPD 64(DI), Y2
+	VMOVUPD 96(DI), Y3
+
+loop:
+	VADDPD (SI), Y0, Y0
+	VADDPD 32(SI), Y1, Y1
+	VADDPD 64(SI), Y2, Y2
+	VADDPD 96(SI), Y3, Y3
+	ADDQ R8, SI
+	DECQ CX
+	JNZ  loop
+	VMOVUPD Y0, (DI)
+	VMOVUPD Y1, 32(DI)
+	VMOVUPD Y2, 64(DI)
+	VMOVUPD Y3, 96(DI)
+	VZEROUPPER
+	RET
+
+// func centerColumnsAVX2(dst, x, mean *float64, n, stride int)
+TEXT ·centerColumnsAVX2(SB), NOSPLIT, $0-40
+	MOVQ dst+0(FP), DI
+	MOVQ x+8(FP), SI
+	MOVQ mean+16(FP), DX
+	MOVQ n+24(FP), CX
+	MOVQ stride+32(FP), R8
+	VMOVUPD (DX), Y0
+	VMOVUPD 32(DX), Y1
+	VMOVUPD 64(DX), Y2
+	VMOVUPD 96(DX), Y3
+
+loop:
+	VMOVUPD (SI), Y4
+	VMOVUPD 32(SI), Y5
+	VMOVUPD 64(SI), Y6
+	VMOVUPD 96(SI), Y7
+	VSUBPD Y0, Y4, Y4
+	VSUBPD Y1, Y5, Y5
+	VSUBPD Y2, Y6, Y6
+	VSUBPD Y3, Y7, Y7
+	VMOVUPD Y4, (DI)
+	VMOVUPD Y5, 32(DI)
+	VMOVUPD Y6, 64(DI)
+	VMOVUPD Y7, 96(DI)
+	ADDQ R8, SI
+	ADDQ R8, DI
+	DECQ CX
+	JNZ  loop
+	VZEROUPPER
+	RET
