@@ -71,6 +71,7 @@ type Rule struct {
 	Power          int     `key:"power"`
 	Alpha          float64 `key:"alpha"`
 	Noise          float64 `key:"noise"`
+	Limit          float64 `key:"limit"`
 	Folds          int     `key:"folds"`
 	Arrangement    string  `key:"arrangement"`
 	Order          string  `key:"order"`

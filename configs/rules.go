@@ -45,10 +45,15 @@ var rules = []listed{
 	{either, RuleDescription{"hard-threshold", "singular values above the best threshold for white noise", []Key{
 		{Name: "noise", Kind: Number, Range: atLeast(0), Default: 0.0, Doc: "standard deviation of the noise in the scaled channels; 0 takes it from the median"}}}},
 	{either, RuleDescription{"evidence", "the largest evidence for components plus equal noise", nil}},
-	{either, RuleDescription{"bic", "the Bayesian information criterion of components plus equal noise", nil}},
+	{first, RuleDescription{"bic", "the Bayesian information criterion of components plus equal noise", nil}},
 	{either, RuleDescription{"knee", "eigenvalues before the sharpest bend, a heuristic", nil}},
 	{either, RuleDescription{"agreement", "the number that most rules with a model of noise name", nil}},
 	{second, RuleDescription{"cross-validation", "the smallest error on held-out rows", heldOut}},
+	{second, RuleDescription{"aicc", "the smallest corrected Akaike criterion of the fit", nil}},
+	{second, RuleDescription{"bic", "the smallest Bayesian information criterion of the fit", nil}},
+	{second, RuleDescription{"cp", "the smallest of Mallows' Cp", nil}},
+	{second, RuleDescription{"t-threshold", "the components whose slope has a large t value, strongest first", []Key{
+		{Name: "limit", Kind: Number, Range: above(0), Default: 2.0, Doc: "of the squared t value; 2 gives the smallest Cp"}}}},
 	{second, RuleDescription{"one-standard-error", "the fewest within one standard error of the smallest error on held-out rows", heldOut}},
 }
 

@@ -26,7 +26,14 @@ const (
 	Given            Choice = "given"
 	Minimum          Choice = "cross-validation"
 	OneStandardError Choice = "one-standard-error"
+	SmallestAICc     Choice = "aicc"        // Hurvich & Tsai 1989
+	SmallestBIC      Choice = "bic"         // Schwarz 1978
+	SmallestCp       Choice = "cp"          // Mallows 1973
+	TThreshold       Choice = "t-threshold" // components with t² above Limit; 2 gives the smallest Cp
 )
+
+// Choices lists the choices that look at the response.
+var Choices = []Choice{Minimum, OneStandardError, SmallestAICc, SmallestBIC, SmallestCp, TThreshold}
 
 // Options say how to fit.
 type Options struct {
@@ -36,7 +43,8 @@ type Options struct {
 	ThroughOrigin bool
 	Order         Order
 	Choice        Choice
-	Components    int // for Given
+	Components    int     // for Given
+	Limit         float64 // of t², for TThreshold
 	// Most bounds the components considered; 0 means as many as the data carry.
 	Most       int
 	Confidence float64 // of the intervals, in (0,1)
@@ -67,6 +75,9 @@ type Model struct {
 	Terms     []Term
 	// Correlations are r(y, t_a) by component, from 0, in no particular order of entry.
 	Correlations []float64
+	// T are the t values of the components' slopes with the residual standard deviation of
+	// least squares; NaN where that is undefined.
+	T []float64
 	// Path holds one step per number of components, from 0.
 	Path     []Step
 	Folds    int
@@ -103,7 +114,13 @@ type Step struct {
 	// folds cannot carry k components.
 	CV, CVError float64
 	CVR2        float64 // 1 - Σ held-out error²/Total
-	Chosen      bool
+	// AICc = n·ln(SSE/n) + 2K + 2K(K+1)/(n-K-1) and BIC = n·ln(SSE/n) + K·ln n with K = k+2
+	// (slopes, intercept, variance); NaN where rows are too few or the fit is exact.
+	AICc, BIC float64
+	// Cp = Σ t² of the components left out - p + 2k + 1, t with the residual standard
+	// deviation of least squares; NaN where that is undefined.
+	Cp     float64
+	Chosen bool
 }
 
 // Fit regresses the responses y on components of the predictors x: positions in the joint
@@ -123,6 +140,9 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 			return nil, &pca.DataError{Channel: o.Responses[i],
 				Problem: fmt.Sprintf("is the response and holds one value, %.6g, in all rows", joint.Min(j))}
 		}
+	}
+	if o.Choice == TThreshold {
+		o.Order = ByCorrelation // falling |t| is falling correlation with the response
 	}
 	d, projections, err := pca.DecomposeJoint(joint, x, y, o.Predictors)
 	if err != nil {
@@ -146,6 +166,7 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 	for i := range y {
 		m := newModel(joint, d, projections[i], y[i], x, o.Responses[i], o)
 		m.path(projections[i], most)
+		m.addCriteria(projections[i], o)
 		if cv != nil {
 			m.addValidation(cv, i)
 		}

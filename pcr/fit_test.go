@@ -415,6 +415,40 @@ func TestOneStandardError(t *testing.T) {
 	}
 }
 
+// Criteria on Hald's cement: AICc at k = 1..4, the t values of the components, and Cp of
+// components 1 and 3, all computed once in NumPy; t² above 2 must give the smallest Cp
+// over all subsets, which is its closed form.
+func TestHaldCriteria(t *testing.T) {
+	table := published.CSV(t, "reference/classic/hald_cement.csv")
+	s := defaults(table.Names...)
+	m := s.fit(t, table.Data).Models[0]
+	for k, want := range []float64{34.561, 38.854, 35.695, 42.944} {
+		if got := m.Path[k+1].AICc; math.Abs(got-want) > 5e-4 {
+			t.Errorf("AICc with %d = %.4f, want %.3f", k+1, got, want)
+		}
+	}
+	for a, want := range []float64{20.928, .222, 2.787, .333} {
+		if got := math.Abs(m.T[a]); math.Abs(got-want) > 5e-4 {
+			t.Errorf("t of component %d = %.4f, want %.3f", a+1, got, want)
+		}
+	}
+	if got := m.Path[4].Cp; math.Abs(got-5) > 1e-9 {
+		t.Errorf("Cp of least squares = %.12f, want p+1", got)
+	}
+	s.options.Choice, s.options.Limit = pcr.TThreshold, 2
+	m = s.fit(t, table.Data).Models[0]
+	if m.Components != 2 || m.Entering[0] != 0 || m.Entering[1] != 2 || math.Abs(m.Path[2].Cp-1.16037) > 5e-6 {
+		t.Errorf("t-threshold takes %v, Cp %.5f", m.Entering[:m.Components], m.Path[m.Components].Cp)
+	}
+	for choice, want := range map[pcr.Choice]int{pcr.SmallestAICc: 1, pcr.SmallestCp: 3} {
+		s := defaults(table.Names...)
+		s.options.Choice = choice
+		if m := s.fit(t, table.Data).Models[0]; m.Components != want {
+			t.Errorf("%s takes %d components, want %d", choice, m.Components, want)
+		}
+	}
+}
+
 func TestUnusable(t *testing.T) {
 	flat := []float64{1, 2, 5, 2, 1, 5, 3, 5, 5, 4, 4, 5}
 	s := defaults("a", "b", "y")

@@ -57,7 +57,7 @@ func (m *Model) mapBack(joint *pca.Summary, d *pca.Decomposition, pr pca.Project
 			Standardized: b[j] * scale, OrdinaryStandardized: ob[j] * scale,
 			Ordinary: ob[j], OrdinaryError: oe[j], VIF: inflation(d, j)})
 	}
-	if m.Path[m.Components].Squares <= float64(m.Rows)*1e-28*m.Total {
+	if m.Path[m.Components].Squares <= float64(m.Rows)*exactFit*m.Total {
 		m.warn("perfect-fit", "the fit is exact to the last digits: standard errors say nothing, and the response may be among the predictors in disguise")
 	}
 	if m.Components == 0 {

@@ -69,7 +69,7 @@ func (b *search) hopeless(n node, size int) bool {
 			return true
 		}
 		if len(b.alones) >= eigenFrom {
-			tail := b.tail(n, left, b.goal == worstR2)
+			tail := b.tail(n, left)
 			if b.goal == worstR2 {
 				// The worst is not above the mean.
 				mean := 1 - tail/float64(p-size)
@@ -80,7 +80,12 @@ func (b *search) hopeless(n node, size int) bool {
 	case mcCabeCanonical:
 		return false // not monotone in K: no bound but the whole tree
 	default:
-		return b.score(b.goal, n.outer) <= bar
+		if b.score(b.goal, n.outer) <= bar {
+			return true
+		}
+		if b.goal == mcCabeFrobenius && n.outer.count-n.inner.count >= eigenFrom {
+			return -b.tail(n, left)/b.square <= bar
+		}
 	}
 	return false
 }
@@ -105,11 +110,13 @@ func (b *search) listAlone(n node) {
 	slices.Sort(b.alones)
 }
 
-// tail is the sum of all but the r largest roots of what the kept channels leave.
-func (b *search) tail(n node, r int, scaled bool) float64 {
+// tail is the sum of all but the r largest roots of what the kept channels leave, with
+// each channel in units of its deviation for the worst R²; of their squares for the
+// Frobenius norm.
+func (b *search) tail(n node, r int) float64 {
 	if n.known.byGoal == nil {
 		n.known.byGoal = slices.Clone(b.rootsLeft(n.inner, func(j int) float64 {
-			if scaled {
+			if b.goal == worstR2 {
 				return 1 / math.Sqrt(b.m[j*b.p+j])
 			}
 			return 1
@@ -117,7 +124,11 @@ func (b *search) tail(n node, r int, scaled bool) float64 {
 	}
 	sum := 0.0
 	for _, v := range n.known.byGoal[min(r, len(n.known.byGoal)):] {
-		sum += math.Max(v, 0)
+		v = max(v, 0)
+		if b.goal == mcCabeFrobenius {
+			v *= v
+		}
+		sum += v
 	}
 	return sum
 }
@@ -216,7 +227,7 @@ func (b *search) tooDear(n node) bool {
 		}
 		roots, tail := n.known.byLimit, 0.0
 		for _, v := range roots {
-			tail += math.Max(v, 0)
+			tail += max(v, 0)
 		}
 		for r := 0; r < len(roots) && tail > float64(p-count-r)*(1+1e-9); r++ {
 			tail -= math.Max(roots[r], 0)

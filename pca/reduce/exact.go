@@ -8,7 +8,7 @@ import (
 )
 
 const (
-	maxNodes   = 4_000_000 // of the search tree in all; about a minute at p = 30
+	maxNodes   = 2_000_000 // of the search tree in all; some ten seconds on two cores at p = 30
 	splitDepth = 6         // the tree above is walked first and its leaves are the parallel jobs
 	roundSize  = 16        // jobs that run beside one another and share the best set of earlier rounds
 	proofSlack = 1e-11     // a set must be better by more than this to count
@@ -72,6 +72,9 @@ type search struct {
 	jobs    *[]node // where nodes at splitDepth go; nil: walk on
 }
 
+// costlyShare is how much fewer nodes there are where each needs the whole matrix.
+const costlyShare = 4
+
 // exact improves on the set given by branch and bound over all sets. It tells whether the
 // result is proved best and how many nodes were looked at.
 //
@@ -83,9 +86,9 @@ func (q *problem) exact(start *swept) (best *swept, proved bool, nodes int64) {
 		all.keep(q.units[u])
 	}
 	var jobs []node
-	top := &search{problem: q, best: q.found(start), limit: maxNodes, jobs: &jobs}
+	top := &search{problem: q, best: q.found(start), limit: q.nodeLimit, jobs: &jobs}
 	top.visit(node{inner: q.start(), outer: all, known: &known{}})
-	proved, nodes = true, top.nodes
+	proved, nodes = !top.stopped, top.nodes
 	incumbent := top.best
 	for len(jobs) > 0 {
 		round := make([]*search, min(roundSize, len(jobs)))
@@ -99,7 +102,7 @@ func (q *problem) exact(start *swept) (best *swept, proved bool, nodes int64) {
 			})
 		}
 		for i := range round {
-			round[i] = &search{problem: q, best: incumbent, limit: max(0, maxNodes-nodes) / 4}
+			round[i] = &search{problem: q, best: incumbent, limit: max(0, q.nodeLimit-nodes) / 4}
 			tasks <- i
 		}
 		close(tasks)

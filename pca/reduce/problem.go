@@ -27,11 +27,15 @@ type problem struct {
 	allowed   []float64 // largest variance left of a dropped channel, in units of M
 	byError   []bool    // allowed belongs to divisor n-1 and shrinks with n-m-1
 	goal      criterion
+	nodeLimit int64
 }
 
 func newProblem(s *pca.Summary, o Options) (*problem, error) {
 	p := s.Width()
-	q := &problem{Options: o, p: p, n: s.Count(), m: s.Correlations(), goal: criterion(slices.Index(Criteria, o.Criterion))}
+	q := &problem{Options: o, p: p, n: s.Count(), m: s.Correlations(), goal: criterion(slices.Index(Criteria, o.Criterion)), nodeLimit: maxNodes}
+	if !q.goal.quick() {
+		q.nodeLimit /= costlyShare
+	}
 	if o.Matrix == "covariance" {
 		weight := make([]float64, p)
 		sum := 0.0

@@ -115,16 +115,18 @@ func fillCoefficients(s *Study, w *csvWriter) {
 }
 
 func fillValidation(s *Study, w *csvWriter) {
-	w.header("response", "components", "rmse_fit", "rmse_cv", "se_cv", "r2_fit", "r2_cv", "chosen", "enters")
+	w.header("response", "components", "rmse_fit", "rmse_cv", "se_cv", "r2_fit", "r2_cv", "chosen", "enters", "t", "aicc", "bic", "cp")
 	for _, m := range s.Regression.Result.Models {
 		for k, step := range m.Path {
 			w.text(m.Response).whole(int64(k)).number(step.RootMean).number(step.CV).number(step.CVError)
 			w.number(step.R2).number(step.CVR2).flag(step.Chosen)
 			if k == 0 {
-				w.text("")
+				w.text("").text("")
 			} else {
-				w.text(ComponentName(m.Entering[k-1]))
+				a := m.Entering[k-1]
+				w.text(ComponentName(a)).number(m.T[a])
 			}
+			w.number(step.AICc).number(step.BIC).number(step.Cp)
 			w.end()
 		}
 	}

@@ -3,6 +3,7 @@ package run
 import (
 	"context"
 	"fmt"
+	"slices"
 
 	"axisfold/cmd/internal/report"
 	"axisfold/pca"
@@ -18,6 +19,9 @@ func (w *work) regress(context.Context) error {
 	}
 	o := pcr.Options{Predictors: w.decomposeOptions(), ThroughOrigin: !g.Intercept, Order: pcr.Order(g.Retain.Order),
 		Confidence: g.Confidence, Most: g.Retain.MostComponents, Threads: w.options.Threads}
+	if pcr.Choice(g.Retain.Rule) == pcr.TThreshold {
+		o.Order = pcr.ByCorrelation // its components enter by the size of their t values
+	}
 	reg := &report.Regression{Rule: g.Retain.Rule, Order: o.Order, Confidence: g.Confidence, Origin: o.ThroughOrigin}
 	if w.plan != nil {
 		reg.Arrangement = w.plan.arrangement
@@ -50,9 +54,8 @@ func (w *work) regress(context.Context) error {
 // response are those of the retain stage, on the same roots.
 func (w *work) chooseRegressors(o *pcr.Options) error {
 	r := w.cfg.Regress.Retain
-	switch pcr.Choice(r.Rule) {
-	case pcr.Minimum, pcr.OneStandardError:
-		o.Choice = pcr.Choice(r.Rule)
+	if choice := pcr.Choice(r.Rule); slices.Contains(pcr.Choices, choice) {
+		o.Choice, o.Limit = choice, r.Limit
 		return nil
 	}
 	o.Choice = pcr.Given
