@@ -71,13 +71,17 @@ type Channel struct {
 
 // Regression holds the fits and what was asked for.
 type Regression struct {
-	Result      *pcr.Result
-	Responses   []Channel
-	Rule        string
-	Arrangement string // of the folds
-	Order       pcr.Order
-	Confidence  float64
-	Origin      bool
+	Result *pcr.Result
+	// Collinearity is nil where it could not be had; Dependencies are near-dependencies
+	// among the predictors, the tightest first.
+	Collinearity *pca.Collinearity
+	Dependencies []pca.Dependency
+	Responses    []Channel
+	Rule         string
+	Arrangement  string // of the folds
+	Order        pcr.Order
+	Confidence   float64
+	Origin       bool
 }
 
 // Reduction is the choice of channels to keep and what was asked for.

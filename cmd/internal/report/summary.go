@@ -34,6 +34,7 @@ func WriteSummary(s *Study, out io.Writer) error {
 		p.reduction(s)
 	}
 	if s.Regression != nil {
+		p.collinearity(s)
 		for _, m := range s.Regression.Result.Models {
 			p.regression(s, m)
 		}

@@ -27,6 +27,7 @@ var Tables = []TableFile{
 	{"tradeoff.csv", hasReduction, fillTradeoff},
 	{"coefficients.csv", hasRegression, fillCoefficients},
 	{"validation.csv", hasRegression, fillValidation},
+	{"collinearity.csv", hasCollinearity, fillCollinearity},
 }
 
 func always(*Study) bool          { return true }

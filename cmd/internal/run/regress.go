@@ -11,6 +11,10 @@ import (
 	"axisfold/pcr"
 )
 
+// dependencyIndex is the condition index above which a component counts as a
+// near-dependency among the predictors (Belsley, Kuh & Welsch 1980).
+const dependencyIndex = 30
+
 // regress fits the responses on the components.
 func (w *work) regress(context.Context) error {
 	g := w.cfg.Regress
@@ -41,6 +45,15 @@ func (w *work) regress(context.Context) error {
 		return fmt.Errorf("regress: %w", err)
 	}
 	reg.Result = result
+	x := w.whole.Pick(w.active)
+	means := make([]float64, x.Width())
+	for j := range means {
+		means[j] = x.Mean(j)
+	}
+	if reg.Collinearity, err = pca.Collinear(x); err != nil {
+		w.warn("collinearity", "collinearity was not diagnosed: %s", err)
+	}
+	reg.Dependencies = w.study.Decomposition.Dependencies(dependencyIndex, means)
 	w.study.Regression = reg
 	for _, m := range result.Models {
 		for _, warning := range m.Warnings {
