@@ -14,15 +14,23 @@ type validation struct {
 	rows []int // by fold
 	// most is the largest number of components that every fold's training rows carry.
 	most int
-	// squares[fold][response][k] is Σ error² over the held-out rows.
-	squares [][][]float64
+	// errors[fold][response] holds Σ error² over the held-out rows.
+	errors [][]heldErrors
+}
+
+// heldErrors are Σ error² over held-out rows of one response by everything that was fitted
+// without them.
+type heldErrors struct {
+	path  []float64 // by number of components, from 0
+	ridge []float64 // by ridge parameter, see ridgeGrid
+	pls   []float64 // by number of partial least squares components, from 1
 }
 
 // crossValidate fits without each fold in turn and judges the fit on the fold, from
 // summaries alone: the held-out squared error is a quadratic form in the fold's moments.
 // Scaling, decomposition and order of entry are made anew from the other folds.
 func crossValidate(folds []*pca.Summary, x, y []int, most int, o Options) (*validation, error) {
-	v := &validation{rows: make([]int, len(folds)), most: most, squares: make([][][]float64, len(folds))}
+	v := &validation{rows: make([]int, len(folds)), most: most, errors: make([][]heldErrors, len(folds))}
 	carried := make([]int, len(folds))
 	failed := make([]error, len(folds))
 	threads := o.Threads
@@ -40,9 +48,9 @@ func crossValidate(folds []*pca.Summary, x, y []int, most int, o Options) (*vali
 						others = append(others, part)
 					}
 				}
-				v.squares[f], failed[f] = judgeFold(pca.MergeAll(others...), folds[f], x, y, most, o)
+				v.errors[f], failed[f] = judgeFold(pca.MergeAll(others...), folds[f], x, y, most, o)
 				if failed[f] == nil {
-					carried[f] = len(v.squares[f][0]) - 1
+					carried[f] = len(v.errors[f][0].path) - 1
 				}
 			}
 		})
@@ -57,9 +65,9 @@ func crossValidate(folds []*pca.Summary, x, y []int, most int, o Options) (*vali
 	return v, nil
 }
 
-// judgeFold returns Σ error² over held for every response and every number of components
-// up to what train carries.
-func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([][]float64, error) {
+// judgeFold returns the errors over held for every response: of components up to what
+// train carries, of ridge regression and of partial least squares.
+func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([]heldErrors, error) {
 	// A channel that does not move in the training rows cannot be scaled or learnt from:
 	// it has no slope in this fold.
 	var moving []int
@@ -72,11 +80,11 @@ func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([][]f
 			po.Methods = append(po.Methods, o.Predictors.Methods[i])
 		}
 	}
-	out := make([][]float64, len(y))
+	out := make([]heldErrors, len(y))
 	if len(moving) == 0 || train.Count() < 2 {
 		for i, j := range y {
 			off := held.Mean(j) - train.Mean(j)
-			out[i] = []float64{held.CenteredSquares(j) + float64(held.Count())*off*off}
+			out[i].path = []float64{held.CenteredSquares(j) + float64(held.Count())*off*off}
 		}
 		return out, nil
 	}
@@ -84,79 +92,106 @@ func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([][]f
 	if err != nil {
 		return nil, err
 	}
-	// Held-out rows seen as scores (of unscaled offset, which the means take care of) and
-	// responses: the width falls from the channels to the components.
-	m := min(d.Rank, most)
-	scores := 0 // order by correlation may reach for components beyond the first m
-	order := make([][]int, len(y))
+	g := newJudge(train, held, d, moving, y)
 	for i := range y {
-		order[i] = entering(projections[i].Along[:d.Rank], o.Order)[:m]
-		for _, a := range order[i] {
-			scores = max(scores, a+1)
+		along := projections[i].Along[:d.Rank]
+		slopes := make([]float64, d.Rank)
+		out[i].path = append(out[i].path, g.squares(i, slopes))
+		for _, a := range entering(along, o.Order)[:min(d.Rank, most)] {
+			slopes[a] = along[a] / d.Length(a)
+			out[i].path = append(out[i].path, g.squares(i, slopes))
 		}
-	}
-	width := scores + len(y)
-	p := held.Width()
-	w := make([]float64, p*width)
-	for i, j := range moving {
-		for a := range scores {
-			w[j*width+a] = d.Vector(i, a) / d.Scaling.Scale[i]
+		for _, kappa := range ridgeGrid(d) {
+			out[i].ridge = append(out[i].ridge, g.squares(i, ridgeSlopes(d, along, kappa)))
 		}
-	}
-	for i, j := range y {
-		w[j*width+scores+i] = 1
-	}
-	seen := held.Combine(w, width)
-	// Means as differences from the training means, taken before the weighted sums, so
-	// that large offsets do not cancel.
-	shift := make([]float64, width)
-	for j := range p {
-		delta := held.Mean(j) - train.Mean(j)
-		for a := range width {
-			shift[a] += delta * w[j*width+a]
-		}
-	}
-	weight := make([]float64, width)
-	for i := range y {
-		clear(weight)
-		weight[scores+i] = 1
-		off := shift[scores+i]
-		n := float64(held.Count())
-		out[i] = append(out[i], seen.Spread(weight)+n*off*off)
-		for _, a := range order[i] {
-			slope := projections[i].Along[a] / d.Length(a)
-			weight[a] = -slope
-			off -= slope * shift[a]
-			out[i] = append(out[i], seen.Spread(weight)+n*off*off)
+		for _, slopes := range plsSlopes(d, along, min(d.Rank, most, mostPLS)) {
+			out[i].pls = append(out[i].pls, g.squares(i, slopes))
 		}
 	}
 	return out, nil
 }
 
-// addValidation turns squared errors by fold into root mean squares and their standard
-// errors. With folds of n_f rows the mean squared error is Σ/n; its standard error is the
-// standard deviation of the folds' own mean squared errors over √folds.
+// judge sees held-out rows as scores of the components fitted without them, and
+// responses: the width falls from the channels to the components.
+type judge struct {
+	seen   *pca.Summary
+	shift  []float64 // held-out minus training means of scores and responses
+	scores int
+	rows   float64
+	weight []float64
+}
+
+func newJudge(train, held *pca.Summary, d *pca.Decomposition, moving, y []int) *judge {
+	width, p := d.Rank+len(y), held.Width()
+	w := make([]float64, p*width)
+	for i, j := range moving {
+		for a := range d.Rank {
+			w[j*width+a] = d.Vector(i, a) / d.Scaling.Scale[i]
+		}
+	}
+	for i, j := range y {
+		w[j*width+d.Rank+i] = 1
+	}
+	g := &judge{seen: held.Combine(w, width), shift: make([]float64, width), scores: d.Rank,
+		rows: float64(held.Count()), weight: make([]float64, width)}
+	// Differences of means are taken before the weighted sums, so that large offsets do
+	// not cancel.
+	for j := range p {
+		delta := held.Mean(j) - train.Mean(j)
+		for a := range width {
+			g.shift[a] += delta * w[j*width+a]
+		}
+	}
+	return g
+}
+
+// squares is Σ error² of response i over the held-out rows for slopes on the scores.
+func (g *judge) squares(i int, slopes []float64) float64 {
+	clear(g.weight)
+	g.weight[g.scores+i] = 1
+	off := g.shift[g.scores+i]
+	for a, b := range slopes {
+		g.weight[a] = -b
+		off -= b * g.shift[a]
+	}
+	return g.seen.Spread(g.weight) + g.rows*off*off
+}
+
+// rootMean returns the root mean squared error over all held-out rows and its standard
+// error. With folds of n_f rows the mean squared error is Σ/n; its standard error is the
+// standard deviation of the folds' own mean squared errors over √folds, here carried to
+// the root. NaN where a fold lacks it.
+func (v *validation) rootMean(of func(fold int) (squares float64, ok bool)) (root, slip, total float64) {
+	folds, rows, mean := float64(len(v.rows)), 0.0, 0.0
+	each := make([]float64, len(v.rows))
+	for f, n := range v.rows {
+		s, ok := of(f)
+		if !ok {
+			return math.NaN(), math.NaN(), math.NaN()
+		}
+		total += s
+		rows += float64(n)
+		each[f] = s / float64(n)
+		mean += each[f] / folds
+	}
+	spread := 0.0
+	for _, e := range each {
+		spread += (e - mean) * (e - mean)
+	}
+	root = math.Sqrt(total / rows)
+	if root > 0 {
+		slip = math.Sqrt(spread/(folds-1)/folds) / (2 * root)
+	}
+	return root, slip, total
+}
+
+// addValidation gives every step of the path its error on held-out rows.
 func (m *Model) addValidation(v *validation, response int) {
 	m.Folds = len(v.rows)
-	folds := float64(len(v.rows))
 	for k := 0; k <= v.most && k < len(m.Path); k++ {
-		total, mean := 0.0, 0.0
-		for f, rows := range v.rows {
-			total += v.squares[f][response][k]
-			mean += v.squares[f][response][k] / float64(rows) / folds
-		}
-		spread := 0.0
-		for f, rows := range v.rows {
-			e := v.squares[f][response][k]/float64(rows) - mean
-			spread += e * e
-		}
 		step := &m.Path[k]
-		mse := total / float64(m.Rows)
-		step.CV = math.Sqrt(mse)
+		var total float64
+		step.CV, step.CVError, total = v.rootMean(func(f int) (float64, bool) { return v.errors[f][response].path[k], true })
 		step.CVR2 = 1 - total/m.Total
-		step.CVError = 0
-		if mse > 0 {
-			step.CVError = math.Sqrt(spread/(folds-1)/folds) / (2 * step.CV)
-		}
 	}
 }

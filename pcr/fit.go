@@ -81,7 +81,12 @@ type Model struct {
 	// Path holds one step per number of components, from 0.
 	Path     []Step
 	Folds    int
+	Remedies []Remedy // components as chosen beside other published remedies
 	Warnings []pca.Warning
+
+	constants  int       // 1 with an intercept, else 0
+	deviation  float64   // of the response
+	deviations []float64 // of the predictors
 }
 
 // Term is one coefficient in original units: units of y per unit of the channel.
@@ -174,6 +179,7 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 			return nil, err
 		}
 		m.mapBack(joint, d, projections[i], x, y[i], o)
+		m.remedies(d, projections[i], cv, i, most)
 		r.Models = append(r.Models, m)
 	}
 	return r, nil
@@ -181,6 +187,13 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 
 func newModel(joint *pca.Summary, d *pca.Decomposition, pr pca.Projection, y int, x []int, name string, o Options) *Model {
 	m := &Model{Response: name, Rows: joint.Count(), Total: pr.Total, Entering: entering(pr.Along[:d.Rank], o.Order)}
+	if !o.ThroughOrigin {
+		m.constants = 1
+	}
+	m.deviation = joint.Deviation(y)
+	for _, j := range x {
+		m.deviations = append(m.deviations, joint.Deviation(j))
+	}
 	m.Correlations = make([]float64, len(pr.Along))
 	for a, v := range pr.Along {
 		m.Correlations[a] = v / math.Sqrt(pr.Total)

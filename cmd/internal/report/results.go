@@ -92,6 +92,19 @@ type regressionFacts struct {
 	Confidence  Number           `json:"confidence"`
 	Terms       []termFacts      `json:"terms"`
 	Validation  []validationFact `json:"validation"`
+	Remedies    []remedyFacts    `json:"remedies"`
+}
+
+type remedyFacts struct {
+	Remedy      string `json:"remedy"`
+	Setting     string `json:"setting"`
+	Parameter   Number `json:"parameter"`
+	CV          Number `json:"rmse_cv"`
+	CVError     Number `json:"se_cv"`
+	R2          Number `json:"r2_fit"`
+	Length      Number `json:"coefficient_length"`
+	Parameters  Number `json:"effective_parameters"`
+	SignChanges int    `json:"sign_changes"`
 }
 
 type termFacts struct {
@@ -164,6 +177,10 @@ func regressionOf(r *Regression, m *pcr.Model) regressionFacts {
 	for _, t := range append([]pcr.Term{m.Intercept}, m.Terms...) {
 		f.Terms = append(f.Terms, termFacts{t.Name, Number(t.Coefficient), Number(t.Error), Number(t.Lower), Number(t.Upper),
 			Number(t.Standardized), Number(t.Ordinary), Number(t.OrdinaryError), Number(t.VIF)})
+	}
+	for _, r := range m.Remedies {
+		f.Remedies = append(f.Remedies, remedyFacts{r.Name, r.Setting, Number(r.Parameter), Number(r.CV), Number(r.CVError),
+			Number(r.R2), Number(r.Length), Number(r.Parameters), r.SignChanges})
 	}
 	for _, s := range m.Path {
 		f.Validation = append(f.Validation, validationFact{s.Components, Number(s.RootMean), Number(s.CV), Number(s.CVError), Number(s.R2), Number(s.CVR2), s.Chosen})

@@ -37,6 +37,7 @@ func WriteSummary(s *Study, out io.Writer) error {
 		p.collinearity(s)
 		for _, m := range s.Regression.Result.Models {
 			p.regression(s, m)
+			p.remedies(m)
 		}
 	}
 	p.warnings(s)
@@ -272,6 +273,31 @@ func (p *page) regression(s *Study, m *pcr.Model) {
 	}
 	p.paragraph("  ", "  ", "Terms by the size of their standardized coefficient. Standard errors take components and their number as given, "+
 		"not chosen from these rows, and those left out as without effect.")
+}
+
+// remedies sets components beside what else is done about collinear predictors.
+func (p *page) remedies(m *pcr.Model) {
+	if len(m.Remedies) < 2 {
+		return
+	}
+	p.heading("Beside it, on the same folds")
+	p.line(fmt.Sprintf("  %-62s %14s %8s %7s", "remedy", "held-out error", "length", "slopes"))
+	best := 0
+	for i, r := range m.Remedies {
+		if r.CV < m.Remedies[best].CV {
+			best = i
+		}
+		name := r.Name
+		if r.Setting != "" {
+			name += ", " + r.Setting
+		}
+		p.line(fmt.Sprintf("  %-62s %14s %8s %7s", name, short(r.CV), short3(r.Length), short3(r.Parameters)))
+	}
+	p.paragraph("  ", "  ", "length: of the standardized coefficients; slopes: effective number.")
+	first, least := m.Remedies[0], m.Remedies[best]
+	if first.CV > least.CV+2*least.CVError {
+		p.paragraph("  ", "  ", fmt.Sprintf("Components are not the best remedy here: %s predicts held-out rows better by more than two standard errors.", least.Name))
+	}
 }
 
 func (p *page) term(t pcr.Term) {

@@ -27,6 +27,7 @@ var Tables = []TableFile{
 	{"tradeoff.csv", hasReduction, fillTradeoff},
 	{"coefficients.csv", hasRegression, fillCoefficients},
 	{"validation.csv", hasRegression, fillValidation},
+	{"remedies.csv", hasRegression, fillRemedies},
 	{"collinearity.csv", hasCollinearity, fillCollinearity},
 }
 
@@ -128,6 +129,17 @@ func fillValidation(s *Study, w *csvWriter) {
 				w.text(ComponentName(a)).number(m.T[a])
 			}
 			w.number(step.AICc).number(step.BIC).number(step.Cp)
+			w.end()
+		}
+	}
+}
+
+func fillRemedies(s *Study, w *csvWriter) {
+	w.header("response", "remedy", "setting", "rmse_cv", "se_cv", "r2_fit", "coefficient_length", "effective_parameters", "sign_changes")
+	for _, m := range s.Regression.Result.Models {
+		for _, r := range m.Remedies {
+			w.text(m.Response).text(r.Name).text(r.Setting).number(r.CV).number(r.CVError).number(r.R2)
+			w.number(r.Length).number(r.Parameters).whole(int64(r.SignChanges))
 			w.end()
 		}
 	}

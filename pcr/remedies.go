@@ -1,0 +1,273 @@
+package pcr
+
+import (
+	"fmt"
+	"math"
+
+	"axisfold/pca"
+)
+
+// Remedy is one way to deal with collinear predictors, judged on the same folds.
+type Remedy struct {
+	Name    string
+	Setting string
+	// Parameter is the number of components or the ridge parameter, in units of the roots of
+	// the matrix; 0 for least squares.
+	Parameter float64
+	R2        float64 // on the rows of the fit
+	// CV and CVError are as in Step. They judge the setting shown; where the setting was
+	// chosen by them, they are a little too good.
+	CV, CVError float64
+	// Length is the length of the standardized coefficients; Parameters the effective
+	// number of slopes; SignChanges how many coefficients differ in sign from least
+	// squares (0 where that has no answer).
+	Length      float64
+	Parameters  float64
+	SignChanges int
+}
+
+// mostPLS bounds the number of partial least squares components that are tried.
+const mostPLS = 30
+
+// ridgeGrid are the ridge parameters tried: from 1e-7 to 100 mean roots, four a decade.
+// They do not depend on the rows but for the unit of the roots.
+func ridgeGrid(d *pca.Decomposition) []float64 {
+	mean := d.Total / float64(d.Width())
+	var out []float64
+	for e := -28; e <= 8; e++ {
+		out = append(out, mean*math.Pow(10, float64(e)/4))
+	}
+	return out
+}
+
+// ridgeSlopes are slopes on scores shrunk by l/(l+κ), l the root (Hoerl & Kennard 1970).
+func ridgeSlopes(d *pca.Decomposition, along []float64, kappa float64) []float64 {
+	out := make([]float64, len(along))
+	for a, v := range along {
+		out[a] = v / d.Length(a) * d.Values[a] / (d.Values[a] + kappa)
+	}
+	return out
+}
+
+// plsSlopes returns slopes on scores for 1..most components of partial least squares: the
+// least-squares solutions in the Krylov spaces of T'T and T'y (Manne 1987), which in the
+// coordinates of the components is diagonal. The basis is orthonormalised twice (Lanczos
+// with full orthogonalisation), and fewer are returned once the space is exhausted.
+func plsSlopes(d *pca.Decomposition, along []float64, most int) [][]float64 {
+	r := len(along)
+	square := make([]float64, r) // of the lengths of the scores
+	next := make([]float64, r)
+	for a := range along {
+		square[a] = d.Length(a) * d.Length(a)
+		next[a] = d.Length(a) * along[a] // T'y
+	}
+	var basis, images [][]float64
+	fitted := make([]float64, r) // slopes so far
+	var out [][]float64
+	first := 0.0
+	for range most {
+		for range 2 {
+			for _, b := range basis {
+				c := dot(b, next)
+				for a := range next {
+					next[a] -= c * b[a]
+				}
+			}
+		}
+		length := math.Sqrt(dot(next, next))
+		if len(basis) == 0 {
+			first = length
+		}
+		if length <= 1e-12*first || first == 0 {
+			break
+		}
+		b := make([]float64, r)
+		for a := range b {
+			b[a] = next[a] / length
+		}
+		basis = append(basis, b)
+		// A direction conjugate to those before: its image in row space is orthogonal.
+		direction := append([]float64(nil), b...)
+		for range 2 {
+			for _, q := range images {
+				c := 0.0
+				for a := range q {
+					c += q[a] * square[a] * direction[a]
+				}
+				for a := range direction {
+					direction[a] -= c * q[a]
+				}
+			}
+		}
+		size, reach := 0.0, 0.0
+		for a, v := range direction {
+			size += v * v * square[a]
+			reach += v * d.Length(a) * along[a]
+		}
+		if !(size > 0) {
+			break
+		}
+		root := math.Sqrt(size)
+		for a := range direction {
+			direction[a] /= root
+			fitted[a] += direction[a] * reach / root
+		}
+		images = append(images, direction)
+		out = append(out, append([]float64(nil), fitted...))
+		for a := range next {
+			next[a] = square[a] * b[a]
+		}
+		scale := math.Sqrt(dot(next, next))
+		for a := range next {
+			next[a] *= first / scale
+		}
+	}
+	return out
+}
+
+func dot(a, b []float64) float64 {
+	sum := 0.0
+	for i, v := range a {
+		sum += v * b[i]
+	}
+	return sum
+}
+
+// remedies compares components as chosen with least squares, ridge regression and partial
+// least squares.
+func (m *Model) remedies(d *pca.Decomposition, pr pca.Projection, v *validation, response, most int) {
+	along := pr.Along[:d.Rank]
+	ordinary := ridgeSlopes(d, along, 0)
+	full := d.Rank == d.Width() && m.Rows > d.Width()
+	add := func(name, setting string, parameter float64, slopes []float64, parameters float64, of func(f int) (float64, bool)) {
+		r := Remedy{Name: name, Setting: setting, Parameter: parameter, Parameters: parameters, CV: math.NaN(), CVError: math.NaN()}
+		left := pr.Outside
+		for a, b := range slopes {
+			e := along[a] - b*d.Length(a)
+			left += e * e
+		}
+		r.R2 = 1 - left/pr.Total
+		if v != nil {
+			r.CV, r.CVError, _ = v.rootMean(of)
+		}
+		squares := 0.0
+		for j := range d.Channels {
+			b, o := 0.0, 0.0
+			for a := range slopes {
+				b += d.Vector(j, a) * slopes[a]
+				o += d.Vector(j, a) * ordinary[a]
+			}
+			standardized := b / d.Scaling.Scale[j] * m.deviations[j] / m.deviation
+			squares += standardized * standardized
+			if full && b*o < 0 {
+				r.SignChanges++
+			}
+		}
+		r.Length = math.Sqrt(squares)
+		m.Remedies = append(m.Remedies, r)
+	}
+	slopes := make([]float64, d.Rank)
+	for _, a := range m.Entering[:m.Components] {
+		slopes[a] = ordinary[a]
+	}
+	at := func(k int, list func(heldErrors) []float64) func(int) (float64, bool) {
+		return func(f int) (float64, bool) {
+			l := list(v.errors[f][response])
+			if k < 0 || k >= len(l) {
+				return 0, false
+			}
+			return l[k], true
+		}
+	}
+	path := func(e heldErrors) []float64 { return e.path }
+	add("components", fmt.Sprintf("%d", m.Components), float64(m.Components), slopes, float64(m.Components), at(m.Components, path))
+	if full {
+		k := -1 // the error of all components, where they were among those considered
+		if most >= d.Rank {
+			k = d.Rank
+		}
+		add("least squares", "", 0, ordinary, float64(d.Rank), at(k, path))
+	}
+	m.addRidge(d, pr, v, response, add, at)
+	if v != nil {
+		pls := func(e heldErrors) []float64 { return e.pls }
+		fits := plsSlopes(d, along, min(most, mostPLS))
+		if best := v.best(len(fits), func(k int) func(int) (float64, bool) { return at(k, pls) }); best >= 0 {
+			add("partial least squares", fmt.Sprintf("%d components, by the folds", best+1), float64(best+1), fits[best], float64(best+1), at(best, pls))
+		}
+	}
+}
+
+// best is the index of the smallest error, -1 without any.
+func (v *validation) best(n int, of func(k int) func(int) (float64, bool)) int {
+	best, least := -1, math.Inf(1)
+	for k := range n {
+		if root, _, _ := v.rootMean(of(k)); root < least {
+			best, least = k, root
+		}
+	}
+	return best
+}
+
+// addRidge adds ridge regression with its parameter by the folds, by generalised
+// cross-validation (Golub, Heath & Wahba 1979), and by Hoerl, Kennard & Baldwin 1975.
+func (m *Model) addRidge(d *pca.Decomposition, pr pca.Projection, v *validation, response int,
+	add func(string, string, float64, []float64, float64, func(int) (float64, bool)), at func(int, func(heldErrors) []float64) func(int) (float64, bool)) {
+	along := pr.Along[:d.Rank]
+	grid := ridgeGrid(d)
+	parameters := func(kappa float64) float64 {
+		sum := 0.0
+		for a := range along {
+			sum += d.Values[a] / (d.Values[a] + kappa)
+		}
+		return sum
+	}
+	ridge := func(e heldErrors) []float64 { return e.ridge }
+	nearest := func(kappa float64) int {
+		best := 0
+		for i, g := range grid {
+			if math.Abs(math.Log(g/kappa)) < math.Abs(math.Log(grid[best]/kappa)) {
+				best = i
+			}
+		}
+		return best
+	}
+	if v != nil {
+		if best := v.best(len(grid), func(k int) func(int) (float64, bool) { return at(k, ridge) }); best >= 0 {
+			add("ridge", fmt.Sprintf("parameter %.3g, by the folds", grid[best]), grid[best], ridgeSlopes(d, along, grid[best]), parameters(grid[best]), at(best, ridge))
+		}
+	}
+	n := float64(m.Rows)
+	gcv, least := -1, math.Inf(1)
+	for i, kappa := range grid {
+		squares := pr.Outside
+		for a, u := range along {
+			rest := kappa / (d.Values[a] + kappa) * u
+			squares += rest * rest
+		}
+		if left := n - float64(m.constants) - parameters(kappa); left > 0 && squares/(left*left) < least {
+			gcv, least = i, squares/(left*left)
+		}
+	}
+	if gcv >= 0 {
+		add("ridge", fmt.Sprintf("parameter %.3g, by generalised cross-validation", grid[gcv]), grid[gcv], ridgeSlopes(d, along, grid[gcv]), parameters(grid[gcv]), at(gcv, ridge))
+	}
+	if kappa := hoerlKennardBaldwin(d, pr, m.Rows-m.constants); kappa > 0 && !math.IsInf(kappa, 0) {
+		// Judged at the nearest parameter of the grid.
+		add("ridge", fmt.Sprintf("parameter %.3g, by Hoerl, Kennard and Baldwin", kappa), kappa, ridgeSlopes(d, along, kappa), parameters(kappa), at(nearest(kappa), ridge))
+	}
+}
+
+// hoerlKennardBaldwin is κ = p·s²/b'b with s and b of least squares and b on predictors of
+// unit length, in units of the roots of the matrix; NaN where least squares has no answer.
+func hoerlKennardBaldwin(d *pca.Decomposition, pr pca.Projection, rows int) float64 {
+	free := rows - d.Width() // rows: without what the intercept takes
+	if d.Rank < d.Width() || free <= 0 {
+		return math.NaN()
+	}
+	squares := 0.0
+	for a, u := range pr.Along[:d.Rank] {
+		squares += u * u / d.Values[a]
+	}
+	return float64(d.Width()) * pr.Outside / float64(free) / squares
+}
