@@ -27,7 +27,8 @@ import (
 // Material is what may be drawn; empty parts leave out the pictures that need them.
 type Material struct {
 	Decomposition *pca.Decomposition
-	Verdict       retain.Verdict // the rule that decided
+	Verdict       retain.Verdict   // the rule that decided
+	Overview      []retain.Verdict // all rules, the deciding one first
 	// Correlations is p×p row-major, SimilarOrder the order of the channels in the map.
 	Correlations []float64
 	SimilarOrder []int
@@ -38,10 +39,13 @@ type Material struct {
 	Groups     []int
 	GroupNames []string
 	Reduction  *reduce.Result
-	Rebuild    float64 // target of the reduction; 0 without
-	Regression *pcr.Result
-	Units      []string // of the responses
-	Confidence float64
+	// ChannelSample is a sample of rows in original units, ChannelRows×p.
+	ChannelSample []float64
+	ChannelRows   int
+	Rebuild       float64 // target of the reduction; 0 without
+	Regression    *pcr.Result
+	Units         []string // of the responses
+	Confidence    float64
 	// Observed and Predicted hold the same sample by response.
 	Observed, Predicted [][]float64
 }
@@ -59,7 +63,7 @@ type Picture struct {
 }
 
 // Pictures lists all pictures.
-var Pictures = []Picture{scree, cumulativeShare, loadings, loadingsPlane, scoresPlane, correlationMap, tradeoff, validation, coefficients, predictions}
+var Pictures = []Picture{scree, cumulativeShare, loadings, loadingsPlane, scoresPlane, correlationMap, retention, tradeoff, rebuilt, validation, coefficients, predictions}
 
 // Formats lists the formats, the default first.
 var Formats = []string{"svg", "png", "pdf"}
@@ -144,7 +148,7 @@ func (m *Material) check() error {
 	if d == nil || len(d.Values) == 0 {
 		return fmt.Errorf("pictures: nothing was decomposed")
 	}
-	for what, list := range map[string][]float64{"eigenvalues": d.Values, "eigenvectors": d.Vectors, "scores": m.Scores, "correlations": m.Correlations} {
+	for what, list := range map[string][]float64{"eigenvalues": d.Values, "eigenvectors": d.Vectors, "scores": m.Scores, "correlations": m.Correlations, "channels": m.ChannelSample} {
 		for i, v := range list {
 			if math.IsNaN(v) || math.IsInf(v, 0) {
 				return fmt.Errorf("pictures: number %d of the %s is %g", i+1, what, v)

@@ -63,6 +63,7 @@ func material(t testing.TB, p, k int, matrix pca.Matrix, names func(j int) strin
 	d := fit.Decomposition
 	m := &Material{Decomposition: d, TotalRows: 5000, Regression: fit, Confidence: .95, Units: []string{"m"}}
 	m.Verdict = retain.Verdict{Rule: "parallel", Setting: "percentile 95", Components: min(k, p)}
+	m.Overview = []retain.Verdict{m.Verdict, {Rule: "share", Setting: "at_least 0.9", Components: p}, {Rule: "evidence", Abstains: true}}
 	for a := range d.Values {
 		m.Verdict.Reference = append(m.Verdict.Reference, d.Total/float64(p)*(1.3-.6*float64(a)/float64(p)))
 	}
@@ -83,6 +84,7 @@ func material(t testing.TB, p, k int, matrix pca.Matrix, names func(j int) strin
 		observed[i] = data[i*(p+1)+p]
 		m.Groups = append(m.Groups, i%3)
 	}
+	m.ChannelSample, m.ChannelRows = rows, n
 	fit.NewPredictor(0, .95, false).Predict(predicted, half, rows, n)
 	m.Observed, m.Predicted = [][]float64{observed}, [][]float64{predicted}
 	if p >= 2 {
@@ -132,7 +134,7 @@ func TestAllPictures(t *testing.T) {
 					want -= 2 * 3 // neither plane
 				}
 				if p == 1 {
-					want -= 2 * 3 // no map of one channel, and none to drop
+					want -= 3 * 3 // no map of one channel, and none to drop
 				}
 				if len(first) != want {
 					t.Errorf("p=%d k=%d: %d files, want %d", p, k, len(first), want)

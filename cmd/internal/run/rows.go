@@ -26,6 +26,8 @@ type sample struct {
 	names     []string
 	observed  [][]float64
 	predicted [][]float64
+	// channels are rows × p in original units, kept for pictures of rebuilt channels.
+	channels []float64
 }
 
 // rows goes through the rows once more and writes what belongs to rows: scores,
@@ -82,7 +84,7 @@ func (w *work) rows(ctx context.Context) error {
 	}, func(b *table.Block) error {
 		lines := b.Result.(*blockLines)
 		defer spare.Put(lines)
-		w.sample.take(b, lines, done, layout.Group)
+		w.sample.take(b, lines, done, layout.Group, w.sampled())
 		for r := range b.Rows {
 			at := 0
 			if k > 0 {
@@ -225,9 +227,17 @@ func (m *lineMaker) key(b *table.Block, r int) report.RowKey {
 	return k
 }
 
+// sampled are the channels whose values pictures need: all when some were dropped.
+func (w *work) sampled() []int {
+	if w.study.Reduction == nil || w.cfg.Draw == nil {
+		return nil
+	}
+	return w.active
+}
+
 // take adds every stride-th row of the block, whose first row is number first among the
 // complete ones.
-func (s *sample) take(b *table.Block, lines *blockLines, first int64, grouped bool) {
+func (s *sample) take(b *table.Block, lines *blockLines, first int64, grouped bool, active []int) {
 	k := 0
 	if b.Rows > 0 {
 		k = len(lines.scores) / b.Rows
@@ -245,6 +255,9 @@ func (s *sample) take(b *table.Block, lines *blockLines, first int64, grouped bo
 				s.names = append(s.names, name)
 			}
 			s.groups = append(s.groups, at)
+		}
+		for _, j := range active {
+			s.channels = append(s.channels, b.Data[r*b.Width+j])
 		}
 		for i := range lines.predicted {
 			s.observed[i] = append(s.observed[i], lines.observed[i][r])
