@@ -149,11 +149,16 @@ func (q *problem) doubts(r *Result) {
 	}
 	poor := 0
 	for _, j := range r.Dropped {
-		if c := r.Channels[j]; q.Size == 0 && c.HeldOutR2 < q.Rebuild-0.05 {
+		c := r.Channels[j]
+		miss := c.HeldOutR2 < q.Rebuild-0.05
+		if q.byError[j] {
+			miss = c.HeldOutSD > 1.1*q.Tolerance[j]
+		}
+		if miss && q.Size == 0 {
 			poor++
 		}
 	}
 	if poor > 0 {
-		r.warn("held-out-below-target", fmt.Sprintf("%d dropped channels fall more than 0.05 below the target R-squared on rows they were not fitted on; raise rebuild or protect them", poor))
+		r.warn("held-out-below-target", fmt.Sprintf("%d dropped channels miss the target on rows they were not fitted on, by more than 0.05 in R-squared or a tenth of the tolerance; ask for more or protect them", poor))
 	}
 }

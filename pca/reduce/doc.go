@@ -30,7 +30,11 @@
 // Greedy forward choice by exact Schur-complement updates comes first, then exchanges of
 // one kept unit for one dropped unit until none improves. Up to [Options.ExactUpTo] channels a
 // branch-and-bound search over all sets follows and proves the result best, up to rounding.
-// The result is the same for any number of threads.
+// At 30 channels it is done in seconds for worst-r2, rm, mccabe-det, mccabe-trace and
+// mccabe-frobenius unless the data hold little structure; the bounds for rv and gcd are
+// weaker, and mccabe-canonical has none. A search that reaches its limit of nodes returns
+// the best set seen, with Optimal false and a warning. The result is the same for any
+// number of threads.
 //
 // # Dependent channels
 //

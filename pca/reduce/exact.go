@@ -8,10 +8,15 @@ import (
 )
 
 const (
-	maxNodes   = 2_000_000 // of the search tree in all; some ten seconds on two cores at p = 30
-	splitDepth = 6         // the tree above is walked first and its leaves are the parallel jobs
-	roundSize  = 16        // jobs that run beside one another and share the best set of earlier rounds
-	proofSlack = 1e-11     // a set must be better by more than this to count
+	// maxNodes of the search tree are some ten to thirty seconds on two cores at p = 30. A job
+	// may use a quarter of what is left, so the last round can go beyond.
+	maxNodes = 2_000_000
+	// blindNodes is for the one criterion without a bound, where only the whole tree, near
+	// 2^p nodes, is a proof.
+	blindNodes = 100_000
+	splitDepth = 6     // the tree above is walked first and its leaves are the parallel jobs
+	roundSize  = 16    // jobs that run beside one another and share the best set of earlier rounds
+	proofSlack = 1e-11 // a set must be better by more than this to count
 )
 
 // found is a set with what sets are compared by.
@@ -71,9 +76,6 @@ type search struct {
 	prices  []price
 	jobs    *[]node // where nodes at splitDepth go; nil: walk on
 }
-
-// costlyShare is how much fewer nodes there are where each needs the whole matrix.
-const costlyShare = 4
 
 // exact improves on the set given by branch and bound over all sets. It tells whether the
 // result is proved best and how many nodes were looked at.

@@ -33,8 +33,8 @@ type problem struct {
 func newProblem(s *pca.Summary, o Options) (*problem, error) {
 	p := s.Width()
 	q := &problem{Options: o, p: p, n: s.Count(), m: s.Correlations(), goal: criterion(slices.Index(Criteria, o.Criterion)), nodeLimit: maxNodes}
-	if !q.goal.quick() {
-		q.nodeLimit /= costlyShare
+	if q.goal == mcCabeCanonical {
+		q.nodeLimit = blindNodes
 	}
 	if o.Matrix == "covariance" {
 		weight := make([]float64, p)
@@ -81,7 +81,7 @@ func (q *problem) prepare() error {
 		return fmt.Errorf("eigen decomposition failed: %w", err)
 	}
 	q.makeUnits()
-	if q.Size > 0 && !q.reachable(q.protectedOnly(), q.Size) {
+	if q.Size > 0 && !q.reachable(q.fixed, q.Size) {
 		return fmt.Errorf("no set of %d channels keeps every protected channel and every group whole", q.Size)
 	}
 	return nil
@@ -141,8 +141,6 @@ func (q *problem) start() *swept {
 }
 
 func (q *problem) has(s *swept, u int) bool { return s.kept[q.units[u][0]] }
-
-func (q *problem) protectedOnly() []bool { return slices.Clone(q.fixed) }
 
 // reachable tells whether units not yet chosen can bring the channels of the chosen ones
 // to exactly size.

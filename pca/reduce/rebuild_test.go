@@ -195,6 +195,31 @@ func TestCurve(t *testing.T) {
 	}
 }
 
+// A target met by chance, with as few rows as that takes, is told by rows left out.
+func TestHeldOutWarning(t *testing.T) {
+	rng := rand.New(rand.NewPCG(4, 6))
+	p, n := 8, 10
+	x := make([]float64, n*p)
+	for i := range x {
+		x[i] = rng.NormFloat64()
+	}
+	told := func(o Options) bool {
+		folds := []*pca.Summary{summary(x[:n*p/2], p), summary(x[n*p/2:], p)}
+		r := mustChoose(t, pca.MergeAll(folds...), folds, o)
+		return slices.ContainsFunc(r.Warnings, func(w pca.Warning) bool { return w.Code == "held-out-below-target" })
+	}
+	if !told(Options{Rebuild: 0.7}) {
+		t.Error("no word about chance")
+	}
+	if told(Options{Rebuild: 0.7, Tolerance: slices.Repeat([]float64{1000}, p), Protect: slices.Repeat([]bool{true}, p)}) {
+		t.Error("a warning with every channel kept")
+	}
+	// A wide tolerance is met whatever the R-squared.
+	if told(Options{Rebuild: 0.7, Tolerance: slices.Repeat([]float64{1000}, p)}) {
+		t.Error("a warning beside a tolerance that is met")
+	}
+}
+
 // Average linkage by the definition: r01 = .96, and 2 joins at (.93+.89)/2 = .91; 3 stays out.
 func TestClusters(t *testing.T) {
 	r := []float64{1, .96, -.93, .89, .96, 1, -.89, .5, -.93, -.89, 1, .1, .89, .5, .1, 1}

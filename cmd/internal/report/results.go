@@ -136,6 +136,12 @@ func WriteResults(s *Study, out io.Writer) error {
 		Decomposition: decompositionFacts{Matrix: d.Matrix, Route: d.Route, Reason: d.Reason, Rows: d.Rows,
 			Channels: d.Width(), Rank: d.Rank, Retained: s.Retained(), Total: Number(d.Total),
 			Condition: Number(d.Condition()), Eigenvalues: numbers(d.Values)}}
+	if f.Table.Notes == nil {
+		f.Table.Notes = []Note{} // an empty list, not null
+	}
+	if f.Warnings == nil {
+		f.Warnings = []pca.Warning{}
+	}
 	for a := range d.Values {
 		f.Decomposition.Shares = append(f.Decomposition.Shares, Number(d.Share(a)))
 	}
