@@ -110,8 +110,11 @@ type ledger struct {
 // ledgerBytes bounds the memory of a ledger.
 const ledgerBytes = 48 << 20
 
-func newLedger(width, folds int) *ledger {
-	return &ledger{most: max(4*folds, min(4096, ledgerBytes/(8*width*width+1)))}
+// newLedger makes a ledger for summaries of so many columns; ranks is how many values of
+// each they keep for medians.
+func newLedger(width, folds, ranks int) *ledger {
+	entry := 8 * width * (width + 3*ranks)
+	return &ledger{most: max(4*folds, min(4096, ledgerBytes/(entry+1)))}
 }
 
 func (l *ledger) add(s *pca.Summary) {

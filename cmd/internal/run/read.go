@@ -3,6 +3,7 @@ package run
 import (
 	"context"
 	"fmt"
+	"strconv"
 	"sync"
 	"sync/atomic"
 
@@ -16,7 +17,7 @@ import (
 const heldCells = 4 << 20
 
 // exactRanks is up to how many rows of a table too large to hold medians are exact.
-const exactRanks = 4096
+const exactRanks = 2048
 
 // reading is what the first pass over the rows leaves.
 type reading struct {
@@ -131,7 +132,7 @@ func newCollector(r *roles, plan *foldPlan, form pca.Form) *collector {
 	case plan == nil:
 		c.whole = pca.NewBuilder(r.width(), form, c.ranks).Empty()
 	case plan.arrangement == blockFolds:
-		c.ledger = newLedger(r.width(), plan.folds)
+		c.ledger = newLedger(r.width(), plan.folds, c.ranks)
 	}
 	return c
 }
@@ -158,7 +159,11 @@ func (c *collector) summarize(b *table.Block) []keyed {
 		return out
 	case c.plan.arrangement == randomFolds:
 		folds := c.plan.deal(b.Index, b.Rows)
-		key = func(i int) string { return fmt.Sprint(folds[i]) }
+		names := make([]string, c.plan.folds)
+		for f := range names {
+			names[f] = strconv.Itoa(f)
+		}
+		key = func(i int) string { return names[folds[i]] }
 	default:
 		key = func(i int) string { return string(b.Group(i)) }
 	}
@@ -168,17 +173,27 @@ func (c *collector) summarize(b *table.Block) []keyed {
 // split summarises the rows of a block by key, in the order in which keys appear.
 func split(b *table.Block, key func(i int) string, builder *pca.Builder) []keyed {
 	var keys []string
-	rows := map[string][]float64{}
+	var rows [][]int // by key
+	at := map[string]int{}
 	for i := range b.Rows {
 		k := key(i)
-		if _, ok := rows[k]; !ok {
+		place, ok := at[k]
+		if !ok {
+			place = len(keys)
+			at[k] = place
 			keys = append(keys, k)
+			rows = append(rows, nil)
 		}
-		rows[k] = append(rows[k], b.Data[i*b.Width:(i+1)*b.Width]...)
+		rows[place] = append(rows[place], i)
 	}
 	out := make([]keyed, len(keys))
-	for i, k := range keys {
-		out[i] = keyed{k, builder.Summarize(rows[k], len(rows[k])/b.Width)}
+	var gathered []float64
+	for place, k := range keys {
+		gathered = gathered[:0]
+		for _, i := range rows[place] {
+			gathered = append(gathered, b.Data[i*b.Width:(i+1)*b.Width]...)
+		}
+		out[place] = keyed{k, builder.Summarize(gathered, len(rows[place]))}
 	}
 	return out
 }
