@@ -46,6 +46,10 @@ var rules = []listed{
 		{Name: "noise", Kind: Number, Range: atLeast(0), Default: 0.0, Doc: "standard deviation of the noise in the scaled channels; 0 takes it from the median"}}}},
 	{either, RuleDescription{"evidence", "the largest evidence for components plus equal noise", nil}},
 	{first, RuleDescription{"bic", "the Bayesian information criterion of components plus equal noise", nil}},
+	{either, RuleDescription{"parallel-shifts", "eigenvalues above those of the channels shifted in time against one another", []Key{
+		{Name: "percentile", Kind: Number, Range: below(100), Default: 95.0, Doc: "of the replicates"},
+		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Default: 1000, Doc: "shifted tables to make"}}}},
+	{either, RuleDescription{"bi-cross-validation", "the number that best predicts hidden blocks of rows and channels", nil}},
 	{either, RuleDescription{"knee", "eigenvalues before the sharpest bend, a heuristic", nil}},
 	{either, RuleDescription{"agreement", "the number that most rules with a model of noise name", nil}},
 	{second, RuleDescription{"cross-validation", "the smallest error on held-out rows", heldOut}},

@@ -239,16 +239,19 @@ func TestRulesFindTheTruth(t *testing.T) {
 			found := map[string]int{}
 			for trial := range trials {
 				e := simulated(t, shape[0], shape[1], truth, uint64(trial))
-				for _, rule := range []string{"parallel", "minimum-average-partial", "equal-roots", "tracy-widom", "evidence", "bic", "agreement"} {
+				for _, rule := range []string{"parallel", "minimum-average-partial", "equal-roots", "tracy-widom", "evidence", "bic", "parallel-shifts", "bi-cross-validation", "agreement"} {
 					if v := apply(t, rule, e, func(s *retain.Settings) { s.Replicates = 200 }); !v.Abstains && v.Components == truth {
 						found[rule]++
 					}
 				}
 			}
 			t.Logf("n=%d p=%d truth %d: found by %v of %d", shape[0], shape[1], truth, found, trials)
-			for rule, least := range map[string]int{"parallel": 34, "tracy-widom": 34, "evidence": 36, "bic": 36, "agreement": 34} {
+			for rule, least := range map[string]int{"parallel": 34, "tracy-widom": 34, "evidence": 36, "bic": 36, "bi-cross-validation": 34, "agreement": 34} {
 				if truth == 0 && (rule == "evidence" || rule == "bic") {
 					continue // they weigh one component or more
+				}
+				if rule == "bi-cross-validation" && shape[1] < 12 {
+					continue
 				}
 				if truth == 3 && rule == "parallel" && shape[1] == 8 {
 					continue // later roots are compared with those of a table without components: cautious
@@ -297,5 +300,89 @@ func simulated(t *testing.T, n, p, components int, seed uint64) *retain.Evidence
 		t.Fatal(err)
 	}
 	e := retain.EvidenceFor(d, deviations, seed, 0)
+	e.Standardized = make([]float64, n*p)
+	for r := range n {
+		for j := range p {
+			e.Standardized[r*p+j] = (x[r*p+j] - s.Mean(j)) / d.Scaling.Scale[j]
+		}
+	}
 	return &e
+}
+
+// Rows of rank k without noise are predicted without error by k components, so that
+// bi-cross-validation keeps k exactly (in closed form).
+func TestBiCrossWithoutNoise(t *testing.T) {
+	for _, k := range []int{1, 2, 3} {
+		n, p := 40, 12
+		rng := rand.New(rand.NewPCG(uint64(k), 77))
+		u, w := make([]float64, n*k), make([]float64, k*p)
+		for i := range u {
+			u[i] = rng.NormFloat64()
+		}
+		for i := range w {
+			w[i] = rng.NormFloat64()
+		}
+		e := &retain.Evidence{Rows: n, Matrix: pca.Covariance, Rank: k, Seed: 3, Deviations: make([]float64, p), Standardized: make([]float64, n*p)}
+		for a := range p {
+			e.Values = append(e.Values, 0)
+			if a < k {
+				e.Values[a] = 1
+			}
+		}
+		for r := range n {
+			for j := range p {
+				for c := range k {
+					e.Standardized[r*p+j] += u[r*k+c] * w[c*p+j]
+				}
+			}
+		}
+		if v := apply(t, "bi-cross-validation", e, nil); v.Components != k {
+			t.Errorf("rank %d: %d components (%s)", k, v.Components, v.Note)
+		}
+	}
+}
+
+// Channels that are independent but follow their own past look correlated by chance; the
+// shifted reference grows with them while that of independent rows does not.
+func TestParallelShiftsUnderAutocorrelation(t *testing.T) {
+	wrong, right := 0, 0
+	for trial := range 20 {
+		n, p := 300, 10
+		rng := rand.New(rand.NewPCG(uint64(trial), 5))
+		x := make([]float64, n*p)
+		for j := range p {
+			v := 0.0
+			for r := range n {
+				v = .95*v + rng.NormFloat64()
+				x[r*p+j] = v
+			}
+		}
+		s := pca.NewBuilder(p, pca.CrossProducts, 0).Summarize(x, n)
+		o := pca.Options{Matrix: pca.Correlation}
+		deviations := make([]float64, p)
+		for j := range p {
+			o.Names = append(o.Names, strconv.Itoa(j))
+			o.Methods = append(o.Methods, pca.UnitNormal)
+			deviations[j] = s.Deviation(j)
+		}
+		d, err := pca.Decompose(s, o)
+		if err != nil {
+			t.Fatal(err)
+		}
+		e := retain.EvidenceFor(d, deviations, 1, 0)
+		e.Standardized = make([]float64, n*p)
+		for i, v := range x {
+			e.Standardized[i] = (v - s.Mean(i%p)) / deviations[i%p]
+		}
+		quick := func(s *retain.Settings) { s.Replicates = 100 }
+		if apply(t, "parallel", &e, quick).Components > 0 {
+			wrong++
+		}
+		if apply(t, "parallel-shifts", &e, quick).Components == 0 {
+			right++
+		}
+	}
+	if wrong < 18 || right < 16 {
+		t.Errorf("independent rows assumed: wrong %d times of 20; shifted: right %d times", wrong, right)
+	}
 }

@@ -26,8 +26,11 @@ type Evidence struct {
 	// 1 under the correlation matrix.
 	Deviations []float64
 	Rank       int
-	Seed       uint64
-	Threads    int // the verdict does not depend on it
+	// Standardized are the rows, Rows×p row-major, centred and of unit variance (or scaled
+	// as decomposed, under the covariance matrix); nil where they are not in memory.
+	Standardized []float64
+	Seed         uint64
+	Threads      int // the verdict does not depend on it
 
 	// null keeps the roots of independent channels by number of replicates: several
 	// verdicts rest on the same draws.
@@ -104,7 +107,7 @@ type Rule struct {
 
 // Rules is the list of all rules.
 var Rules = []Rule{fixed, share, eigenvalueAbove, brokenStick, parallel, minimumAveragePartial, equalRoots,
-	tracyWidom, hardThreshold, laplaceEvidence, bayesianInformation, knee, agreement}
+	tracyWidom, hardThreshold, laplaceEvidence, bayesianInformation, parallelShifts, biCross, knee, agreement}
 
 // Names returns the names of all rules.
 func Names() []string {

@@ -143,6 +143,9 @@ func (w *work) retain(context.Context) error {
 		deviations[j] = w.whole.Deviation(i)
 	}
 	e := retain.EvidenceFor(w.study.Decomposition, deviations, w.cfg.Seed, w.options.Threads)
+	if held := w.reading.source.held; held != nil {
+		e.Standardized = w.standardized(held.Matrix())
+	}
 	w.roots = &e
 	r := w.cfg.Retain
 	verdict, err := retain.Apply(r.Rule, &e, settingsOf(r))
@@ -160,4 +163,16 @@ func (w *work) retain(context.Context) error {
 			Text: fmt.Sprintf("%s keeps no component: %s", r.Rule, verdict.Note)})
 	}
 	return nil
+}
+
+// standardized brings the rows in memory to the scale of the decomposition, centred.
+func (w *work) standardized(rows []float64) []float64 {
+	d, width, p := w.study.Decomposition, w.roles.width(), len(w.active)
+	out := make([]float64, len(rows)/width*p)
+	for i := range len(rows) / width {
+		for j, a := range w.active {
+			out[i*p+j] = (rows[i*width+a] - w.whole.Mean(a)) / d.Scaling.Scale[j]
+		}
+	}
+	return out
 }

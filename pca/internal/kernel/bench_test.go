@@ -69,6 +69,41 @@ func BenchmarkVectors(b *testing.B) {
 	}
 }
 
+func BenchmarkSymmetricMultiply(b *testing.B) {
+	rng := rand.New(rand.NewPCG(1, 1))
+	for _, n := range []int{48, 200, 1000, 2000} {
+		ld := n | 8
+		a, v, y := numbers(rng, n*ld, 1), numbers(rng, n, 1), make([]float64, n)
+		for _, w := range paths() {
+			b.Run(fmt.Sprintf("path=%s/n=%d", w, n), func(b *testing.B) {
+				force(b, w)
+				b.SetBytes(int64(4 * n * n))
+				for b.Loop() {
+					AddSymmetricMultiply(y, a, ld, v, 0, n, n)
+				}
+				reportFlops(b, 2*n*n)
+			})
+		}
+	}
+}
+
+func BenchmarkUpperProduct(b *testing.B) {
+	rng := rand.New(rand.NewPCG(1, 1))
+	for _, shape := range [][2]int{{48, 16}, {200, 16}, {1000, 64}} {
+		p, n := shape[0], shape[1]
+		left, right, c := numbers(rng, n*p, 1), numbers(rng, n*p, 1), make([]float64, p*p)
+		for _, w := range paths() {
+			b.Run(fmt.Sprintf("path=%s/n=%d/p=%d", w, n, p), func(b *testing.B) {
+				force(b, w)
+				for b.Loop() {
+					AddUpperProduct(c, p, left, right, p, n, 0, p, p)
+				}
+				reportFlops(b, n*p*(p+1))
+			})
+		}
+	}
+}
+
 func BenchmarkColumns(b *testing.B) {
 	rng := rand.New(rand.NewPCG(1, 1))
 	n, p := 1024, 50

@@ -26,13 +26,10 @@ func AddMultiply(dst []float64, ldd int, x []float64, ldx int, v []float64, ldv 
 // leastRows of dst are worth a packed copy of v.
 const leastRows = 4
 
-// addMultiplyRows takes dst and v row by row, with no copy of v.
+// addMultiplyRows takes dst row by row, with no copy of v.
 func addMultiplyRows(dst []float64, ldd int, x []float64, ldx int, v []float64, ldv int, n, p, k int) {
 	for r := range n {
-		out := dst[r*ldd : r*ldd+k]
-		for j, w := range x[r*ldx : r*ldx+p] {
-			axpy(w, v[j*ldv:j*ldv+k], out)
-		}
+		combine(dst[r*ldd:r*ldd+k], x[r*ldx:r*ldx+p], v, ldv)
 	}
 }
 

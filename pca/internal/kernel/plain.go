@@ -25,10 +25,14 @@ func addCrossProductsPlain(c, x []float64, n, p int) {
 // addMultiplyPlain is the specification of AddMultiply.
 func addMultiplyPlain(dst []float64, ldd int, x []float64, ldx int, v []float64, ldv int, n, p, k int) {
 	for r := range n {
-		out := dst[r*ldd : r*ldd+k]
-		for j, w := range x[r*ldx : r*ldx+p] {
-			axpyPlain(w, v[j*ldv:j*ldv+k], out)
-		}
+		combinePlain(dst[r*ldd:r*ldd+k], x[r*ldx:r*ldx+p], v, ldv)
+	}
+}
+
+// combinePlain is the specification of combine.
+func combinePlain(y, u, v []float64, ldv int) {
+	for j, w := range u {
+		axpyPlain(w, v[j*ldv:j*ldv+len(y)], y)
 	}
 }
 

@@ -1,0 +1,63 @@
+//go:build !purego
+
+#include "textflag.h"
+
+// Four rows: Y0..Y7 are their lanes, Y8..Y11 the numbers of v at the rows, Y12 and Y13
+// eight numbers of v, Y14 and Y15 of y.
+
+#define ROW(LOW, HIGH, U, A, B) \
+	VFMADD231PD LOW, Y12, A \
+	VFMADD231PD HIGH, Y13, B \
+	VFMADD231PD LOW, U, Y14 \
+	VFMADD231PD HIGH, U, Y15
+
+// func fourRowsAVX2(lanes *[32]float64, y, a *float64, ld int, u, v *float64, chunks int)
+TEXT ·fourRowsAVX2(SB), NOSPLIT, $0-56
+	MOVQ lanes+0(FP), BX
+	MOVQ y+8(FP), DI
+	MOVQ a+16(FP), SI
+	MOVQ ld+24(FP), R8
+	MOVQ u+32(FP), AX
+	MOVQ v+40(FP), DX
+	MOVQ chunks+48(FP), CX
+	LEAQ (R8)(R8*2), R9
+	VMOVUPD (BX), Y0
+	VMOVUPD 32(BX), Y1
+	VMOVUPD 64(BX), Y2
+	VMOVUPD 96(BX), Y3
+	VMOVUPD 128(BX), Y4
+	VMOVUPD 160(BX), Y5
+	VMOVUPD 192(BX), Y6
+	VMOVUPD 224(BX), Y7
+	VBROADCASTSD (AX), Y8
+	VBROADCASTSD 8(AX), Y9
+	VBROADCASTSD 16(AX), Y10
+	VBROADCASTSD 24(AX), Y11
+
+loop:
+	VMOVUPD (DX), Y12
+	VMOVUPD 32(DX), Y13
+	VMOVUPD (DI), Y14
+	VMOVUPD 32(DI), Y15
+	ROW((SI), 32(SI), Y8, Y0, Y1)
+	ROW((SI)(R8*1), 32(SI)(R8*1), Y9, Y2, Y3)
+	ROW((SI)(R8*2), 32(SI)(R8*2), Y10, Y4, Y5)
+	ROW((SI)(R9*1), 32(SI)(R9*1), Y11, Y6, Y7)
+	VMOVUPD Y14, (DI)
+	VMOVUPD Y15, 32(DI)
+	ADDQ $64, SI
+	ADDQ $64, DX
+	ADDQ $64, DI
+	DECQ CX
+	JNZ  loop
+
+	VMOVUPD Y0, (BX)
+	VMOVUPD Y1, 32(BX)
+	VMOVUPD Y2, 64(BX)
+	VMOVUPD Y3, 96(BX)
+	VMOVUPD Y4, 128(BX)
+	VMOVUPD Y5, 160(BX)
+	VMOVUPD Y6, 192(BX)
+	VMOVUPD Y7, 224(BX)
+	VZEROUPPER
+	RET

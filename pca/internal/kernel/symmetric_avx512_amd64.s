@@ -1,0 +1,175 @@
+//go:build !purego
+
+#include "textflag.h"
+
+// Z0..Z7 are the lanes of eight rows, Z8..Z15 the numbers of v at the rows, Z16 and Z17
+// eight numbers of v and y.
+
+#define BROADCAST(R, U, S) \
+	VBROADCASTSD (R*8)(DX), U \
+	VPXORQ S, S, S
+
+#define ROW(FROM, A, U, S) \
+	VMOVUPD FROM, A \
+	VFMADD231PD A, Z16, S \
+	VFMADD231PD A, U, Z17
+
+// On the diagonal a row begins at lane R in its own sum, and at R+1 in y.
+#define DIAGONAL(FROM, A, U, S, HERE, AFTER) \
+	VMOVUPD FROM, A \
+	VFMADD231PD A, Z16, HERE, S \
+	VFMADD231PD A, U, AFTER, Z17
+
+#define MASK(BITS, K) \
+	MOVL BITS, AX \
+	KMOVW AX, K
+
+#define HALVE(Z, Y, X, YT, XT) \
+	VEXTRACTF64X4 $1, Z, YT \
+	VADDPD YT, Y, Y \
+	VEXTRACTF128 $1, Y, XT \
+	VADDPD XT, X, X
+
+// func symmetricMultiplyAVX512(y, a *float64, ld int, v *float64, rows, columns int)
+TEXT ·symmetricMultiplyAVX512(SB), NOSPLIT, $0-48
+	MOVQ y+0(FP), DI
+	MOVQ a+8(FP), SI
+	MOVQ ld+16(FP), R8
+	MOVQ v+24(FP), DX
+	MOVQ rows+32(FP), R13
+	MOVQ columns+40(FP), R12
+	LEAQ (R8)(R8*2), R9
+	MASK($0xfe, K1)
+	MASK($0xfc, K2)
+	MASK($0xf8, K3)
+	MASK($0xf0, K4)
+	MASK($0xe0, K5)
+	MASK($0xc0, K6)
+	MASK($0x80, K7)
+
+group:
+	BROADCAST(0, Z8, Z0)
+	BROADCAST(1, Z9, Z1)
+	BROADCAST(2, Z10, Z2)
+	BROADCAST(3, Z11, Z3)
+	BROADCAST(4, Z12, Z4)
+	BROADCAST(5, Z13, Z5)
+	BROADCAST(6, Z14, Z6)
+	BROADCAST(7, Z15, Z7)
+	MOVQ SI, R10
+	LEAQ (SI)(R8*4), R11
+	MOVQ DX, BX
+	MOVQ DI, R15
+	VMOVUPD (BX), Z16
+	VMOVUPD (R15), Z17
+	VMOVUPD (R10), Z18
+	VFMADD231PD Z18, Z16, Z0
+	VFMADD231PD Z18, Z8, K1, Z17
+	DIAGONAL((R10)(R8*1), Z19, Z9, Z1, K1, K2)
+	DIAGONAL((R10)(R8*2), Z20, Z10, Z2, K2, K3)
+	DIAGONAL((R10)(R9*1), Z21, Z11, Z3, K3, K4)
+	DIAGONAL((R11), Z22, Z12, Z4, K4, K5)
+	DIAGONAL((R11)(R8*1), Z23, Z13, Z5, K5, K6)
+	DIAGONAL((R11)(R8*2), Z24, Z14, Z6, K6, K7)
+	VMOVUPD (R11)(R9*1), Z25
+	VFMADD231PD Z25, Z16, K7, Z7
+	VMOVUPD Z17, (R15)
+	MOVQ R12, CX
+	SUBQ $1, CX
+	JZ   sums
+
+	PCALIGN $32
+loop:
+	ADDQ $64, R10
+	ADDQ $64, R11
+	ADDQ $64, BX
+	ADDQ $64, R15
+	VMOVUPD (BX), Z16
+	VMOVUPD (R15), Z17
+	ROW((R10), Z18, Z8, Z0)
+	ROW((R10)(R8*1), Z19, Z9, Z1)
+	ROW((R10)(R8*2), Z20, Z10, Z2)
+	ROW((R10)(R9*1), Z21, Z11, Z3)
+	ROW((R11), Z22, Z12, Z4)
+	ROW((R11)(R8*1), Z23, Z13, Z5)
+	ROW((R11)(R8*2), Z24, Z14, Z6)
+	ROW((R11)(R9*1), Z25, Z15, Z7)
+	VMOVUPD Z17, (R15)
+	DECQ CX
+	JNZ  loop
+
+sums:
+	HALVE(Z0, Y0, X0, Y8, X9)
+	HALVE(Z1, Y1, X1, Y10, X11)
+	HALVE(Z2, Y2, X2, Y12, X13)
+	HALVE(Z3, Y3, X3, Y14, X15)
+	HALVE(Z4, Y4, X4, Y8, X9)
+	HALVE(Z5, Y5, X5, Y10, X11)
+	HALVE(Z6, Y6, X6, Y12, X13)
+	HALVE(Z7, Y7, X7, Y14, X15)
+	VHADDPD X1, X0, X0
+	VHADDPD X3, X2, X2
+	VHADDPD X5, X4, X4
+	VHADDPD X7, X6, X6
+	VADDPD (DI), X0, X0
+	VADDPD 16(DI), X2, X2
+	VADDPD 32(DI), X4, X4
+	VADDPD 48(DI), X6, X6
+	VMOVUPD X0, (DI)
+	VMOVUPD X2, 16(DI)
+	VMOVUPD X4, 32(DI)
+	VMOVUPD X6, 48(DI)
+
+	// the next group: 8 rows down, 8 columns on
+	LEAQ (SI)(R8*8), SI
+	ADDQ $64, SI
+	ADDQ $64, DX
+	ADDQ $64, DI
+	DECQ R12
+	DECQ R13
+	JNZ  group
+	VZEROUPPER
+	RET
+
+#define CHAIN \
+	VBROADCASTSD (DX), Z4 \
+	VFMADD231PD (SI), Z4, K1, Z0 \
+	VFMADD231PD 64(SI), Z4, K2, Z1 \
+	VFMADD231PD 128(SI), Z4, K3, Z2 \
+	VFMADD231PD 192(SI), Z4, K4, Z3 \
+	ADDQ $8, DX \
+	ADDQ R8, SI
+
+// func combineAVX512(y, u, a *float64, ld, rows, columns int)
+TEXT ·combineAVX512(SB), NOSPLIT, $0-48
+	MOVQ y+0(FP), DI
+	MOVQ u+8(FP), DX
+	MOVQ a+16(FP), SI
+	MOVQ ld+24(FP), R8
+	MOVQ rows+32(FP), R9
+	MOVQ columns+40(FP), CX
+	MOVQ $1, AX
+	SHLQ CX, AX
+	DECQ AX
+	KMOVW AX, K1
+	SHRL $8, AX
+	KMOVW AX, K2
+	SHRL $8, AX
+	KMOVW AX, K3
+	SHRL $8, AX
+	KMOVW AX, K4
+	VMOVUPD.Z (DI), K1, Z0
+	VMOVUPD.Z 64(DI), K2, Z1
+	VMOVUPD.Z 128(DI), K3, Z2
+	VMOVUPD.Z 192(DI), K4, Z3
+
+loop:
+	CHAIN
+	DECQ R9
+	JNZ  loop
+	VMOVUPD Z0, K1, (DI)
+	VMOVUPD Z1, K2, 64(DI)
+	VMOVUPD Z2, K3, 128(DI)
+	VMOVUPD Z3, K4, 192(DI)
+	VZEROUPPER
+	RET
