@@ -4,18 +4,19 @@ import "path/filepath"
 
 // File is a run file with every default filled in. The tag of a field is its key.
 type File struct {
-	Path        string      // of the run file, as given
-	Version     int         `key:"axisfold"`
-	Title       string      `key:"title"`
-	Seed        uint64      `key:"seed"`
-	Read        Read        `key:"read"`
-	Standardize Standardize `key:"standardize"`
-	Decompose   Decompose   `key:"decompose"`
-	Retain      Rule        `key:"retain"`
-	Reduce      *Reduce     `key:"reduce"`  // nil when not named
-	Regress     *Regress    `key:"regress"` // nil when not named
-	Draw        *Draw       `key:"draw"`    // nil when not named
-	Write       Write       `key:"write"`
+	Path        string       // of the run file, as given
+	Version     int          `key:"axisfold"`
+	Title       string       `key:"title"`
+	Seed        uint64       `key:"seed"`
+	Read        Read         `key:"read"`
+	Standardize Standardize  `key:"standardize"`
+	Decompose   Decompose    `key:"decompose"`
+	Retain      Rule         `key:"retain"`
+	Uncertainty *Uncertainty `key:"uncertainty"` // nil when not named
+	Reduce      *Reduce      `key:"reduce"`      // nil when not named
+	Regress     *Regress     `key:"regress"`     // nil when not named
+	Draw        *Draw        `key:"draw"`        // nil when not named
+	Write       Write        `key:"write"`
 
 	// given holds the path of every key that the file or an override names.
 	given map[string]bool
@@ -76,6 +77,12 @@ type Rule struct {
 	Arrangement    string  `key:"arrangement"`
 	Order          string  `key:"order"`
 	MostComponents int     `key:"most_components"` // 0: as many as the data carry
+}
+
+// Uncertainty asks how sure the components are.
+type Uncertainty struct {
+	Replicates int     `key:"replicates"`
+	Confidence float64 `key:"confidence"`
 }
 
 // Reduce says which channels may be dropped and how well they must be rebuilt. It is

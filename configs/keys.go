@@ -45,6 +45,10 @@ var sections = []Key{
 		{Name: "route", Kind: Word, Allowed: []string{"auto", "eigen", "svd"}, Default: "auto", Doc: "through cross-products or through a factor of the rows; auto looks at shape and condition"},
 	}},
 	{Name: "retain", Kind: Choice, Rules: rulesFor(components), Default: "parallel", Doc: "how many components to keep"},
+	{Name: "uncertainty", Kind: Section, Named: true, Doc: "how sure roots, loadings and components are, by resampling stretches of rows", Keys: []Key{
+		{Name: "replicates", Kind: Whole, Range: from(50, 100000), Default: 1000, Doc: "resampled tables"},
+		{Name: "confidence", Kind: Number, Range: below(1), Default: 0.95, Doc: "of the intervals"},
+	}},
 	{Name: "reduce", Kind: Section, Named: true, Doc: "which channels to keep, and how the others are rebuilt from them", Keys: []Key{
 		{Name: "rebuild", Kind: Number, Range: upTo(1), Default: 0.95, Doc: "R-squared with which every dropped channel must be rebuilt; not used when size is given"},
 		{Name: "size", Kind: Whole, Range: atLeast(1), Blank: "any", Doc: "how many channels to keep; any takes the fewest that rebuild the others"},

@@ -42,6 +42,9 @@ var loadings = Picture{Name: "loadings", ready: always,
 			}
 			limit *= 1.05
 		}
+		if m.LoadingIntervals != nil {
+			subtitle += "; lines: intervals from resampled stretches of rows"
+		}
 		if more := m.Verdict.Components - k; more > 0 {
 			subtitle += fmt.Sprintf("; %d more kept components are in tables/loadings.csv", more)
 		}
@@ -88,6 +91,10 @@ var loadings = Picture{Name: "loadings", ready: always,
 				}
 				y := float64(i)
 				fill(f.c, col, f.x(0), f.y(y-.34), f.x(v), f.y(y+.34))
+				if at := j*m.Verdict.Components + a; at < len(m.LoadingIntervals) {
+					low, high := m.LoadingIntervals[at].Lower, m.LoadingIntervals[at].Upper
+					f.c.StrokeLine2(line(quiet, strongLine), f.x(math.Max(low, -limit)), f.y(y), f.x(math.Min(high, limit)), f.y(y))
+				}
 				if a == 0 {
 					f.c.FillText(names, vg.Point{X: f.left - 5, Y: f.y(y)}, shorten(d.Channels[j], column-6, names))
 				}

@@ -21,6 +21,7 @@ import (
 	"axisfold/pca"
 	"axisfold/pca/reduce"
 	"axisfold/pca/retain"
+	"axisfold/pca/stability"
 	"axisfold/pcr"
 )
 
@@ -38,7 +39,9 @@ type Material struct {
 	TotalRows  int64
 	Groups     []int
 	GroupNames []string
-	Reduction  *reduce.Result
+	// LoadingIntervals are p × components kept, row-major; nil without.
+	LoadingIntervals []stability.Interval
+	Reduction        *reduce.Result
 	// ChannelSample is a sample of rows in original units, ChannelRows×p.
 	ChannelSample []float64
 	ChannelRows   int

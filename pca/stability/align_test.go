@@ -33,7 +33,7 @@ func rotation(p, i, j int, angle float64) []float64 {
 // angles, where arccos of the cosine gives 0; turning inside the plane is no angle.
 func TestSubspaceAngle(t *testing.T) {
 	for _, k := range []int{1, 2} {
-		for _, angle := range []float64{0, 1e-12, 1e-9, 1e-4, 0.7, 0.8, 1.5, math.Pi / 2} {
+		for _, angle := range []float64{0, 1e-12, 1e-9, 1e-4, 0.7, 0.8, 1.5, 1.5707963, math.Pi / 2} {
 			a := newAligner(planes(4), k)
 			got := a.to([]float64{4, 3, 2, 1}, rotation(4, 0, 3, angle)).angle
 			if math.Abs(got-angle) > 4e-16+1e-15*angle {
@@ -71,6 +71,10 @@ func TestProcrustes(t *testing.T) {
 				}
 			}
 		}
+	}
+	quarter := newAligner(planes(p), k).to([]float64{9, 4, 2, 1}, rotation(p, 0, 1, math.Pi/2))
+	if l := quarter.loadings; math.Abs(l[0]-2) > 1e-14 || math.Abs(l[1*k+1]-3) > 1e-14 {
+		t.Errorf("axes changed places: loadings %v, expected 2 and 3 on the diagonal", l)
 	}
 	swapped := newAligner(planes(p), k).to(values, rotation(p, 0, 1, 1.5))
 	if swapped.partner[0] != 1 || swapped.partner[1] != 0 || math.Abs(swapped.congruence[0]-math.Sin(1.5)) > 1e-15 {

@@ -10,7 +10,7 @@ import (
 type blocks struct {
 	n, p   int
 	counts []float64
-	means  []float64 // n×p, less the mean of all rows
+	means  []float64 // n×p
 	cross  []float64 // n × p(p+1)/2, upper triangles row by row, about the block's mean
 	low    []float64 // n×p
 	high   []float64 // n×p
@@ -56,12 +56,11 @@ func extract(parts []*pca.Summary, o pca.Options, res *Result) (*blocks, error) 
 		cross: make([]float64, len(used)*triangle),
 		low:   make([]float64, len(used)*p), high: make([]float64, len(used)*p)}
 	methods := o.EffectiveMethods()
-	center := pca.MergeAll(used...)
 	for i, s := range used {
 		b.counts[i] = float64(s.Count())
 		at := i * triangle
 		for j := range p {
-			b.means[i*p+j] = s.Mean(j) - center.Mean(j)
+			b.means[i*p+j] = s.Mean(j)
 			b.low[i*p+j], b.high[i*p+j] = s.Min(j), s.Max(j)
 			for l := j; l < p; l++ {
 				b.cross[at] = s.CrossProduct(j, l)

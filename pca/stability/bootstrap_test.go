@@ -2,6 +2,7 @@ package stability
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"reflect"
 	"slices"
@@ -96,10 +97,10 @@ func TestTiedPower(t *testing.T) {
 
 // Coverage of nominal 95 % for independent normal rows: n = 200 in 50 blocks, first root 9
 // before 2.25, 1 and 1; its vector (cos 0.6, sin 0.6, 0, 0), loading of channel 0 3·cos 0.6. The
-// percentile interval is known to cover less than nominal at such sizes (Efron & Tibshirani
-// 1993, An Introduction to the Bootstrap, chapter 13: uncorrected for bias and skewness);
-// accepted is 0.90 to 0.97, 0.935 give or take
-// nearly three Monte Carlo standard errors of 0.0125.
+// percentile interval, uncorrected for bias and skewness, covers a little less than nominal
+// at such sizes (from memory: Efron & Tibshirani 1993, An Introduction to the Bootstrap,
+// chapter 14); accepted is 0.90 to 0.97: 0.935 give or take nearly three Monte Carlo
+// standard errors, √(0.95·0.05/300) = 0.0126.
 func TestCoverage(t *testing.T) {
 	const p, tables = 4, 300
 	o := Options{Decompose: options(p, pca.CenterOnly, pca.Covariance), Retained: 1, Replicates: 300}
@@ -157,8 +158,21 @@ func TestConstantInReplicate(t *testing.T) {
 	if share := float64(res.Failed) / 1000; math.Abs(share-0.328) > 0.045 {
 		t.Errorf("%g failed, expected 0.328 ± 0.045", share)
 	}
+	if text := res.Warnings[1].Text; !strings.Contains(text, fmt.Sprintf("%d of them for a channel without spread", res.Failed)) {
+		t.Errorf("warning %q with %d failed", text, res.Failed)
+	}
 	if !strings.HasPrefix(codes(res), "few-blocks failed-replicates") || res.Blocks != 5 || res.Replicates != 1000 {
 		t.Errorf("warnings %q, %d blocks, %d replicates", codes(res), res.Blocks, res.Replicates)
+	}
+}
+
+// The bound is that of the summaries: both agree on either side of it.
+func TestConstantLikeSummary(t *testing.T) {
+	for _, step := range []float64{0, 0x1p-50, 0x1p-49, 0x1p-48, 0x1p-40, 1} {
+		s := pca.NewBuilder(1, pca.CrossProducts, 0).Summarize([]float64{1, 1 + step}, 2)
+		if got := constant(s.Min(0), s.Max(0)); got != s.Constant(0) {
+			t.Errorf("1 and 1+%g: constant %v, summary %v", step, got, s.Constant(0))
+		}
 	}
 }
 

@@ -19,6 +19,7 @@ type resultsFile struct {
 	Decomposition decompositionFacts `json:"decomposition"`
 	Adequacy      *adequacyFacts     `json:"adequacy,omitempty"`
 	Retention     []verdictFacts     `json:"retention"`
+	Uncertainty   *uncertaintyFacts  `json:"uncertainty,omitempty"`
 	Reduction     *reductionFacts    `json:"reduction,omitempty"`
 	Regression    []regressionFacts  `json:"regression,omitempty"`
 	Warnings      []pca.Warning      `json:"warnings"`
@@ -154,6 +155,9 @@ func WriteResults(s *Study, out io.Writer) error {
 	}
 	for i, v := range s.Overview {
 		f.Retention = append(f.Retention, verdictOf(v, i == 0))
+	}
+	if s.Uncertainty != nil {
+		f.Uncertainty = uncertaintyOf(s.Uncertainty)
 	}
 	if s.Reduction != nil {
 		f.Reduction = reductionOf(s)

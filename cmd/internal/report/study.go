@@ -6,6 +6,7 @@ import (
 	"axisfold/pca"
 	"axisfold/pca/reduce"
 	"axisfold/pca/retain"
+	"axisfold/pca/stability"
 	"axisfold/pcr"
 )
 
@@ -21,6 +22,7 @@ type Study struct {
 	Verdict       retain.Verdict
 	Overview      []retain.Verdict
 	Adequacy      *pca.Adequacy // nil when channels are too many to measure it
+	Uncertainty   *Uncertainty  // nil when the run file asks for none
 	Reduction     *Reduction    // nil when the run file asks for none
 	Regression    *Regression   // nil when the run file has no regression
 	Warnings      []pca.Warning
@@ -91,4 +93,10 @@ type Reduction struct {
 	Size    int
 	// Protected and Preferred mark channels, by position.
 	Protected, Preferred []bool
+}
+
+// Uncertainty holds intervals from resampled stretches of rows.
+type Uncertainty struct {
+	Result     *stability.Result
+	Confidence float64
 }

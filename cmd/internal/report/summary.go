@@ -30,6 +30,9 @@ func WriteSummary(s *Study, out io.Writer) error {
 	p.components(s)
 	p.adequacy(s)
 	p.howMany(s)
+	if s.Uncertainty != nil {
+		p.uncertainty(s)
+	}
 	if s.Reduction != nil {
 		p.reduction(s)
 	}

@@ -23,6 +23,8 @@ var Tables = []TableFile{
 	{"eigenvectors.csv", always, fillEigenvectors},
 	{"loadings.csv", always, fillLoadings},
 	{"retention.csv", always, fillRetention},
+	{"intervals.csv", hasUncertainty, fillIntervals},
+	{"loading_intervals.csv", hasUncertainty, fillLoadingIntervals},
 	{"redundancy.csv", hasReduction, fillRedundancy},
 	{"tradeoff.csv", hasReduction, fillTradeoff},
 	{"coefficients.csv", hasRegression, fillCoefficients},

@@ -26,6 +26,9 @@ func (w *work) draw(context.Context) error {
 	if w.sample.width == 2 {
 		m.Scores, m.ScoreRows = w.sample.scores, len(w.sample.scores)/2
 	}
+	if s.Uncertainty != nil {
+		m.LoadingIntervals = s.Uncertainty.Result.Loadings
+	}
 	if r := s.Reduction; r != nil {
 		m.Reduction = r.Result
 		m.ChannelSample, m.ChannelRows = w.sample.channels, len(w.sample.channels)/len(w.active)

@@ -107,6 +107,9 @@ type ledger struct {
 	most    int
 }
 
+// ledgerBlocks is how many stretches a ledger keeps at least, for resampling.
+const ledgerBlocks = 8
+
 // ledgerBytes bounds the memory of a ledger.
 const ledgerBytes = 48 << 20
 

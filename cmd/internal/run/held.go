@@ -2,6 +2,7 @@ package run
 
 import (
 	"fmt"
+	"math"
 	"runtime"
 	"strconv"
 	"sync"
@@ -39,6 +40,28 @@ func heldSummaries(held *table.Held, plan *foldPlan, form pca.Form, ranks bool, 
 		folds = append(folds, summarizeRows(held.Matrix(), width, rows, form, kept, threads))
 	}
 	return whole, folds, nil
+}
+
+// heldBlocks summarises consecutive stretches for resampling: about √n of them, each
+// about √n rows long, so that they outlast the memory of most series.
+func heldBlocks(held *table.Held, form pca.Form, ranks bool, threads int) []*pca.Summary {
+	n := held.Len()
+	count := max(2, min(100, int(math.Sqrt(float64(n)))))
+	kept := 0
+	if ranks {
+		kept = n
+	}
+	var out []*pca.Summary
+	start := 0
+	for _, end := range stretches(n, count) {
+		rows := make([]int, 0, end-start)
+		for i := start; i < end; i++ {
+			rows = append(rows, i)
+		}
+		out = append(out, summarizeRows(held.Matrix(), len(held.Columns()), rows, form, kept, threads))
+		start = end
+	}
+	return out
 }
 
 // foldRows lists the rows of each fold.

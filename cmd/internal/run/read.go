@@ -117,9 +117,8 @@ type collector struct {
 	form     pca.Form
 	ranks    int
 	builders sync.Pool
-	whole    *pca.Summary // without folds
-	parts    parts        // random and groups
-	ledger   *ledger      // blocks
+	parts    parts   // random and groups
+	ledger   *ledger // blocks, and without folds
 }
 
 func newCollector(r *roles, plan *foldPlan, form pca.Form) *collector {
@@ -130,9 +129,9 @@ func newCollector(r *roles, plan *foldPlan, form pca.Form) *collector {
 	c.builders.New = func() any { return pca.NewBuilder(r.width(), form, c.ranks) }
 	switch {
 	case plan == nil:
-		c.whole = pca.NewBuilder(r.width(), form, c.ranks).Empty()
+		c.ledger = newLedger(r.width(), ledgerBlocks, c.ranks)
 	case plan.arrangement == blockFolds:
-		c.ledger = newLedger(r.width(), plan.folds, c.ranks)
+		c.ledger = newLedger(r.width(), max(plan.folds, ledgerBlocks), c.ranks)
 	}
 	return c
 }
@@ -202,8 +201,6 @@ func split(b *table.Block, key func(i int) string, builder *pca.Builder) []keyed
 func (c *collector) add(sums []keyed) {
 	for _, k := range sums {
 		switch {
-		case c.whole != nil:
-			c.whole.Merge(k.sum)
 		case c.ledger != nil:
 			c.ledger.add(k.sum)
 		default:
@@ -214,11 +211,20 @@ func (c *collector) add(sums []keyed) {
 	}
 }
 
+// blocks returns summaries of consecutive stretches of rows for resampling; nil where the
+// folds are not stretches.
+func (c *collector) blocks() []*pca.Summary {
+	if c.ledger == nil {
+		return nil
+	}
+	return c.ledger.entries
+}
+
 // summaries returns the summary of all rows, and of each fold if there is a plan.
 func (c *collector) summaries() (whole *pca.Summary, folds []*pca.Summary, err error) {
 	switch {
 	case c.plan == nil:
-		return c.whole, nil, nil
+		return pca.MergeAll(c.ledger.entries...), nil, nil
 	case c.ledger != nil:
 		folds, err = c.ledger.cut(c.plan.folds)
 	default:

@@ -43,7 +43,7 @@ func Execute(ctx context.Context, cfg *configs.File, o Options) (*report.Study, 
 		f.open = o.open
 	}
 	w := &work{cfg: cfg, options: o, folder: f}
-	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.retain, w.reduce, w.regress, w.rows, w.draw, w.write} {
+	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.retain, w.uncertainty, w.reduce, w.regress, w.rows, w.draw, w.write} {
 		if err := stage(ctx); err != nil {
 			return nil, "", err
 		}
