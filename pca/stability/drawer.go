@@ -66,7 +66,8 @@ func (d *drawer) decompose() (total float64, values, vectors []float64, err erro
 		return 0, nil, nil, err
 	}
 	total = d.fill(n)
-	values, vectors, err = symeig.Decompose(d.matrix, d.b.p)
+	// One thread: the replicates already keep every core busy.
+	values, vectors, err = symeig.DecomposeOn(1, d.matrix, d.b.p)
 	for a := range values {
 		values[a] = math.Max(values[a], 0)
 	}
