@@ -5,9 +5,6 @@ import (
 	"slices"
 	"sync"
 
-	"gonum.org/v1/gonum/lapack"
-	"gonum.org/v1/gonum/lapack/gonum"
-
 	"axisfold/pca/internal/kernel"
 )
 
@@ -50,22 +47,6 @@ func (c *conquest) solve(lo, hi, threads int) bool {
 	}
 	m := merge{conquest: c, lo: lo, mid: mid, hi: hi, threads: threads}
 	m.join(rho)
-	return true
-}
-
-func (c *conquest) leaf(lo, hi int) bool {
-	n := hi - lo
-	z := make([]float64, n*n)
-	e := make([]float64, n)
-	copy(e, c.e[lo:hi-1])
-	if !(gonum.Implementation{}).Dsteqr(lapack.EVTridiag, n, c.d[lo:hi], e, z, n, make([]float64, 2*n)) {
-		return false
-	}
-	for i := range n {
-		for j := range n {
-			c.rows[(lo+j)*c.p+lo+i] = z[i*n+j]
-		}
-	}
 	return true
 }
 

@@ -19,6 +19,7 @@ type reduction struct {
 	right    []float64
 	v        []float64
 	factor   []float64
+	sums     []float64 // see multiply
 }
 
 // load takes a copy of the upper triangle of a, with zeros up to whole groups, scaled by a
@@ -54,11 +55,15 @@ func (r *reduction) resize(p int) {
 	r.n = (p + kernel.Group - 1) / kernel.Group * kernel.Group
 	r.ld = r.n | kernel.Group // an odd number of groups: rows do not compete for cache sets
 	width := r.panelWidth()
+	sliced := 0
+	if r.n >= leastSliced {
+		sliced = (productSlices - 1) * r.n
+	}
 	for _, part := range []struct {
 		slice *[]float64
 		size  int
 	}{
-		{&r.a, r.n * r.ld}, {&r.d, p}, {&r.e, p}, {&r.tau, p}, {&r.v, r.n}, {&r.factor, width},
+		{&r.a, r.n * r.ld}, {&r.d, p}, {&r.e, p}, {&r.tau, p}, {&r.v, r.n}, {&r.factor, width}, {&r.sums, sliced},
 		{&r.w, width * r.ld}, {&r.left, 2 * width * r.ld}, {&r.right, 2 * width * r.ld},
 	} {
 		if cap(*part.slice) < part.size {
@@ -139,9 +144,37 @@ func (r *reduction) addRows(y []float64, factor func(q int) float64, rows []floa
 	}
 }
 
-// multiply adds to y the product of the matrix below row from and v.
+// multiply adds to y the product of the matrix below row from and v. Large matrices are
+// cut into slices of rows, as many on one thread as on several, so that the sums are too.
 func (r *reduction) multiply(y []float64, from, threads int) {
-	kernel.AddSymmetricMultiply(y, r.a, r.ld, r.v, from, r.n, r.n)
+	n := r.n
+	if n-from < leastSliced {
+		kernel.AddSymmetricMultiply(y, r.a, r.ld, r.v, from, n, n)
+		return
+	}
+	share(threads, productSlices, func(i int) {
+		sum := y
+		if i > 0 {
+			sum = r.sums[(i-1)*n : i*n]
+			clear(sum[from:])
+		}
+		kernel.AddSymmetricMultiply(sum, r.a, r.ld, r.v, cut(from, n, i), cut(from, n, i+1), n)
+	})
+	for i := range productSlices - 1 {
+		kernel.Axpy(1, r.sums[i*n+from:(i+1)*n], y[from:])
+	}
+}
+
+const (
+	productSlices = 4
+	leastSliced   = 768 // rows of a product worth starting a goroutine
+)
+
+// cut returns the first row of slice i of the triangle from row from to n; all slices have
+// nearly the same number of elements.
+func cut(from, n, i int) int {
+	above := float64(n-from) * (1 - math.Sqrt(1-float64(i)/productSlices))
+	return from + int(above)/kernel.Group*kernel.Group
 }
 
 // change applies the reflections of the panel to the rows below it.

@@ -15,10 +15,7 @@ import (
 func rootFree(d, e []float64) bool {
 	p := len(d)
 	for i, v := range e[:max(p-1, 0)] {
-		if math.Abs(v) < negligible {
-			v = 0
-		}
-		e[i] = v * v
+		e[i] = v * v // below the range of numbers: zero, which is far below rounding
 	}
 	left := 30 * p // iterations, of which one or two are used for a value
 	for lo := 0; lo < p; {
@@ -50,9 +47,6 @@ func rootFree(d, e []float64) bool {
 	}
 	return true
 }
-
-// negligible is far below rounding beside numbers near 1; its square is still normal.
-const negligible = 0x1p-450
 
 // splitAfter returns the first place from l on after which the matrix falls apart, at most
 // hi, and makes it do so.
