@@ -14,6 +14,15 @@ import (
 // its rows as a matter of course: it costs no time there and squares no condition.
 const smallWidth = 128
 
+// With more channels than rows a factor is the rows themselves. Its decomposition takes
+// minutes when both sides are long, where cross-products take seconds: up to factorSide
+// rows a factor is taken, and beyond crossSide channels, whose cross-products would not
+// fit.
+const (
+	factorSide = 300
+	crossSide  = 5000
+)
+
 // affordable is the work, 2·n·p² operations, up to which a nearly singular table too
 // large to hold is gone through again for a factor: about half a minute.
 const affordable = 1e11
@@ -28,8 +37,10 @@ func (w *work) decompose(ctx context.Context) error {
 	case route == pca.SVD:
 		form = pca.Factor
 	case route == pca.Eigen:
-	case n-1 < p:
+	case n-1 < p && (min(n, p) <= factorSide || p > crossSide):
 		form, reason = pca.Factor, "more channels than rows can tell apart"
+	case n-1 < p:
+		reason = fmt.Sprintf("more channels than rows, and %d rows are many for a factor; decompose.route: svd takes the time", n)
 	case w.reading.stream == nil && p <= smallWidth:
 		form, reason = pca.Factor, "small table"
 	case w.reading.stream == nil:
@@ -41,7 +52,7 @@ func (w *work) decompose(ctx context.Context) error {
 		return err
 	}
 	d := w.study.Decomposition
-	if route == pca.Auto && form == pca.CrossProducts && d.Condition() > pca.NearlySingular {
+	if route == pca.Auto && form == pca.CrossProducts && n > p && d.Condition() > pca.NearlySingular {
 		if w.reading.stream != nil && 2*float64(n)*float64(p)*float64(p) > affordable {
 			w.warn("small-roots", "the channels are nearly dependent (condition %.2g) and roots below %.2g are rounding; decompose.route: svd resolves them in a longer run",
 				d.Condition(), float64(p)*0x1p-52*d.Values[0])
