@@ -13,6 +13,7 @@ import (
 	"os"
 	"path/filepath"
 	"slices"
+	"sync/atomic"
 
 	"axisfold/cmd/internal/report"
 )
@@ -28,6 +29,7 @@ type folder struct {
 	made    []string // folders above, made for this run; the deepest first
 	open    func(path string) (io.WriteCloser, error)
 	outputs []report.File
+	gone    atomic.Bool // discarded: nothing is created any more
 }
 
 // newFolder checks that final may be written or replaced, and makes the partial folder.
@@ -181,6 +183,9 @@ func (t tee) Write(b []byte) (int, error) {
 
 // create opens a file of the folder; name uses slashes.
 func (f *folder) create(name string) (*output, error) {
+	if f.gone.Load() {
+		return nil, f.writeError(name, fs.ErrClosed)
+	}
 	path := filepath.Join(f.partial, filepath.FromSlash(name))
 	if err := os.MkdirAll(filepath.Dir(path), 0o777); err != nil {
 		return nil, f.writeError(name, err)
@@ -249,6 +254,7 @@ func (f *folder) commit() error {
 // discard removes what was written, and the folders made above it; after commit it finds
 // nothing to remove.
 func (f *folder) discard() {
+	f.gone.Store(true)
 	os.RemoveAll(f.partial)
 	for _, dir := range f.made {
 		if os.Remove(dir) != nil {

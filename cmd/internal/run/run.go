@@ -43,18 +43,35 @@ func Execute(ctx context.Context, cfg *configs.File, o Options) (*report.Study, 
 		f.open = o.open
 	}
 	w := &work{cfg: cfg, options: o, folder: f}
-	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.retain, w.uncertainty, w.reduce, w.regress, w.rows, w.draw, w.write} {
-		if err := stage(ctx); err != nil {
-			return nil, "", err
-		}
-		if err := ctx.Err(); err != nil {
-			return nil, "", err
-		}
+	// Long computations do not look at ctx; an interrupt leaves them behind, and the
+	// program ends.
+	finished := make(chan error, 1)
+	go func() { finished <- w.stages(ctx) }()
+	select {
+	case err = <-finished:
+	case <-ctx.Done():
+		err = ctx.Err()
+	}
+	if err != nil {
+		return nil, "", err
 	}
 	if err := f.commit(); err != nil {
 		return nil, "", err
 	}
 	return w.study, final, nil
+}
+
+// stages runs them in order.
+func (w *work) stages(ctx context.Context) error {
+	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.retain, w.uncertainty, w.reduce, w.regress, w.rows, w.draw, w.write} {
+		if err := stage(ctx); err != nil {
+			return err
+		}
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+	}
+	return nil
 }
 
 // work carries what the stages hand on.
