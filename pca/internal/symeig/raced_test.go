@@ -1,0 +1,5 @@
+//go:build race
+
+package symeig
+
+const raced = true
