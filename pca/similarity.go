@@ -5,13 +5,17 @@ import "math"
 // SimilarOrder returns an order of the p channels in which like stands beside like, from
 // their correlations, p×p row-major: average-linkage clustering on 1-|r| (Sokal &
 // Michener 1958) by nearest-neighbour chains in O(p²), each merged pair of clusters turned
-// so that its more alike ends meet. Ties go to the lower channel.
+// so that its more alike ends meet. Ties go to the lower channel; runs that meet equally
+// well stay as they stand. A correlation that is NaN is the caller's mistake and panics.
 func SimilarOrder(correlations []float64, p int) []int {
 	if p == 0 {
 		return nil
 	}
 	distance := make([]float64, p*p)
 	for i, r := range correlations {
+		if math.IsNaN(r) {
+			panic("pca: a correlation given to SimilarOrder is NaN")
+		}
 		distance[i] = 1 - math.Abs(r)
 	}
 	members := make([][]int, p)

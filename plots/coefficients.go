@@ -1,6 +1,7 @@
 package plots
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
@@ -13,77 +14,50 @@ import (
 )
 
 var coefficients = Picture{Name: "coefficients", perResponse: true, ready: hasRegression,
-	size: func(m *Material) (vg.Length, vg.Length) {
-		p := len(m.Regression.Models[0].Terms)
-		return pageWidth, rowHeight(p)*vg.Length(p) + 110
+	Caption: "Standardized coefficients of the regression on components with their intervals, largest first, beside those of ordinary least squares on all channels. Least-squares coefficients far outside are an arrow and a number at the edge.",
+	check:   checkTerms,
+	words: func(m *Material, r int) (title, subtitle string) {
+		model := m.Regression.Models[r]
+		subtitle = "regression on " + components(model.Components)
+		if anyOf(standardized(model), func(t drawnTerm) float64 { return t.low }) {
+			subtitle += "; bars: "
+			if m.Confidence > 0 {
+				subtitle += fmt.Sprintf("%g %% ", 100*m.Confidence)
+			}
+			subtitle += "intervals that take components and their number as given"
+		}
+		if p := len(model.Terms); p > mostRows {
+			subtitle += fmt.Sprintf("; the %d largest of %d coefficients", mostRows, p)
+		}
+		return coefficientsTitle(model), subtitle
+	},
+	height: func(m *Material, r int) vg.Length {
+		p := max(min(len(m.Regression.Models[r].Terms), mostRows), 1)
+		return rowHeight(p)*vg.Length(p) + 3*rowStep + 9
 	},
 	draw: func(m *Material, r int, c draw.Canvas) {
-		model := m.Regression.Models[r]
-		terms := standardized(model)
-		title := fmt.Sprintf("What %s follows, by %s", model.Response, components(model.Components))
-		subtitle := "standardized coefficients; bars: conditional intervals"
-		if m.Confidence > 0 {
-			subtitle = fmt.Sprintf("standardized coefficients; bars: %g %% intervals, components and their number taken as given", 100*m.Confidence)
+		terms := standardized(m.Regression.Models[r])
+		key := []entry{{"on components", swatch(dot(kept, 2.6))}}
+		if anyOf(terms, func(t drawnTerm) float64 { return t.ordinary }) {
+			key = append(key, entry{"ordinary least squares", swatch(glyph(againstInk, 2.8, draw.RingGlyph{}))})
+		} else {
+			key = append(key, entry{"ordinary least squares has no unique answer", func(draw.Canvas, vg.Point) {}})
 		}
-		c = page(c, title, subtitle)
-		names := textStyle(smallSize, ink, text.XRight, text.YCenter)
-		column := vg.Length(0)
-		for _, t := range terms {
-			column = max(column, names.Width(drawable(t.name)))
-		}
-		column = min(column, 4.6*vg.Centimeter) + 6
-		limit := coefficientLimit(terms)
-		f := newFrame(c, column, 40, 30, 16, -limit, limit, float64(len(terms))-.5, -.5)
-		f.xAxis("standardized coefficient", true)
-		f.c.StrokeLine2(line(quiet, hairline), f.x(0), f.low, f.x(0), f.high)
-		anyOrdinary := false
-		for i, t := range terms {
-			y := f.y(float64(i))
-			f.c.FillText(names, vg.Point{X: f.left - 5, Y: y}, shorten(t.name, column-6, names))
-			if !math.IsNaN(t.ordinary) {
-				anyOrdinary = true
-				f.ordinary(t.ordinary, limit, y)
-			}
-			if !math.IsNaN(t.low) {
-				f.c.StrokeLine2(line(kept, strongLine), f.x(math.Max(t.low, -limit)), y, f.x(math.Min(t.high, limit)), y)
-			}
-			f.c.DrawGlyphNoClip(draw.GlyphStyle{Color: kept, Radius: 2.4, Shape: draw.CircleGlyph{}}, vg.Point{X: f.x(t.value), Y: y})
-		}
-		entries := []entry{{"on components", swatch(draw.GlyphStyle{Color: kept, Radius: 2.6, Shape: draw.CircleGlyph{}})}}
-		if anyOrdinary {
-			entries = append(entries, entry{"least squares", swatch(draw.GlyphStyle{Color: against, Radius: 3, Shape: draw.RingGlyph{}})})
-		}
-		f.legend(entries...)
+		drawTerms(c, terms, key)
 	}}
 
-// ordinary marks a least-squares coefficient; one beyond the frame becomes an arrow with
-// its number, so that it cannot squash the rest.
-func (f *frame) ordinary(v, limit float64, y vg.Length) {
-	if math.Abs(v) <= limit {
-		f.c.DrawGlyphNoClip(draw.GlyphStyle{Color: against, Radius: 3, Shape: draw.RingGlyph{}}, vg.Point{X: f.x(v), Y: y})
-		return
-	}
-	style := textStyle(smallSize, against, text.XLeft, text.YCenter)
-	x, step := f.right+2, vg.Length(7)
-	if v < 0 {
-		style.XAlign = text.XLeft
-		x, step = f.left+9, -7
-	}
-	f.c.FillPolygon(against, []vg.Point{{X: x, Y: y - 2.5}, {X: x, Y: y + 2.5}, {X: x + step, Y: y}})
-	f.c.FillText(style, vg.Point{X: max(x, x+step) + 2, Y: y}, fmt.Sprintf("%.3g", v))
-}
-
-// drawnTerm is a term in standardized units.
+// drawnTerm is a term in standardized units; NaN where a number does not exist.
 type drawnTerm struct {
 	name                       string
 	value, low, high, ordinary float64
 }
 
-// standardized brings intervals and least squares to the scale of the standardized
-// coefficients, by the ratio that the term itself shows; sorted by value.
+// standardized brings intervals to the scale of the standardized coefficients, by the
+// ratio that the term itself shows; sorted by value, the largest of many.
 func standardized(model *pcr.Model) []drawnTerm {
 	var out []drawnTerm
-	for _, t := range model.Terms {
+	for _, j := range largest(fileOrder(len(model.Terms)), mostRows, func(j int) float64 { return math.Abs(model.Terms[j].Standardized) }) {
+		t := model.Terms[j]
 		d := drawnTerm{name: t.Name, value: t.Standardized, low: math.NaN(), high: math.NaN(), ordinary: t.OrdinaryStandardized}
 		if t.Coefficient != 0 {
 			ratio := t.Standardized / t.Coefficient
@@ -91,16 +65,82 @@ func standardized(model *pcr.Model) []drawnTerm {
 		}
 		out = append(out, d)
 	}
-	slices.SortStableFunc(out, func(a, b drawnTerm) int {
-		switch {
-		case a.value > b.value:
-			return -1
-		case a.value < b.value:
-			return 1
-		}
-		return 0
-	})
+	slices.SortStableFunc(out, func(a, b drawnTerm) int { return cmp.Compare(b.value, a.value) })
 	return out
+}
+
+func anyOf(terms []drawnTerm, value func(drawnTerm) float64) bool {
+	for _, t := range terms {
+		if !math.IsNaN(value(t)) {
+			return true
+		}
+	}
+	return false
+}
+
+func coefficientsTitle(model *pcr.Model) string {
+	most, name := 0.0, ""
+	for _, t := range model.Terms {
+		if math.Abs(t.Standardized) > math.Abs(most) {
+			most, name = t.Standardized, t.Name
+		}
+	}
+	switch {
+	case most > 0:
+		return fmt.Sprintf("%s rises most with %s", brief(model.Response), brief(name))
+	case most < 0:
+		return fmt.Sprintf("%s falls most with %s", brief(model.Response), brief(name))
+	}
+	return fmt.Sprintf("%s follows no channel: its mean predicts it", brief(model.Response))
+}
+
+func drawTerms(c draw.Canvas, terms []drawnTerm, key []entry) {
+	limit := coefficientLimit(terms)
+	names := make([]string, len(terms))
+	left, right := vg.Length(0), vg.Length(0) // gutters for what lies outside
+	outside := textStyle(smallSize, againstInk, text.XLeft, text.YCenter)
+	for i, t := range terms {
+		names[i] = t.name
+		if room := outside.Width(number(t.ordinary, 3)) + 14; t.ordinary > limit {
+			right = max(right, room)
+		} else if t.ordinary < -limit {
+			left = max(left, room)
+		}
+	}
+	// The gutters belong to the frame's range: as much of it as they take of its width.
+	marks := nameMarks(names)
+	width := c.Max.X - c.Min.X - labelRoom(marks) - 2
+	per := 2 * limit / float64(width-left-right)
+	x := axis{low: -limit, high: limit}
+	x = axis{title: "standardized coefficient", low: -limit - per*float64(left), high: limit + per*float64(right), grid: true,
+		marks: x.marked(width-left-right, outside.Width, 9)}
+	f := layout{x: x, y: axis{low: float64(len(terms)) - .5, high: -.5, marks: marks}, key: key}.on(c)
+	fifths(f, len(terms), f.right)
+	f.c.StrokeLine2(line(ink, hairline), f.x(0), f.low, f.x(0), f.high)
+	for i, t := range terms {
+		y := f.y(float64(i))
+		if !math.IsNaN(t.low) {
+			f.c.StrokeLine2(line(kept, strongLine), f.x(math.Max(t.low, -limit)), y, f.x(math.Min(t.high, limit)), y)
+		}
+		f.c.DrawGlyphNoClip(dot(kept, 2.3), vg.Point{X: f.x(t.value), Y: y})
+		switch {
+		case t.ordinary > limit:
+			f.arrow(f.x(limit)+3, 6, y)
+			outside.XAlign = text.XLeft
+			f.c.FillText(outside, vg.Point{X: f.x(limit) + 12, Y: y}, number(t.ordinary, 3))
+		case t.ordinary < -limit:
+			f.arrow(f.x(-limit)-3, -6, y)
+			outside.XAlign = text.XRight
+			f.c.FillText(outside, vg.Point{X: f.x(-limit) - 12, Y: y}, number(t.ordinary, 3))
+		case !math.IsNaN(t.ordinary):
+			f.c.DrawGlyphNoClip(glyph(againstInk, 2.8, draw.RingGlyph{}), vg.Point{X: f.x(t.ordinary), Y: y})
+		}
+	}
+}
+
+// arrow points from x by length.
+func (f *frame) arrow(x, length, y vg.Length) {
+	f.c.FillPolygon(against, []vg.Point{{X: x, Y: y - 2.5}, {X: x, Y: y + 2.5}, {X: x + length, Y: y}})
 }
 
 // coefficientLimit frames the coefficients and their intervals, and least squares as far
@@ -118,7 +158,26 @@ func coefficientLimit(terms []drawnTerm) float64 {
 		}
 	}
 	if own == 0 {
-		own = math.Max(all, 1)
+		own = all / 2
 	}
-	return 1.08 * math.Max(own, math.Min(all, 2*own))
+	if own == 0 {
+		own = 1
+	}
+	return 1.04 * math.Max(own, math.Min(all, 2*own))
+}
+
+func checkTerms(m *Material, r int) error {
+	model := m.Regression.Models[r]
+	if len(model.Terms) == 0 {
+		return fmt.Errorf("%s: no coefficients", model.Response)
+	}
+	for _, t := range model.Terms {
+		for _, err := range []error{finite("standardized coefficient", t.Standardized), finiteOrNone("lower end of the interval", t.Lower),
+			finiteOrNone("upper end of the interval", t.Upper), finiteOrNone("least-squares coefficient", t.OrdinaryStandardized)} {
+			if err != nil {
+				return fmt.Errorf("%s, channel %q: %w", model.Response, t.Name, err)
+			}
+		}
+	}
+	return nil
 }

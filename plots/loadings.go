@@ -7,123 +7,159 @@ import (
 	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
+
+	"axisfold/pca"
 )
 
 // mostPanels is how many components stand side by side in the picture of loadings.
 const mostPanels = 6
 
-// rowHeight of pictures with one row per channel: closer for many, never below what the
-// labels need.
-func rowHeight(p int) vg.Length {
-	return vg.Length(math.Max(8.2, math.Min(14, 900/float64(p))))
-}
+// panelHead is the room for the name of a panel.
+const panelHead = vg.Length(16)
 
-func panels(m *Material) int {
-	return min(max(m.Verdict.Components, 1), mostPanels, len(m.Decomposition.Values))
-}
+// panels is how many components are shown: those kept, or the first where none is.
+func panels(m *Material) int { return min(max(keptOf(m), 1), mostPanels) }
 
 var loadings = Picture{Name: "loadings", ready: always,
-	size: func(m *Material) (vg.Length, vg.Length) {
-		p := len(m.Decomposition.Channels)
-		return pageWidth, rowHeight(p)*vg.Length(p) + 100
+	Caption: "Loadings of the channels on the components kept, like channels beside one another. Under the correlation matrix a loading is the correlation between channel and component.",
+	check:   checkPanels,
+	words: func(m *Material, _ int) (title, subtitle string) {
+		k, p := panels(m), len(m.Decomposition.Channels)
+		subtitle = "loading: correlation between channel and component"
+		if m.Decomposition.Matrix != pca.Correlation {
+			subtitle = "loading: entry of the eigenvector times root of the eigenvalue"
+		}
+		if len(m.LoadingIntervals) > 0 {
+			subtitle += "; lines: intervals from resampled stretches of rows"
+		}
+		if hidden := keptOf(m) - k; hidden > 0 {
+			subtitle += fmt.Sprintf("; %d more kept components are not shown", hidden)
+		}
+		if p > mostRows {
+			subtitle += fmt.Sprintf("; the %d channels of %d with the largest loadings", mostRows, p)
+		}
+		return loadingsTitle(m, k), subtitle
+	},
+	height: func(m *Material, _ int) vg.Length {
+		p := min(len(m.Decomposition.Channels), mostRows)
+		return rowHeight(p)*vg.Length(p) + panelHead + rowStep
 	},
 	draw: func(m *Material, _ int, c draw.Canvas) {
 		d := m.Decomposition
-		k, p := panels(m), len(d.Channels)
-		subtitle := "loading: correlation between channel and component"
+		k := panels(m)
+		order := largest(channelOrder(m), mostRows, func(j int) float64 { return largestLoading(d, j, k) })
 		limit := 1.0
-		if d.Matrix == "covariance" {
-			subtitle = "loading: eigenvector times root of the eigenvalue"
+		if d.Matrix != pca.Correlation {
 			limit = 0
-			for j := range p {
+			for _, j := range order {
+				limit = math.Max(limit, largestLoading(d, j, k))
 				for a := range k {
-					limit = math.Max(limit, math.Abs(d.Loading(j, a)))
+					if low, high, ok := m.interval(j, a); ok {
+						limit = math.Max(limit, math.Max(-low, high))
+					}
 				}
 			}
-			limit *= 1.05
-		}
-		if m.LoadingIntervals != nil {
-			subtitle += "; lines: intervals from resampled stretches of rows"
-		}
-		if more := m.Verdict.Components - k; more > 0 {
-			subtitle += fmt.Sprintf("; %d more kept components are in tables/loadings.csv", more)
-		}
-		title := fmt.Sprintf("What the %s kept are made of", components(k))
-		if m.Verdict.Components == 0 {
-			title = "No component kept; what the first is made of"
-		}
-		if k < m.Verdict.Components {
-			title = fmt.Sprintf("What the first %d of %d components kept are made of", k, m.Verdict.Components)
-		}
-		if m.Verdict.Components == 1 {
-			title = "What the component kept is made of"
-		}
-		c = page(c, title, subtitle)
-		order := m.SimilarOrder
-		if len(order) != p {
-			order = fileOrder(p)
-		}
-		names := textStyle(smallSize, ink, text.XRight, text.YCenter)
-		column := vg.Length(0)
-		for _, n := range d.Channels {
-			column = max(column, names.Width(drawable(n)))
-		}
-		column = min(column, 4.2*vg.Centimeter) + 6
-		gap := vg.Length(9)
-		width := (c.Max.X - c.Min.X - column - gap*vg.Length(k-1)) / vg.Length(k)
-		for a := range k {
-			panel := c
-			panel.Min.X = c.Min.X + column + vg.Length(a)*(width+gap)
-			panel.Max.X = panel.Min.X + width
-			f := newFrame(panel, 0, 0, 16, 16, -limit, limit, float64(p)-.5, -.5)
-			for _, x := range []float64{-limit, 0, limit} {
-				style := line(grid, hairline)
-				if x == 0 {
-					style = line(quiet, hairline)
-				}
-				f.c.StrokeLine2(style, f.x(x), f.low, f.x(x), f.high)
-			}
-			for i, j := range order {
-				v := d.Loading(j, a)
-				col := kept
-				if v < 0 {
-					col = against
-				}
-				y := float64(i)
-				fill(f.c, col, f.x(0), f.y(y-.34), f.x(v), f.y(y+.34))
-				if at := j*m.Verdict.Components + a; at < len(m.LoadingIntervals) {
-					low, high := m.LoadingIntervals[at].Lower, m.LoadingIntervals[at].Upper
-					f.c.StrokeLine2(line(quiet, strongLine), f.x(math.Max(low, -limit)), f.y(y), f.x(math.Min(high, limit)), f.y(y))
-				}
-				if a == 0 {
-					f.c.FillText(names, vg.Point{X: f.left - 5, Y: f.y(y)}, shorten(d.Channels[j], column-6, names))
-				}
-			}
-			head := textStyle(textSize, ink, text.XCenter, text.YBottom)
-			f.c.FillText(head, vg.Point{X: (f.left + f.right) / 2, Y: f.high + 3}, fmt.Sprintf("%s  %s", componentName(a), percent(d.Share(a))))
-			small := textStyle(smallSize, ink, text.XCenter, text.YTop)
-			ends := []float64{-limit, 0, limit}
-			if k > 3 {
-				ends = []float64{0}
-			}
-			for _, x := range ends {
-				small.XAlign = text.XCenter
-				if x < 0 {
-					small.XAlign = text.XLeft
-				} else if x > 0 {
-					small.XAlign = text.XRight
-				}
-				f.c.FillText(small, vg.Point{X: f.x(x), Y: f.low - 3}, shortNumber(x))
+			limit *= 1.04
+			if limit == 0 {
+				limit = 1
 			}
 		}
+		drawPanels(c, m, k, order, limit)
 	}}
 
-func fileOrder(p int) []int {
-	out := make([]int, p)
-	for j := range out {
-		out[j] = j
+// interval returns the limits of a loading, where it has any.
+func (m *Material) interval(j, a int) (low, high float64, ok bool) {
+	at := j*keptOf(m) + a
+	if a >= keptOf(m) || at >= len(m.LoadingIntervals) {
+		return 0, 0, false
 	}
-	return out
+	i := m.LoadingIntervals[at]
+	return i.Lower, i.Upper, !math.IsNaN(i.Lower) && !math.IsNaN(i.Upper)
 }
 
-func shortNumber(v float64) string { return fmt.Sprintf("%.3g", v) }
+func checkPanels(m *Material, _ int) error {
+	if n := len(m.LoadingIntervals); n > 0 {
+		if err := counts("intervals of loadings", n, len(m.Decomposition.Channels)*keptOf(m)); err != nil {
+			return err
+		}
+	}
+	for i, v := range m.LoadingIntervals {
+		for _, err := range []error{finiteOrNone("lower limit", v.Lower), finiteOrNone("upper limit", v.Upper)} {
+			if err != nil {
+				return fmt.Errorf("channel %q on %s: %w", m.Decomposition.Channels[i/keptOf(m)], componentName(i%keptOf(m)), err)
+			}
+		}
+	}
+	return checkLoadings(m, panels(m))
+}
+
+func loadingsTitle(m *Material, k int) string {
+	switch kept := keptOf(m); {
+	case kept == 0:
+		return "No component kept; what the first is made of"
+	case kept == 1:
+		return "What the component kept is made of"
+	case k < kept:
+		return fmt.Sprintf("What the first %d of %d components kept are made of", k, kept)
+	}
+	return fmt.Sprintf("What the %d components kept are made of", k)
+}
+
+func largestLoading(d *pca.Decomposition, j, k int) float64 {
+	top := 0.0
+	for a := range k {
+		top = math.Max(top, math.Abs(d.Loading(j, a)))
+	}
+	return top
+}
+
+// drawPanels draws one panel of bars per component beside one column of names.
+func drawPanels(c draw.Canvas, m *Material, k int, order []int, limit float64) {
+	d := m.Decomposition
+	names := make([]string, len(order))
+	for i, j := range order {
+		names[i] = d.Channels[j]
+	}
+	marks := nameMarks(names)
+	column := labelRoom(marks)
+	const gap = vg.Length(12)
+	width := (c.Max.X - c.Min.X - column - gap*vg.Length(k-1)) / vg.Length(k)
+	if k == 1 {
+		width *= .8 // one panel alone need not be as wide as the page
+	}
+	ticks := roundMarks(-limit, limit, 4)
+	outermost := ticks[len(ticks)-1].at
+	head := textStyle(textSize, ink, text.XCenter, text.YBottom)
+	small := textStyle(smallSize, ink, text.XCenter, text.YTop)
+	for a := range k {
+		f := &frame{c: c, left: c.Min.X + column + vg.Length(a)*(width+gap), low: c.Min.Y + rowStep, high: c.Max.Y - panelHead,
+			x0: -limit, x1: limit, y0: float64(len(order)) - .5, y1: -.5}
+		f.right = f.left + width
+		if a == 0 {
+			(&layout{}).drawY(f, marks)
+			fifths(f, len(order), f.left+vg.Length(k)*(width+gap)-gap)
+		}
+		for _, x := range []float64{-outermost, outermost} {
+			f.c.StrokeLine2(line(grid, hairline), f.x(x), f.low, f.x(x), f.high)
+		}
+		for i, j := range order {
+			v := d.Loading(j, a)
+			col := kept
+			if v < 0 {
+				col = against
+			}
+			fill(f.c, col, f.x(0), f.y(float64(i)-.36), f.x(v), f.y(float64(i)+.36))
+			if low, high, ok := m.interval(j, a); ok {
+				ends := []vg.Point{f.at(math.Max(low, -limit), float64(i)), f.at(math.Min(high, limit), float64(i))}
+				f.c.StrokeLines(line(white, 2.2), ends)
+				f.c.StrokeLines(line(ink, .9), ends)
+			}
+		}
+		f.c.StrokeLine2(line(ink, hairline), f.x(0), f.low, f.x(0), f.high)
+		f.c.FillText(head, vg.Point{X: f.x(0), Y: f.high + 3}, componentName(a)+"  "+percent(d.Share(a)))
+		for i, x := range []float64{-outermost, 0, outermost} {
+			small.XAlign = []text.XAlignment{text.XLeft, text.XCenter, text.XRight}[i]
+			f.c.FillText(small, vg.Point{X: f.x(x) + 2*vg.Length(i-1), Y: f.low - labelGap}, number(x, 3))
+		}
+	}
+}

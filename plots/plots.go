@@ -1,22 +1,23 @@
 // Package plots draws result structs; it computes nothing that could be found in a table.
 //
 // [Draw] writes every picture of [Pictures] for which the material holds what it needs,
-// in each format asked for. The same material gives the same bytes.
+// in each format asked for; [Drawings] tells which those are and what to write below
+// them. The same material gives the same bytes. Material that cannot be drawn is refused
+// before anything is written.
 package plots
 
 import (
+	"bytes"
 	"fmt"
 	"io"
-	"math"
+	"runtime"
+	"slices"
 	"strings"
-	"time"
+	"sync"
+	"sync/atomic"
 
-	"codeberg.org/go-pdf/fpdf"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
-	"gonum.org/v1/plot/vg/vgimg"
-	"gonum.org/v1/plot/vg/vgpdf"
-	"gonum.org/v1/plot/vg/vgsvg"
 
 	"axisfold/pca"
 	"axisfold/pca/reduce"
@@ -27,13 +28,17 @@ import (
 
 // Material is what may be drawn; empty parts leave out the pictures that need them.
 type Material struct {
+	// Title of the study, written small above every picture; may be empty.
+	Title         string
 	Decomposition *pca.Decomposition
 	Verdict       retain.Verdict   // the rule that decided
 	Overview      []retain.Verdict // all rules, the deciding one first
-	// Correlations is p×p row-major, SimilarOrder the order of the channels in the map.
+	// Correlations is p×p row-major, SimilarOrder the order in which pictures list the
+	// channels; without it they keep the order of the table.
 	Correlations []float64
 	SimilarOrder []int
-	// Scores is a sample of rows, ScoreRows×2, of TotalRows; Groups their group codes.
+	// Scores is a sample of rows, ScoreRows×2 row-major, of TotalRows; Groups their group
+	// codes, positions in GroupNames.
 	Scores     []float64
 	ScoreRows  int
 	TotalRows  int64
@@ -42,13 +47,13 @@ type Material struct {
 	// LoadingIntervals are p × components kept, row-major; nil without.
 	LoadingIntervals []stability.Interval
 	Reduction        *reduce.Result
-	// ChannelSample is a sample of rows in original units, ChannelRows×p.
+	// ChannelSample is a sample of rows in original units, ChannelRows×p row-major.
 	ChannelSample []float64
 	ChannelRows   int
 	Rebuild       float64 // target of the reduction; 0 without
 	Regression    *pcr.Result
 	Units         []string // of the responses
-	Confidence    float64
+	Confidence    float64  // of the intervals, in (0,1)
 	// Observed and Predicted hold the same sample by response.
 	Observed, Predicted [][]float64
 }
@@ -56,27 +61,40 @@ type Material struct {
 // Picture is one kind of picture.
 type Picture struct {
 	Name string
-	// ready tells whether the material holds what is needed.
-	ready func(*Material) bool
-	// size is width and height.
-	size func(*Material) (w, h vg.Length)
-	draw func(m *Material, response int, c draw.Canvas)
+	// Caption says in a sentence or two what is drawn and how to read it.
+	Caption string
 	// perResponse pictures are drawn once for every response.
 	perResponse bool
+	// ready tells whether the material holds what is needed.
+	ready func(*Material) bool
+	// check refuses numbers that cannot be drawn.
+	check func(m *Material, response int) error
+	// words are what stands above it: what is seen, and how to read it.
+	words func(m *Material, response int) (title, subtitle string)
+	// height is what draw asks for, below the words.
+	height func(m *Material, response int) vg.Length
+	draw   func(m *Material, response int, c draw.Canvas)
 }
 
 // Pictures lists all pictures.
 var Pictures = []Picture{scree, cumulativeShare, loadings, loadingsPlane, scoresPlane, correlationMap, retention, tradeoff, rebuilt, validation, coefficients, predictions}
 
-// Formats lists the formats, the default first.
-var Formats = []string{"svg", "png", "pdf"}
+// Drawing is one picture of one material.
+type Drawing struct {
+	Name     string // of its files, without the extension
+	Title    string // what is seen
+	Caption  string // what is drawn and how to read it
+	subtitle string
+	picture  *Picture
+	response int
+}
 
-const pixelsPerInch = 160
-
-// Draw writes the pictures through open, which is given names such as "scree.svg".
-func Draw(m *Material, formats []string, open func(name string) (io.WriteCloser, error)) error {
-	if err := m.check(); err != nil {
-		return err
+// Drawings lists what Draw would write, in its order. It fails where Draw would, naming
+// the picture and what is wrong with its numbers.
+func Drawings(m *Material) ([]Drawing, error) {
+	var out []Drawing
+	if err := checkDecomposition(m); err != nil {
+		return nil, fmt.Errorf("pictures: %w", err)
 	}
 	for i := range Pictures {
 		p := &Pictures[i]
@@ -89,79 +107,95 @@ func Draw(m *Material, formats []string, open func(name string) (io.WriteCloser,
 		}
 		for r := range times {
 			name := p.Name
-			if p.perResponse && times > 1 {
+			if times > 1 {
 				name += "-" + fileSafe(m.Regression.Models[r].Response, r)
 			}
-			for _, format := range formats {
-				if err := p.write(m, r, format, name+"."+format, open); err != nil {
-					return fmt.Errorf("picture %s: %w", name, err)
-				}
+			if err := p.check(m, r); err != nil {
+				return nil, fmt.Errorf("picture %s: %w", name, err)
 			}
+			title, subtitle := p.words(m, r)
+			out = append(out, Drawing{Name: name, Title: title, Caption: p.Caption, subtitle: subtitle, picture: p, response: r})
+		}
+	}
+	return out, nil
+}
+
+// Draw writes the pictures through open, which is given names such as "scree.svg".
+func Draw(m *Material, formats []string, open func(name string) (io.WriteCloser, error)) error {
+	for _, f := range formats {
+		if !slices.Contains(Formats, f) {
+			return fmt.Errorf("pictures: unknown format %q; known: %s", f, strings.Join(Formats, ", "))
+		}
+	}
+	drawings, err := Drawings(m)
+	if err != nil {
+		return err
+	}
+	var files []*file
+	for i := range drawings {
+		for _, format := range formats {
+			files = append(files, &file{drawing: &drawings[i], format: format})
+		}
+	}
+	paint(m, files)
+	for _, f := range files {
+		if err := f.write(open); err != nil {
+			return fmt.Errorf("picture %s: %w", f.drawing.Name, err)
 		}
 	}
 	return nil
 }
 
-func (p *Picture) write(m *Material, response int, format, name string, open func(string) (io.WriteCloser, error)) error {
-	w, h := p.size(m)
-	canvas, err := newCanvas(format, w, h)
+// file is a drawing in one format.
+type file struct {
+	drawing *Drawing
+	format  string
+	content bytes.Buffer
+	err     error
+}
+
+// paint fills the files, on all cores: they do not depend on one another.
+func paint(m *Material, files []*file) {
+	var wg sync.WaitGroup
+	var next atomic.Int64
+	for range min(runtime.GOMAXPROCS(0), len(files)) {
+		wg.Go(func() {
+			for i := next.Add(1) - 1; i < int64(len(files)); i = next.Add(1) - 1 {
+				files[i].paint(m)
+			}
+		})
+	}
+	wg.Wait()
+}
+
+func (f *file) paint(m *Material) {
+	d := f.drawing
+	head := headLines(m.Title, d.Title, d.subtitle)
+	canvas := newCanvas(f.format, pageWidth, pageHeight(head, d.picture.height(m, d.response)))
+	d.picture.draw(m, d.response, drawHead(draw.New(canvas), head))
+	_, f.err = canvas.WriteTo(&f.content)
+}
+
+func (f *file) write(open func(string) (io.WriteCloser, error)) error {
+	if f.err != nil {
+		return f.err
+	}
+	out, err := open(f.drawing.Name + "." + f.format)
 	if err != nil {
 		return err
 	}
-	p.draw(m, response, draw.New(canvas))
-	out, err := open(name)
-	if err != nil {
-		return err
-	}
-	if _, err := canvas.WriteTo(out); err != nil {
+	if _, err := f.content.WriteTo(out); err != nil {
 		out.Close()
 		return err
 	}
 	return out.Close()
 }
 
-type canvas interface {
-	vg.CanvasSizer
-	io.WriterTo
-}
+// longestFilePart bounds a response's part of a file name, which file systems limit.
+const longestFilePart = 60
 
-func newCanvas(format string, w, h vg.Length) (canvas, error) {
-	switch format {
-	case "svg":
-		return vgsvg.New(w, h), nil
-	case "png":
-		return vgimg.PngCanvas{Canvas: vgimg.NewWith(vgimg.UseWH(w, h), vgimg.UseDPI(pixelsPerInch))}, nil
-	case "pdf":
-		return outlined{vgpdf.New(w, h)}, nil
-	}
-	return nil, fmt.Errorf("unknown format %q; known: %s", format, strings.Join(Formats, ", "))
-}
-
-// A date of its own in every file would make equal pictures differ.
-func init() {
-	fixed := time.Date(2000, 1, 1, 0, 0, 0, 0, time.UTC)
-	fpdf.SetDefaultCreationDate(fixed)
-	fpdf.SetDefaultModificationDate(fixed)
-	fpdf.SetDefaultCatalogSort(true)
-}
-
-// check refuses what cannot be drawn, before anything is written.
-func (m *Material) check() error {
-	d := m.Decomposition
-	if d == nil || len(d.Values) == 0 {
-		return fmt.Errorf("pictures: nothing was decomposed")
-	}
-	for what, list := range map[string][]float64{"eigenvalues": d.Values, "eigenvectors": d.Vectors, "scores": m.Scores, "correlations": m.Correlations, "channels": m.ChannelSample} {
-		for i, v := range list {
-			if math.IsNaN(v) || math.IsInf(v, 0) {
-				return fmt.Errorf("pictures: number %d of the %s is %g", i+1, what, v)
-			}
-		}
-	}
-	return nil
-}
-
-// fileSafe turns a name into part of a file name.
+// fileSafe turns the name of response i into part of a file name; its number keeps names
+// apart that become alike.
 func fileSafe(name string, i int) string {
 	out := strings.Map(func(r rune) rune {
 		switch {
@@ -170,21 +204,5 @@ func fileSafe(name string, i int) string {
 		}
 		return '_'
 	}, name)
-	return fmt.Sprintf("%d-%s", i+1, out)
-}
-
-func always(*Material) bool          { return true }
-func twoKept(m *Material) bool       { return m.Verdict.Components >= 2 }
-func hasRegression(m *Material) bool { return m.Regression != nil && len(m.Regression.Models) > 0 }
-func percent(share float64) string   { return fmt.Sprintf("%.1f %%", 100*share) }
-func componentName(a int) string     { return fmt.Sprintf("C%d", a+1) }
-func axisName(m *Material, a int) string {
-	return fmt.Sprintf("%s (%s of the variance)", componentName(a), percent(m.Decomposition.Share(a)))
-}
-
-func components(n int) string {
-	if n == 1 {
-		return "1 component"
-	}
-	return fmt.Sprintf("%d components", n)
+	return fmt.Sprintf("%d-%s", i+1, out[:min(len(out), longestFilePart)])
 }

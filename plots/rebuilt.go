@@ -1,6 +1,7 @@
 package plots
 
 import (
+	"cmp"
 	"fmt"
 	"slices"
 
@@ -13,47 +14,58 @@ import (
 const mostRebuilt = 4
 
 var rebuilt = Picture{Name: "rebuilt",
+	Caption: "Dropped channels as measured against as rebuilt from the kept ones, those with the smallest R²; on the line they agree.",
 	ready: func(m *Material) bool {
 		return m.Reduction != nil && len(m.Reduction.Dropped) > 0 && m.ChannelRows > 1
 	},
-	size: squarePage,
-	draw: func(m *Material, _ int, c draw.Canvas) {
-		r := m.Reduction
-		p := len(m.Decomposition.Channels)
-		worst := slices.Clone(r.Dropped)
-		slices.SortStableFunc(worst, func(a, b int) int {
-			switch x, y := r.Channels[a].R2FromKept, r.Channels[b].R2FromKept; {
-			case x < y:
-				return -1
-			case x > y:
-				return 1
-			}
-			return 0
-		})
-		worst = worst[:min(len(worst), mostRebuilt)]
-		subtitle := fmt.Sprintf("%d rows", m.ChannelRows)
-		if int64(m.ChannelRows) < m.TotalRows {
-			subtitle = fmt.Sprintf("%d of %d rows, evenly spaced", m.ChannelRows, m.TotalRows)
+	check: checkRebuilt,
+	words: func(m *Material, _ int) (title, subtitle string) {
+		dropped := len(m.Reduction.Dropped)
+		switch {
+		case dropped == 1:
+			title = "The dropped channel, rebuilt from the others"
+		case dropped <= mostRebuilt:
+			title = fmt.Sprintf("The %d dropped channels, rebuilt from the others", dropped)
+		default:
+			title = fmt.Sprintf("The %d of %d dropped channels that are rebuilt worst", mostRebuilt, dropped)
 		}
-		c = page(c, fmt.Sprintf("The dropped channels that are rebuilt worst, of %d", len(r.Dropped)), subtitle+"; on the line they agree")
-		across := min(len(worst), 2)
+		return title, sampled(m.ChannelRows, m.TotalRows, "") + "; on the line they agree"
+	},
+	height: func(m *Material, _ int) vg.Length {
+		if len(m.Reduction.Dropped) <= 2 {
+			return 8 * vg.Centimeter
+		}
+		return 15.5 * vg.Centimeter
+	},
+	draw: func(m *Material, _ int, c draw.Canvas) {
+		worst := worstRebuilt(m)
 		down := (len(worst) + 1) / 2
-		gap := vg.Length(14)
-		w := (c.Max.X - c.Min.X - gap*vg.Length(across-1)) / vg.Length(across)
+		const gap = vg.Length(14)
+		w := (c.Max.X - c.Min.X - gap) / 2
 		h := (c.Max.Y - c.Min.Y - gap*vg.Length(down-1)) / vg.Length(down)
 		for i, j := range worst {
 			panel := c
-			panel.Min.X = c.Min.X + vg.Length(i%2)*(w+gap)
+			panel.Min.X += vg.Length(i%2) * (w + gap)
 			panel.Max.X = panel.Min.X + w
-			panel.Max.Y = c.Max.Y - vg.Length(i/2)*(h+gap)
+			panel.Max.Y -= vg.Length(i/2) * (h + gap)
 			panel.Min.Y = panel.Max.Y - h
-			drawRebuilt(panel, m, j, p)
+			drawRebuilt(panel, m, j)
 		}
 	}}
 
-func drawRebuilt(c draw.Canvas, m *Material, j, p int) {
-	ch := m.Reduction.Channels[j]
-	measured, made := make([]float64, m.ChannelRows), make([]float64, m.ChannelRows)
+// worstRebuilt lists the dropped channels that are drawn, the worst first.
+func worstRebuilt(m *Material) []int {
+	worst := slices.Clone(m.Reduction.Dropped)
+	slices.SortStableFunc(worst, func(a, b int) int {
+		return cmp.Compare(m.Reduction.Channels[a].R2FromKept, m.Reduction.Channels[b].R2FromKept)
+	})
+	return worst[:min(len(worst), mostRebuilt)]
+}
+
+// asMade returns a dropped channel as measured and as rebuilt, by row of the sample.
+func asMade(m *Material, j int) (measured, made []float64) {
+	p, ch := len(m.Decomposition.Channels), m.Reduction.Channels[j]
+	measured, made = make([]float64, m.ChannelRows), make([]float64, m.ChannelRows)
 	for i := range measured {
 		row := m.ChannelSample[i*p : (i+1)*p]
 		measured[i], made[i] = row[j], ch.Intercept
@@ -61,20 +73,41 @@ func drawRebuilt(c draw.Canvas, m *Material, j, p int) {
 			made[i] += b * row[m.Reduction.Kept[k]]
 		}
 	}
+	return measured, made
+}
+
+func drawRebuilt(c draw.Canvas, m *Material, j int) {
+	head := textStyle(textSize, ink, text.XLeft, text.YTop)
+	r2 := fmt.Sprintf("  R² %.3f", m.Reduction.Channels[j].R2FromKept)
+	name := shorten(named(m.Decomposition.Channels[j]), c.Max.X-c.Min.X-head.Width(r2), head)
+	c.FillText(head, vg.Point{X: c.Min.X, Y: c.Max.Y}, name+r2)
+	c.Max.Y -= 14
+	measured, made := asMade(m, j)
 	low, high := extent(measured, made)
 	low, high = padded(low, high, .03)
-	f := newFrame(c, 46, 4, 30, 14, low, high, low, high)
-	f.xAxis("rebuilt", true)
-	f.yAxis("measured", true)
-	head := textStyle(textSize, ink, text.XLeft, text.YBottom)
-	name := fmt.Sprintf("%s, R2 %.3f", m.Decomposition.Channels[j], ch.R2FromKept)
-	f.c.FillText(head, vg.Point{X: f.left, Y: f.high + 3}, shorten(name, f.right-f.left, head))
-	f.c.StrokeLine2(line(against, strongLine), f.x(low), f.y(low), f.x(high), f.y(high))
-	alpha := .8
-	if m.ChannelRows > 500 {
-		alpha = .35
-	}
+	f := layout{x: axis{title: "rebuilt", low: low, high: high, grid: true}, y: axis{title: "measured", low: low, high: high, grid: true}, equal: true}.on(c)
+	f.diagonal()
 	for i := range measured {
-		f.c.DrawGlyphNoClip(draw.GlyphStyle{Color: fade(kept, alpha), Radius: 1.3, Shape: draw.CircleGlyph{}}, f.at(made[i], measured[i]))
+		f.c.DrawGlyphNoClip(dot(fade(kept, seeThrough(len(measured))), 1.4), f.at(made[i], measured[i]))
 	}
+}
+
+func checkRebuilt(m *Material, _ int) error {
+	r, p := m.Reduction, len(m.Decomposition.Channels)
+	if err := counts("channels judged", len(r.Channels), p); err != nil {
+		return err
+	}
+	if err := counts("measured values", len(m.ChannelSample), m.ChannelRows*p); err != nil {
+		return err
+	}
+	if err := allFinite("measured value", m.ChannelSample); err != nil {
+		return err
+	}
+	for _, j := range worstRebuilt(m) {
+		_, made := asMade(m, j)
+		if err := allFinite("rebuilt value", made); err != nil {
+			return fmt.Errorf("channel %q: %w", m.Decomposition.Channels[j], err)
+		}
+	}
+	return nil
 }

@@ -2,65 +2,83 @@ package plots
 
 import (
 	"fmt"
-	"math"
 
 	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
+
+	"axisfold/pca/retain"
 )
 
 var retention = Picture{Name: "retention",
-	ready: func(m *Material) bool { return len(m.Overview) > 1 },
-	size: func(m *Material) (vg.Length, vg.Length) {
-		return pageWidth, vg.Length(len(m.Overview))*14 + 100
-	},
-	draw: func(m *Material, _ int, c draw.Canvas) {
-		spoke, agree := 0, 0
-		most := m.Verdict.Components
+	Caption: "Number of components that each rule keeps, the rule that decided first and in bold. Rules that abstain are named without a mark.",
+	ready:   func(m *Material) bool { return len(m.Overview) > 1 },
+	check: func(m *Material, _ int) error {
 		for _, v := range m.Overview {
-			if v.Abstains {
-				continue
-			}
-			spoke++
-			most = max(most, v.Components)
-			if v.Components == m.Verdict.Components {
-				agree++
+			if !v.Abstains && v.Components < 0 {
+				return fmt.Errorf("rule %q keeps %d components", v.Rule, v.Components)
 			}
 		}
-		c = page(c, fmt.Sprintf("%s kept; %d of %d rules say the same", components(m.Verdict.Components), agree, spoke),
-			"how many components each rule keeps; rules that abstain are named without a mark")
-		names := textStyle(smallSize, ink, text.XRight, text.YCenter)
-		column := 5.6 * vg.Centimeter
-		n := float64(len(m.Overview))
-		f := newFrame(c, column+6, 24, 30, 4, -.5, math.Max(float64(most), 3)+.5, n-.5, -.5)
-		f.xAxis("number of components", true)
-		x := f.x(float64(m.Verdict.Components))
-		f.c.StrokeLine2(line(pale, 5), x, f.low, x, f.high)
-		number := textStyle(smallSize, ink, text.XLeft, text.YCenter)
+		return nil
+	},
+	words: func(m *Material, _ int) (title, subtitle string) {
+		spoke, agree, abstain := 0, 0, 0
+		for _, v := range m.Overview {
+			switch {
+			case v.Abstains:
+				abstain++
+			case v.Components == keptOf(m):
+				agree++
+				spoke++
+			default:
+				spoke++
+			}
+		}
+		subtitle = "number of components that each rule keeps"
+		if abstain > 0 {
+			subtitle += fmt.Sprintf("; %d in grey abstain", abstain)
+		}
+		return fmt.Sprintf("%s kept; %d of %d rules say the same", components(keptOf(m)), agree, spoke), subtitle
+	},
+	height: func(m *Material, _ int) vg.Length { return vg.Length(len(m.Overview))*13 + 2*rowStep + labelGap },
+	draw: func(m *Material, _ int, c draw.Canvas) {
+		most := max(keptOf(m), 3)
+		rows := make([]mark, len(m.Overview))
 		for i, v := range m.Overview {
-			y := f.y(float64(i))
-			style := names
-			if i == 0 {
-				style.Font = face(smallSize, true)
+			rows[i] = ruleMark(i, v)
+			if !v.Abstains {
+				most = max(most, v.Components)
 			}
-			name := v.Rule
-			if v.Setting != "" {
-				name += " " + v.Setting
-			}
-			if v.Abstains {
-				style.Color = quiet
-			}
-			f.c.FillText(style, vg.Point{X: f.left - 6, Y: y}, shorten(name, column, style))
+		}
+		const room = 22 // for the number beside the last mark
+		width := float64(c.Max.X - c.Min.X - labelRoom(rows) - rightInset)
+		high := (float64(most) + .5 + .5*room/width) / (1 - room/width)
+		f := layout{x: axis{title: "number of components", low: -.5, high: high, marks: counted(0, most, vg.Length(width)), grid: true},
+			y: axis{low: float64(len(rows)) - .5, high: -.5, marks: rows}}.on(c)
+		x := f.x(float64(keptOf(m)))
+		f.c.StrokeLine2(line(pale, 5), x, f.low, x, f.high)
+		style := textStyle(smallSize, ink, text.XLeft, text.YCenter)
+		for i, v := range m.Overview {
 			if v.Abstains {
 				continue
 			}
-			glyph := draw.GlyphStyle{Color: kept, Radius: 2.6, Shape: draw.CircleGlyph{}}
-			if v.Components != m.Verdict.Components {
-				glyph.Color = against
-				glyph.Shape = draw.BoxGlyph{}
+			at := f.at(float64(v.Components), float64(i))
+			if v.Components == keptOf(m) {
+				f.c.DrawGlyphNoClip(dot(kept, 2.7), at)
+			} else {
+				f.c.DrawGlyphNoClip(glyph(against, 2.7, draw.BoxGlyph{}), at)
 			}
-			at := vg.Point{X: f.x(float64(v.Components)), Y: y}
-			f.c.DrawGlyphNoClip(glyph, at)
-			f.c.FillText(number, vg.Point{X: at.X + 6, Y: y}, fmt.Sprint(v.Components))
+			f.c.FillText(style, vg.Point{X: at.X + 6, Y: at.Y}, fmt.Sprint(v.Components))
 		}
 	}}
+
+// ruleMark names a rule beside row i of an axis.
+func ruleMark(i int, v retain.Verdict) mark {
+	name := v.Rule
+	if v.Setting != "" {
+		name += ", " + v.Setting
+	}
+	m := mark{at: float64(i), strong: i == 0, faint: v.Abstains}
+	m.label = shorten(name, 6*vg.Centimeter, m.style())
+	return m
+}

@@ -3,39 +3,38 @@ package plots
 import (
 	"image/color"
 	"math"
-	"unicode/utf8"
 
-	xfont "golang.org/x/image/font"
-	"gonum.org/v1/plot/font"
-	"gonum.org/v1/plot/font/liberation"
-	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
 )
 
-// The house style: dark ink on white, one colour for what is kept or estimated, one for
-// what it is compared with, grey for the rest. The two colours differ in lightness as
-// well as in hue, so they can be told apart in grey print and by every kind of eye.
+// The house style: dark ink on white; titles of axes lie flat above and below the frame;
+// one colour for what is kept or estimated, one for what it is compared with, grey for the
+// rest. The two colours differ in lightness as well as in hue, so they can be told apart
+// in grey print and by every kind of eye.
 var (
-	ink     = color.RGBA{0x1d, 0x2a, 0x33, 0xff}
-	quiet   = color.RGBA{0x7c, 0x86, 0x8d, 0xff}
-	grid    = color.RGBA{0xe6, 0xe8, 0xea, 0xff}
-	pale    = color.RGBA{0xc3, 0xcb, 0xd0, 0xff}
-	kept    = color.RGBA{0x0f, 0x4c, 0x5c, 0xff} // dark teal
-	against = color.RGBA{0xe0, 0x8e, 0x2b, 0xff} // ochre
+	ink        = color.RGBA{0x1d, 0x2a, 0x33, 0xff}
+	quiet      = color.RGBA{0x62, 0x6d, 0x76, 0xff}
+	grid       = color.RGBA{0xe6, 0xe8, 0xea, 0xff}
+	pale       = color.RGBA{0xc3, 0xcb, 0xd0, 0xff}
+	white      = color.RGBA{0xff, 0xff, 0xff, 0xff}
+	kept       = color.RGBA{0x0f, 0x4c, 0x5c, 0xff} // dark teal
+	against    = color.RGBA{0xe0, 0x8e, 0x2b, 0xff} // ochre
+	againstInk = color.RGBA{0x9a, 0x58, 0x0b, 0xff} // ochre dark enough for small letters
 )
 
-// groupColors and groupShapes go round together: the shapes carry the difference where
-// colours fail.
+// groupColors and groupShapes go round together. The lightness of the six colours differs
+// as well as their hue, and the shapes carry the difference where both fail.
 var groupColors = []color.RGBA{
-	{0x0f, 0x4c, 0x5c, 0xff}, {0xe0, 0x8e, 0x2b, 0xff}, {0x7d, 0x9c, 0xc0, 0xff},
-	{0x8c, 0x2f, 0x39, 0xff}, {0x6b, 0x7f, 0x3a, 0xff}, {0x9a, 0x8f, 0x97, 0xff},
+	{0x0f, 0x4c, 0x5c, 0xff}, {0xe0, 0x8e, 0x2b, 0xff}, {0x2d, 0x14, 0x3d, 0xff},
+	{0x72, 0x89, 0x35, 0xff}, {0xac, 0xc7, 0xe8, 0xff}, {0xa6, 0x40, 0x51, 0xff},
 }
 
-var groupShapes = []draw.GlyphDrawer{draw.CircleGlyph{}, draw.TriangleGlyph{}, draw.BoxGlyph{}, draw.PlusGlyph{}, draw.RingGlyph{}, draw.CrossGlyph{}}
+var groupShapes = []draw.GlyphDrawer{draw.CircleGlyph{}, draw.PyramidGlyph{}, draw.BoxGlyph{}, cross{}, draw.CircleGlyph{}, plus{}}
 
 const (
 	pageWidth  = 16 * vg.Centimeter
+	margin     = vg.Length(10)
 	titleSize  = 11
 	textSize   = 8.5
 	smallSize  = 7.5
@@ -43,26 +42,16 @@ const (
 	strongLine = vg.Length(1.3)
 )
 
-// fonts holds the Liberation family, which comes with the drawing library.
-var fonts = font.NewCache(liberation.Collection())
-
-func face(size vg.Length, bold bool) font.Font {
-	f := font.Font{Typeface: "Liberation", Variant: "Sans", Size: size}
-	if bold {
-		f.Weight = xfont.WeightBold
-	}
-	return f
-}
-
-func textStyle(size vg.Length, c color.Color, x text.XAlignment, y text.YAlignment) text.Style {
-	return text.Style{Color: c, Font: face(size, false), XAlign: x, YAlign: y, Handler: text.Plain{Fonts: fonts}}
-}
-
-// tickStyle is that of numbers below an axis.
-var tickStyle = textStyle(smallSize, ink, text.XCenter, text.YTop)
-
 func line(c color.Color, w vg.Length, dashes ...vg.Length) draw.LineStyle {
 	return draw.LineStyle{Color: c, Width: w, Dashes: dashes}
+}
+
+func glyph(c color.Color, radius vg.Length, shape draw.GlyphDrawer) draw.GlyphStyle {
+	return draw.GlyphStyle{Color: c, Radius: radius, Shape: shape}
+}
+
+func dot(c color.Color, radius vg.Length) draw.GlyphStyle {
+	return glyph(c, radius, draw.CircleGlyph{})
 }
 
 func fill(c draw.Canvas, col color.Color, x0, y0, x1, y1 vg.Length) {
@@ -82,37 +71,31 @@ func fade(c color.RGBA, alpha float64) color.RGBA {
 	return color.RGBA{at(c.R), at(c.G), at(c.B), at(0xff)}
 }
 
-// shorten cuts a name in its middle until it fits the width, and replaces what the font
-// has no glyph for by a box.
-func shorten(s string, width vg.Length, style text.Style) string {
-	s = drawable(s)
-	if style.Width(s) <= width {
-		return s
-	}
-	runes := []rune(s)
-	for keep := len(runes) - 1; keep >= 2; keep-- {
-		left := (keep + 1) / 2
-		short := string(runes[:left]) + "…" + string(runes[len(runes)-(keep-left):])
-		if style.Width(short) <= width {
-			return short
-		}
-	}
-	return "…"
+// cross and plus are marks of two strokes, strong enough to show their colour.
+type (
+	cross struct{}
+	plus  struct{}
+)
+
+func (cross) DrawGlyph(c *draw.Canvas, s draw.GlyphStyle, at vg.Point) {
+	r := s.Radius * .8
+	strokes(c, s, vg.Point{X: at.X - r, Y: at.Y - r}, vg.Point{X: at.X + r, Y: at.Y + r},
+		vg.Point{X: at.X - r, Y: at.Y + r}, vg.Point{X: at.X + r, Y: at.Y - r})
 }
 
-// drawable keeps Latin, Greek and Cyrillic letters, figures and common signs, which the
-// font has, and shows a box for the rest.
-func drawable(s string) string {
-	out := make([]rune, 0, utf8.RuneCountInString(s))
-	for _, r := range s {
-		switch {
-		case r < ' ' || r == utf8.RuneError:
-			out = append(out, ' ')
-		case r < 0x530 || r >= 0x2010 && r <= 0x2044 || r >= 0x2070 && r <= 0x2122 || r == 0x25a1:
-			out = append(out, r)
-		default:
-			out = append(out, '□')
-		}
+func (plus) DrawGlyph(c *draw.Canvas, s draw.GlyphStyle, at vg.Point) {
+	r := s.Radius * 1.1
+	strokes(c, s, vg.Point{X: at.X - r, Y: at.Y}, vg.Point{X: at.X + r, Y: at.Y},
+		vg.Point{X: at.X, Y: at.Y - r}, vg.Point{X: at.X, Y: at.Y + r})
+}
+
+// strokes draws a line between each pair of points.
+func strokes(c *draw.Canvas, s draw.GlyphStyle, ends ...vg.Point) {
+	c.SetLineStyle(line(s.Color, s.Radius*.55))
+	var path vg.Path
+	for i := 0; i < len(ends); i += 2 {
+		path.Move(ends[i])
+		path.Line(ends[i+1])
 	}
-	return string(out)
+	c.Stroke(path)
 }

@@ -8,40 +8,54 @@ import (
 )
 
 var tradeoff = Picture{Name: "tradeoff",
-	ready: func(m *Material) bool { return m.Reduction != nil && len(m.Reduction.Curve) > 1 },
-	size:  widePage,
-	draw: func(m *Material, _ int, c draw.Canvas) {
-		r := m.Reduction
-		p, count := len(m.Decomposition.Channels), len(r.Kept)
-		subtitle := "R2 of the dropped channels from the kept ones, on the rows of the fit"
+	Caption: "How well the dropped channels are rebuilt from the kept ones, the worst of them and their mean, against the number of channels kept.",
+	ready:   func(m *Material) bool { return m.Reduction != nil && len(m.Reduction.Curve) > 1 },
+	check: func(m *Material, _ int) error {
+		for _, point := range m.Reduction.Curve {
+			for _, err := range []error{finite("R² of the worst channel", point.WorstR2), finite("mean R²", point.MeanR2)} {
+				if err != nil {
+					return fmt.Errorf("with %d kept: %w", point.Kept, err)
+				}
+			}
+		}
+		return finite("the share to rebuild", m.Rebuild)
+	},
+	words: func(m *Material, _ int) (title, subtitle string) {
+		p, count := len(m.Decomposition.Channels), len(m.Reduction.Kept)
+		title = fmt.Sprintf("%d of %d channels kept", count, p)
+		for _, point := range m.Reduction.Curve {
+			if point.Kept == count && count < p {
+				title += fmt.Sprintf(": they rebuild each of the others to R² %.3f or better", point.WorstR2)
+			}
+		}
+		subtitle = "R² of the dropped channels from the kept ones, on the rows of the fit"
 		if m.Rebuild > 0 {
 			subtitle += fmt.Sprintf("; asked for: %g", m.Rebuild)
 		}
-		c = page(c, fmt.Sprintf("%d of %d channels kept", count, p), subtitle)
-		f := newFrame(c, 46, 6, 30, 16, .4, float64(p)+.6, 0, 1.04)
-		f.yAxis("R2 of the dropped channels", true)
-		f.base(0)
-		x := f.x(float64(count))
+		return title, subtitle
+	},
+	height: func(*Material, int) vg.Length { return 7.5 * vg.Centimeter },
+	draw: func(m *Material, _ int, c draw.Canvas) {
+		p := len(m.Decomposition.Channels)
+		key := []entry{{"worst channel", stroke(line(kept, strongLine))}, {"mean", stroke(line(against, strongLine))}, {"chosen", stroke(line(pale, 5))}}
+		if m.Rebuild > 0 {
+			key = append(key, entry{"asked for", stroke(line(quiet, hairline, 3, 3))})
+		}
+		f := layout{x: axis{title: "number of channels kept", low: .4, high: float64(p) + .6, marks: counted(1, p, c.Max.X-c.Min.X-30)},
+			y: axis{title: "R² of the dropped channels", high: 1.02, grid: true}, key: key}.on(c)
+		x := f.x(float64(len(m.Reduction.Kept)))
 		f.c.StrokeLine2(line(pale, 5), x, f.low, x, f.high)
+		f.base(0)
 		if m.Rebuild > 0 {
 			f.c.StrokeLine2(line(quiet, hairline, 3, 3), f.left, f.y(m.Rebuild), f.right, f.y(m.Rebuild))
 		}
 		var worst, mean []vg.Point
-		for _, point := range r.Curve {
+		for _, point := range m.Reduction.Curve {
 			if point.Kept < p {
 				worst = append(worst, f.at(float64(point.Kept), point.WorstR2))
 				mean = append(mean, f.at(float64(point.Kept), point.MeanR2))
 			}
 		}
-		f.c.StrokeLines(line(against, strongLine), mean)
-		f.c.StrokeLines(line(kept, strongLine), worst)
-		if p <= 60 {
-			for i := range worst {
-				f.c.DrawGlyphNoClip(draw.GlyphStyle{Color: against, Radius: 2, Shape: draw.BoxGlyph{}}, mean[i])
-				f.c.DrawGlyphNoClip(draw.GlyphStyle{Color: kept, Radius: 2.2, Shape: draw.CircleGlyph{}}, worst[i])
-			}
-		}
-		f.numberTicks(p)
-		f.xTitle("number of channels kept")
-		f.legend(entry{"worst channel", stroke(line(kept, strongLine))}, entry{"mean", stroke(line(against, strongLine))}, entry{"chosen", stroke(line(pale, 5))})
+		f.curve(mean, line(against, strongLine), draw.BoxGlyph{})
+		f.curve(worst, line(kept, strongLine), draw.CircleGlyph{})
 	}}

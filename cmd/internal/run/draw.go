@@ -17,7 +17,7 @@ func (w *work) draw(context.Context) error {
 		return nil
 	}
 	s := w.study
-	m := plots.Material{Decomposition: s.Decomposition, Verdict: s.Verdict, Overview: s.Overview, TotalRows: s.Table.Complete,
+	m := plots.Material{Title: w.cfg.Title, Decomposition: s.Decomposition, Verdict: s.Verdict, Overview: s.Overview, TotalRows: s.Table.Complete,
 		Groups: w.sample.groups, GroupNames: w.sample.names, Observed: w.sample.observed, Predicted: w.sample.predicted}
 	if w.correlations != nil {
 		m.Correlations = w.correlations
