@@ -82,6 +82,7 @@ type Rule struct {
 // Uncertainty asks how sure the components are.
 type Uncertainty struct {
 	Replicates int     `key:"replicates"`
+	Stretches  int     `key:"stretches"` // 0: about the root of the number of rows
 	Confidence float64 `key:"confidence"`
 }
 

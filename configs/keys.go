@@ -47,6 +47,7 @@ var sections = []Key{
 	{Name: "retain", Kind: Choice, Rules: rulesFor(components), Default: "parallel", Doc: "how many components to keep"},
 	{Name: "uncertainty", Kind: Section, Named: true, Doc: "how sure roots, loadings and components are, by resampling stretches of rows", Keys: []Key{
 		{Name: "replicates", Kind: Whole, Range: from(50, 100000), Default: 1000, Doc: "resampled tables"},
+		{Name: "stretches", Kind: Whole, Range: from(2, 100000), Blank: "auto", Doc: "that the rows are cut into and drawn from; auto takes the root of the number of rows, 100 at most; as many as there are rows draws single rows, which suits rows that do not follow one another"},
 		{Name: "confidence", Kind: Number, Range: below(1), Default: 0.95, Doc: "of the intervals"},
 	}},
 	{Name: "reduce", Kind: Section, Named: true, Doc: "which channels to keep, and how the others are rebuilt from them", Keys: []Key{

@@ -83,7 +83,7 @@ func Bootstrap(blocks []*pca.Summary, whole *pca.Decomposition, o Options) (*Res
 		return nil, err
 	}
 	if res.Blocks < fewBlocks {
-		res.warn("few-blocks", "only %d blocks were resampled: intervals are coarse below %d, so cut the rows into shorter blocks", res.Blocks, fewBlocks)
+		res.warn("few-blocks", "only %d blocks were resampled: intervals are coarse below %d; more and shorter blocks help where rows do not follow one another", res.Blocks, fewBlocks)
 	}
 	c := newCollector(whole, o)
 	share(o.Threads, o.Replicates, func(next func() (int, bool)) {

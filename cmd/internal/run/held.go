@@ -42,11 +42,14 @@ func heldSummaries(held *table.Held, plan *foldPlan, form pca.Form, ranks bool, 
 	return whole, folds, nil
 }
 
-// heldBlocks summarises consecutive stretches for resampling: about √n of them, each
-// about √n rows long, so that they outlast the memory of most series.
-func heldBlocks(held *table.Held, form pca.Form, ranks bool, threads int) []*pca.Summary {
+// heldBlocks summarises count consecutive stretches for resampling; 0 makes about √n of
+// them, each about √n rows long, so that they outlast the memory of most series.
+func heldBlocks(held *table.Held, count int, form pca.Form, ranks bool, threads int) []*pca.Summary {
 	n := held.Len()
-	count := max(2, min(100, int(math.Sqrt(float64(n)))))
+	if count == 0 {
+		count = max(2, min(100, int(math.Sqrt(float64(n)))))
+	}
+	count = min(count, n)
 	kept := 0
 	if ranks {
 		kept = n

@@ -21,18 +21,21 @@ func (w *work) uncertainty(context.Context) error {
 	}
 	var blocks []*pca.Summary
 	if c := w.reading.stream; c != nil {
-		blocks = c.blocks()
+		blocks = joined(c.blocks(), u.Stretches)
 	} else {
 		// Cross-products serve: replicates are compared with one another to a few digits.
 		form := pca.CrossProducts
 		if w.reading.complete-1 < int64(w.roles.width()) {
 			form = pca.Factor
 		}
-		blocks = heldBlocks(w.reading.source.held, form, pca.NeedsRanks(w.roles.methods), w.options.Threads)
+		blocks = heldBlocks(w.reading.source.held, u.Stretches, form, pca.NeedsRanks(w.roles.methods), w.options.Threads)
 	}
 	if blocks == nil {
 		w.warn("no-intervals", "intervals need stretches of rows; on a table too large to hold, use arrangement: blocks")
 		return nil
+	}
+	if u.Stretches > len(blocks) {
+		w.warn("fewer-stretches", "uncertainty: %d stretches asked for, %d could be made of the rows", u.Stretches, len(blocks))
 	}
 	active := make([]*pca.Summary, len(blocks))
 	for i, b := range blocks {
@@ -48,4 +51,18 @@ func (w *work) uncertainty(context.Context) error {
 		w.warn(warning.Code, "uncertainty: %s", warning.Text)
 	}
 	return nil
+}
+
+// joined merges neighbouring stretches into most of them; 0 leaves them as they are.
+func joined(blocks []*pca.Summary, most int) []*pca.Summary {
+	if most == 0 || len(blocks) <= most {
+		return blocks
+	}
+	out := make([]*pca.Summary, 0, most)
+	start := 0
+	for _, end := range stretches(len(blocks), most) {
+		out = append(out, pca.MergeAll(blocks[start:end]...))
+		start = end
+	}
+	return out
 }
