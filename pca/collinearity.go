@@ -3,7 +3,6 @@ package pca
 import (
 	"errors"
 	"math"
-	"slices"
 
 	"gonum.org/v1/gonum/mat"
 
@@ -111,55 +110,4 @@ func (s *Summary) uncentred() (values, vectors []float64, err error) {
 		}
 	}
 	return svd.Values(nil), vectors, nil
-}
-
-// Dependency is a combination of channels that hardly varies, solved for one of them:
-// x[Of] = Intercept + Σ Slopes·x[From] within Spread (one standard deviation), in
-// original units.
-type Dependency struct {
-	Component int // whose root it is, from 0
-	Index     float64
-	Of        int
-	Intercept float64
-	From      []int
-	Slopes    []float64
-	Spread    float64
-}
-
-// dependencyWeight is the share of the largest weight below which a channel is left out of
-// an equation; its part is then counted at its mean.
-const dependencyWeight = 0.15
-
-// Dependencies turns components whose condition index, the root of l₁/l_a, is above limit
-// into equations, the tightest first.
-func (d *Decomposition) Dependencies(limit float64, means []float64) []Dependency {
-	var out []Dependency
-	for a := d.Components() - 1; a > 0; a-- {
-		index := math.Inf(1)
-		if d.Values[a] > 0 {
-			index = math.Sqrt(d.Values[0] / d.Values[a])
-		}
-		if index <= limit {
-			break
-		}
-		e := Dependency{Component: a, Index: index}
-		for j := range d.Channels {
-			if math.Abs(d.Vector(j, a)) > math.Abs(d.Vector(e.Of, a)) {
-				e.Of = j
-			}
-		}
-		scale, weight := d.Scaling.Scale[e.Of], d.Vector(e.Of, a)
-		e.Spread = math.Sqrt(d.ScoreVariances[a]) * scale / math.Abs(weight)
-		e.Intercept = means[e.Of]
-		for j := range d.Channels {
-			if j == e.Of || math.Abs(d.Vector(j, a)) < dependencyWeight*math.Abs(weight) {
-				continue
-			}
-			slope := -d.Vector(j, a) / d.Scaling.Scale[j] * scale / weight
-			e.From, e.Slopes = append(e.From, j), append(e.Slopes, slope)
-			e.Intercept -= slope * means[j]
-		}
-		out = append(out, e)
-	}
-	return slices.Clip(out)
 }

@@ -39,32 +39,3 @@ func TestCollinearLongley(t *testing.T) {
 		t.Errorf("Hald: %.6f", c.Indices[4])
 	}
 }
-
-// Hald's four ingredients add up to nearly 100 %: the last component must say so, within
-// the spread that the sums themselves show.
-func TestDependencyOfHald(t *testing.T) {
-	hald := published.CSV(t, "reference/classic/hald_cement.csv").Columns("x1", "x2", "x3", "x4")
-	s := inBlocks(hald.Data, 4, pca.Factor, 13)
-	d := decompose(t, hald, pca.Factor, pca.Correlation, pca.UnitNormal)
-	means := []float64{s.Mean(0), s.Mean(1), s.Mean(2), s.Mean(3)}
-	dependencies := d.Dependencies(30, means)
-	if len(dependencies) != 1 {
-		t.Fatalf("%d dependencies", len(dependencies))
-	}
-	e := dependencies[0]
-	squares := 0.0
-	for i := range hald.Rows {
-		row := hald.Data[4*i : 4*i+4]
-		got := e.Intercept
-		for k, j := range e.From {
-			got += e.Slopes[k] * row[j]
-			if math.Abs(e.Slopes[k]+1) > .1 {
-				t.Errorf("slope on x%d is %.3f; the ingredients add up", j+1, e.Slopes[k])
-			}
-		}
-		squares += (row[e.Of] - got) * (row[e.Of] - got)
-	}
-	if spread := math.Sqrt(squares / 12); math.Abs(spread-e.Spread) > 1e-9*spread || math.Abs(e.Intercept-100) > 5 {
-		t.Errorf("spread %.6f, said %.6f; intercept %.3f", spread, e.Spread, e.Intercept)
-	}
-}

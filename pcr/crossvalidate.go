@@ -23,7 +23,10 @@ type validation struct {
 type heldErrors struct {
 	path  []float64 // by number of components, from 0
 	ridge []float64 // by ridge parameter, see ridgeGrid
-	pls   []float64 // by number of partial least squares components, from 1
+	// formulas is by ridge parameter that a formula chose without these rows, see
+	// ridgeFormulas; NaN where it chose none.
+	formulas []float64
+	pls      []float64 // by number of partial least squares components, from 1
 }
 
 // crossValidate fits without each fold in turn and judges the fit on the fold, from
@@ -103,6 +106,17 @@ func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([]hel
 		}
 		for _, kappa := range ridgeGrid(d) {
 			out[i].ridge = append(out[i].ridge, g.squares(i, ridgeSlopes(d, along, kappa)))
+		}
+		rows := train.Count()
+		if !o.ThroughOrigin {
+			rows--
+		}
+		for _, formula := range ridgeFormulas {
+			squares := math.NaN()
+			if kappa := formula.choose(d, projections[i], rows); !math.IsNaN(kappa) {
+				squares = g.squares(i, ridgeSlopes(d, along, kappa))
+			}
+			out[i].formulas = append(out[i].formulas, squares)
 		}
 		for _, slopes := range plsSlopes(d, along, min(d.Rank, most, mostPLS)) {
 			out[i].pls = append(out[i].pls, g.squares(i, slopes))

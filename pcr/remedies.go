@@ -29,26 +29,6 @@ type Remedy struct {
 // mostPLS bounds the number of partial least squares components that are tried.
 const mostPLS = 30
 
-// ridgeGrid are the ridge parameters tried: from 1e-7 to 100 mean roots, four a decade.
-// They do not depend on the rows but for the unit of the roots.
-func ridgeGrid(d *pca.Decomposition) []float64 {
-	mean := d.Total / float64(d.Width())
-	var out []float64
-	for e := -28; e <= 8; e++ {
-		out = append(out, mean*math.Pow(10, float64(e)/4))
-	}
-	return out
-}
-
-// ridgeSlopes are slopes on scores shrunk by l/(l+κ), l the root (Hoerl & Kennard 1970).
-func ridgeSlopes(d *pca.Decomposition, along []float64, kappa float64) []float64 {
-	out := make([]float64, len(along))
-	for a, v := range along {
-		out[a] = v / d.Length(a) * d.Values[a] / (d.Values[a] + kappa)
-	}
-	return out
-}
-
 // plsSlopes returns slopes on scores for 1..most components of partial least squares: the
 // least-squares solutions in the Krylov spaces of T'T and T'y (Manne 1987), which in the
 // coordinates of the components is diagonal. The basis is orthonormalised twice (Lanczos
@@ -188,7 +168,7 @@ func (m *Model) remedies(d *pca.Decomposition, pr pca.Projection, v *validation,
 		}
 		add("least squares", "", 0, ordinary, float64(d.Rank), at(k, path))
 	}
-	m.addRidge(d, pr, v, response, add, at)
+	m.addRidge(d, pr, v, add, at)
 	if v != nil {
 		pls := func(e heldErrors) []float64 { return e.pls }
 		fits := plsSlopes(d, along, min(most, mostPLS))
@@ -207,67 +187,4 @@ func (v *validation) best(n int, of func(k int) func(int) (float64, bool)) int {
 		}
 	}
 	return best
-}
-
-// addRidge adds ridge regression with its parameter by the folds, by generalised
-// cross-validation (Golub, Heath & Wahba 1979), and by Hoerl, Kennard & Baldwin 1975.
-func (m *Model) addRidge(d *pca.Decomposition, pr pca.Projection, v *validation, response int,
-	add func(string, string, float64, []float64, float64, func(int) (float64, bool)), at func(int, func(heldErrors) []float64) func(int) (float64, bool)) {
-	along := pr.Along[:d.Rank]
-	grid := ridgeGrid(d)
-	parameters := func(kappa float64) float64 {
-		sum := 0.0
-		for a := range along {
-			sum += d.Values[a] / (d.Values[a] + kappa)
-		}
-		return sum
-	}
-	ridge := func(e heldErrors) []float64 { return e.ridge }
-	nearest := func(kappa float64) int {
-		best := 0
-		for i, g := range grid {
-			if math.Abs(math.Log(g/kappa)) < math.Abs(math.Log(grid[best]/kappa)) {
-				best = i
-			}
-		}
-		return best
-	}
-	if v != nil {
-		if best := v.best(len(grid), func(k int) func(int) (float64, bool) { return at(k, ridge) }); best >= 0 {
-			add("ridge", fmt.Sprintf("parameter %.3g, by the folds", grid[best]), grid[best], ridgeSlopes(d, along, grid[best]), parameters(grid[best]), at(best, ridge))
-		}
-	}
-	n := float64(m.Rows)
-	gcv, least := -1, math.Inf(1)
-	for i, kappa := range grid {
-		squares := pr.Outside
-		for a, u := range along {
-			rest := kappa / (d.Values[a] + kappa) * u
-			squares += rest * rest
-		}
-		if left := n - float64(m.constants) - parameters(kappa); left > 0 && squares/(left*left) < least {
-			gcv, least = i, squares/(left*left)
-		}
-	}
-	if gcv >= 0 {
-		add("ridge", fmt.Sprintf("parameter %.3g, by generalised cross-validation", grid[gcv]), grid[gcv], ridgeSlopes(d, along, grid[gcv]), parameters(grid[gcv]), at(gcv, ridge))
-	}
-	if kappa := hoerlKennardBaldwin(d, pr, m.Rows-m.constants); kappa > 0 && !math.IsInf(kappa, 0) {
-		// Judged at the nearest parameter of the grid.
-		add("ridge", fmt.Sprintf("parameter %.3g, by Hoerl, Kennard and Baldwin", kappa), kappa, ridgeSlopes(d, along, kappa), parameters(kappa), at(nearest(kappa), ridge))
-	}
-}
-
-// hoerlKennardBaldwin is κ = p·s²/b'b with s and b of least squares and b on predictors of
-// unit length, in units of the roots of the matrix; NaN where least squares has no answer.
-func hoerlKennardBaldwin(d *pca.Decomposition, pr pca.Projection, rows int) float64 {
-	free := rows - d.Width() // rows: without what the intercept takes
-	if d.Rank < d.Width() || free <= 0 {
-		return math.NaN()
-	}
-	squares := 0.0
-	for a, u := range pr.Along[:d.Rank] {
-		squares += u * u / d.Values[a]
-	}
-	return float64(d.Width()) * pr.Outside / float64(free) / squares
 }

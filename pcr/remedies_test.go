@@ -5,6 +5,8 @@ import (
 	"math/rand/v2"
 	"testing"
 
+	"gonum.org/v1/gonum/mat"
+
 	"axisfold/pca"
 	"axisfold/testdata/published"
 )
@@ -112,14 +114,58 @@ func TestRemediesBruteForce(t *testing.T) {
 			}
 			return sum
 		}
-		for i, kappa := range ridgeGrid(d) {
-			// (l+κ)b = T'y/(n-1), the normal equations in the coordinates of the components.
+		// (l+κ)b = T'y/(n-1), the normal equations in the coordinates of the components.
+		ridge := func(kappa float64) []float64 {
 			slopes := make([]float64, p)
 			for a := range slopes {
 				slopes[a] = d.Length(a) * pr[0].Along[a] / float64(train.Count()-1) / (d.Values[a] + kappa)
 			}
-			if want := overRows(slopes); math.Abs(got[0].ridge[i]-want) > 1e-9*want {
+			return slopes
+		}
+		for i, kappa := range ridgeGrid(d) {
+			if want := overRows(ridge(kappa)); math.Abs(got[0].ridge[i]-want) > 1e-9*want {
 				t.Errorf("fold %d ridge %g: %.10g, over rows %.10g", f, kappa, got[0].ridge[i], want)
+			}
+		}
+		// What formulas choose is chosen from the training rows, here by solving for
+		// unit-length predictors and by the trace of the hat matrix.
+		z, v := mat.NewDense(len(rest)/w, p, nil), mat.NewVecDense(len(rest)/w, nil)
+		for i := range len(rest) / w {
+			for j := range p {
+				z.Set(i, j, (rest[i*w+j]-train.Mean(j))/train.Deviation(j)/math.Sqrt(float64(train.Count()-1)))
+			}
+			v.SetVec(i, rest[i*w+p]-train.Mean(p))
+		}
+		fit := func(kappa float64) (slopes mat.VecDense, squares, trace float64) {
+			var m, hat mat.Dense
+			m.Mul(z.T(), z)
+			for j := range p {
+				m.Set(j, j, m.At(j, j)+kappa)
+			}
+			if err := hat.Solve(&m, z.T()); err != nil {
+				t.Fatal(err)
+			}
+			slopes.MulVec(&hat, v)
+			var off mat.VecDense
+			off.MulVec(z, &slopes)
+			off.SubVec(v, &off)
+			var whole mat.Dense
+			whole.Mul(z, &hat)
+			return slopes, mat.Dot(&off, &off), mat.Trace(&whole)
+		}
+		n := float64(train.Count())
+		generalised, least := 0.0, math.Inf(1)
+		for _, kappa := range ridgeGrid(d) {
+			_, squares, trace := fit(kappa)
+			if g := squares / (n - 1 - trace) / (n - 1 - trace); g < least {
+				generalised, least = kappa, g
+			}
+		}
+		ordinary, squares, _ := fit(0)
+		hkb := float64(p) * squares / (n - 1 - float64(p)) / mat.Dot(&ordinary, &ordinary)
+		for i, kappa := range []float64{generalised, hkb} {
+			if want := overRows(ridge(kappa)); math.Abs(got[0].formulas[i]-want) > 1e-9*want {
+				t.Errorf("fold %d ridge %s: %.10g, over rows %.10g", f, ridgeFormulas[i].name, got[0].formulas[i], want)
 			}
 		}
 		for k, slopes := range plsSlopes(d, pr[0].Along, p) {

@@ -31,6 +31,7 @@ var Tables = []TableFile{
 	{"validation.csv", hasRegression, fillValidation},
 	{"remedies.csv", hasRegression, fillRemedies},
 	{"collinearity.csv", hasCollinearity, fillCollinearity},
+	{"dependencies.csv", hasDependencies, fillDependencies},
 }
 
 func always(*Study) bool          { return true }
