@@ -72,7 +72,7 @@ func Choose(s *pca.Summary, folds []*pca.Summary, o Options) (*Result, error) {
 	r.Criteria = q.all(chosen)
 	r.Channels = q.rebuild(s, r.Kept)
 	q.judge(s, folds, r)
-	r.Curve = q.curve()
+	r.Curve = q.curve(chosen)
 	r.Comparisons = q.compare(len(r.Kept))
 	r.Clusters = clusters(s.Correlations(), q.p)
 	q.doubts(r)

@@ -12,16 +12,20 @@ type CurvePoint struct {
 const curveSwapsUpTo = 100
 
 // curve follows one greedy pass from the protected channels to all, each point improved by
-// exchanges on its own up to 100 channels. Where groups are kept whole it has no point at
+// exchanges on its own up to 100 channels. It goes through the chosen set and on from
+// there, so that it shows what was chosen. Where groups are kept whole it has no point at
 // the numbers the pass steps over.
-func (q *problem) curve() []CurvePoint {
+func (q *problem) curve(chosen *swept) []CurvePoint {
 	s := q.start()
 	var out []CurvePoint
-	step := false
+	step, through := false, false
 	for {
+		if !through && s.count >= chosen.count {
+			s, through = chosen.clone(), true
+		}
 		if s.count > 0 {
 			t := s
-			if q.p <= curveSwapsUpTo && q.goal.quick() && s.count < q.p {
+			if s.count != chosen.count && q.p <= curveSwapsUpTo && q.goal.quick() && s.count < q.p {
 				t = q.exchange(s.clone(), q.goal, false)
 			}
 			worst, mean := q.worstAndMean(t)

@@ -184,6 +184,13 @@ func TestCurve(t *testing.T) {
 			t.Errorf("point %+v", c)
 		}
 	}
+	// Also where the greedy pass that the curve follows would not have found the set.
+	for _, o := range []Options{{Size: 5, Criterion: "rm"}, {Rebuild: .6}, {Rebuild: .6, ExactUpTo: 1}, {Size: 4, Criterion: "mccabe-canonical"}} {
+		r := mustChoose(t, s, nil, o)
+		point := r.Curve[len(r.Kept)-1]
+		near(t, "worst R2 of the curve", point.WorstR2, r.Criteria["worst-r2"], 1e-12)
+		near(t, "mean R2 of the curve", point.MeanR2, r.Criteria["mean-r2"], 1e-12)
+	}
 	for name, v := range r.Criteria {
 		if math.IsNaN(v) || math.IsInf(v, 0) {
 			t.Errorf("%s is %g", name, v)
