@@ -47,13 +47,16 @@ type Block struct {
 	groups []span
 	lines  []int32 // physical line of each row, from the block's first; of a held table, its row
 	held   *Held   // the rows come from there
+	pieces pieces  // the text or the cells come from there
 	file   string
-	names  []Column
-	line   int // physical line of the block's first, from 1; known in merge
-	newBy  int // physical lines in the block
-	blank  int // rows without any value that were passed over
-	err    error
-	failed bool // err comes from reading, there is no text
+	// counted is what a line is called where it is not a line of text.
+	counted string
+	names   []Column
+	line    int // physical line of the block's first, from 1; known in merge
+	newBy   int // physical lines in the block
+	blank   int // rows without any value that were passed over
+	err     error
+	failed  bool // err comes from reading, there is no text
 
 	layout   *layout
 	skipHead int // rows of header and units at the start of the text
@@ -103,18 +106,18 @@ func (b *Block) Keep(rows []int32) {
 // error that wraps it would hold the wrong line.
 func (b *Block) Problem(i, j int, problem, hint string) error {
 	e := &Error{Kind: BadContent, File: b.file, Line: int(b.lines[i]), Column: b.names[j].Position,
-		Name: b.names[j].Name, Problem: problem, Hint: hint}
+		Name: b.names[j].Name, Problem: problem, Hint: hint, counted: b.counted}
 	if b.held != nil {
-		e.File, e.Line = b.held.place(int(b.lines[i]))
+		e.File, e.Line, e.counted = b.held.place(int(b.lines[i]))
 		e.absolute = true
 	}
 	return e
 }
 
-// place is the file and the line of row i; right in merge.
-func (b *Block) place(i int) (file string, line int) {
+// place is the file and the line of row i, and what a line is called; right in merge.
+func (b *Block) place(i int) (file string, line int, counted string) {
 	if b.held != nil {
 		return b.held.place(int(b.lines[i]))
 	}
-	return b.file, b.line - 1 + int(b.lines[i])
+	return b.file, b.line - 1 + int(b.lines[i]), b.counted
 }

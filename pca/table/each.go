@@ -26,12 +26,12 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 	p := &parser{columns: t.columns, time: t.options.Time != "", group: t.options.Groups != ""}
 	row, blank := int64(0), int64(0)
 	line, file := 1, ""
-	err := inOrder(ctx, threads, t.pieceReader(), func(worker int, b *Block) error {
+	err := inOrder(ctx, threads, t.pieceReader(ctx), func(worker int, b *Block) error {
 		// A file that grows meanwhile is found out at the end of the pass.
 		if counted && b.Index < len(t.starts) {
 			b.Row = t.starts[b.Index]
 		}
-		if err := p.parse(b, b.layout); err != nil {
+		if err := b.pieces.parse(p, b); err != nil {
 			return err
 		}
 		return work(worker, b)
@@ -59,7 +59,7 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 		}
 	}
 	if row == 0 {
-		return &Error{Kind: BadContent, File: t.files[0], Problem: "has a header but no rows"}
+		return &Error{Kind: BadContent, File: t.parts[0].head().file, Problem: "has a header but no rows"}
 	}
 	if starts == nil {
 		starts = []int64{}
@@ -79,12 +79,11 @@ func (b *Block) placed(err error) error {
 	return err
 }
 
-// pieceReader returns a function that fills blocks with text, one after another; it
-// returns io.EOF at the end.
-func (t *Table) pieceReader() func(b *Block) error {
-	next := 0 // file
-	var current *stream
-	var pieces *chunker
+// pieceReader returns a function that fills blocks with pieces of the parts, one after
+// another; it returns io.EOF at the end.
+func (t *Table) pieceReader(ctx context.Context) func(b *Block) error {
+	next := 0 // part
+	var current pieces
 	index := 0
 	closeCurrent := func() error {
 		if current == nil {
@@ -100,54 +99,35 @@ func (t *Table) pieceReader() func(b *Block) error {
 				return closeCurrent()
 			}
 			if current == nil {
-				if next == len(t.files) {
+				if next == len(t.parts) {
 					return io.EOF
 				}
-				file := t.files[next]
+				part := t.parts[next]
 				next++
-				s, err := openText(t.open, file)
+				started, err := part.start(ctx)
 				if err != nil {
 					return err
 				}
-				current = s
-				pieces = &chunker{r: s, file: file, dialect: t.layouts[next-1].dialect, size: t.heads[next-1] + t.pieces}
+				current = started
 			}
-			fresh := pieces.lines == 0
-			if !fresh {
-				pieces.size = t.pieces
-			}
-			text, err := pieces.next(b.text)
-			if err != nil {
-				return err
-			}
-			if text == nil {
+			err := current.next(b)
+			if err == io.EOF {
 				if err := closeCurrent(); err != nil {
-					return readError(t.files[next-1], err)
+					return err
 				}
 				continue
 			}
-			b.text, b.file, b.layout, b.names = text, t.files[next-1], t.layouts[next-1], t.columns
+			if err != nil {
+				return err
+			}
+			h := t.parts[next-1].head()
+			b.pieces, b.file, b.counted = current, h.file, h.counted
+			b.layout, b.names = t.layouts[next-1], t.columns
 			b.Index = index
 			index++
-			b.skipHead = 0
-			if fresh {
-				b.skipHead = t.headRows()
-			}
 			return nil
 		}
 	}
-}
-
-// headRows is how many rows stand before the data.
-func (t *Table) headRows() int {
-	n := 1
-	if t.options.NoHeader {
-		n = 0
-	}
-	if t.options.UnitsRow {
-		n++
-	}
-	return n
 }
 
 // inOrder runs a reader, parallel workers and an ordered merge. The first error in block

@@ -22,18 +22,22 @@ const (
 type Error struct {
 	Kind    Kind
 	File    string
-	Line    int // physical line from 1; 0 when the whole file is meant
+	Line    int // physical line or row from 1; 0 when the whole file is meant
 	Column  int // from 1; 0 when the whole line is meant
 	Name    string
 	Problem string
 	Hint    string
 
-	absolute bool // Line counts from the start of the file
+	absolute bool   // Line counts from the start of the file
+	counted  string // what Line counts; empty: lines of text
 }
 
 func (e *Error) Error() string {
 	text := e.File
-	if e.Line > 0 {
+	switch {
+	case e.Line > 0 && e.counted != "":
+		text += ": " + e.counted + " " + strconv.Itoa(e.Line)
+	case e.Line > 0:
 		text += ":" + strconv.Itoa(e.Line)
 	}
 	if text != "" {

@@ -84,7 +84,7 @@ func TestFailingReads(t *testing.T) {
 				return &failing{bytes.NewReader(content), &left, size}, nil
 			}
 			rows := int64(0)
-			tab, err := openWith(Options{Files: []string{path}}, open, 512)
+			tab, err := openWith(t.Context(), Options{Files: []string{path}}, open, 512)
 			if err == nil {
 				err = tab.Each(t.Context(), 3, func(int, *Block) error { return nil }, func(b *Block) error {
 					rows += int64(b.Rows)
@@ -149,7 +149,7 @@ func TestEarliestError(t *testing.T) {
 	path := writeFile(t, "x.csv", strings.Join(lines, "\n"))
 	for threads := 1; threads <= 8; threads++ {
 		for range 10 {
-			tab, err := openWith(Options{Files: []string{path}}, openFile, 300)
+			tab, err := openWith(t.Context(), Options{Files: []string{path}}, openFile, 300)
 			if err != nil {
 				t.Fatal(err)
 			}
@@ -172,7 +172,7 @@ func TestThreads(t *testing.T) {
 	path := writeFile(t, "x.csv", someRows(5000))
 	var want []string
 	for threads := 1; threads <= 8; threads++ {
-		tab, err := openWith(Options{Files: []string{path}, Time: "a"}, openFile, 777)
+		tab, err := openWith(t.Context(), Options{Files: []string{path}, Time: "a"}, openFile, 777)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -235,7 +235,7 @@ func TestPassEnds(t *testing.T) {
 	}
 	for _, c := range cases {
 		for _, threads := range []int{1, 4} {
-			tab, err := openWith(Options{Files: []string{path}}, openFile, 500)
+			tab, err := openWith(t.Context(), Options{Files: []string{path}}, openFile, 500)
 			if err != nil {
 				t.Fatal(err)
 			}
@@ -249,7 +249,7 @@ func TestPassEnds(t *testing.T) {
 		}
 	}
 	for _, inWork := range []bool{true, false} {
-		tab, err := openWith(Options{Files: []string{path}}, openFile, 500)
+		tab, err := openWith(t.Context(), Options{Files: []string{path}}, openFile, 500)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -315,7 +315,7 @@ func TestChanged(t *testing.T) {
 		"gone":    os.Remove,
 	} {
 		path := writeFile(t, "x.csv", someRows(2000))
-		tab, err := openWith(Options{Files: []string{path}}, openFile, 500)
+		tab, err := openWith(t.Context(), Options{Files: []string{path}}, openFile, 500)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -336,7 +336,7 @@ func TestChanged(t *testing.T) {
 // A file that grows while a later pass reads it is an error too.
 func TestGrowing(t *testing.T) {
 	path := writeFile(t, "x.csv", someRows(2000))
-	tab, err := openWith(Options{Files: []string{path}}, openFile, 500)
+	tab, err := openWith(t.Context(), Options{Files: []string{path}}, openFile, 500)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -358,7 +358,7 @@ func TestGrowing(t *testing.T) {
 // A held table gives back what was put in, in blocks that no thread count moves.
 func TestHeld(t *testing.T) {
 	path := writeFile(t, "x.csv", someRows(5000))
-	tab, err := openWith(Options{Files: []string{path}, Time: "a", Groups: "c"}, openFile, 700)
+	tab, err := openWith(t.Context(), Options{Files: []string{path}, Time: "a", Groups: "c"}, openFile, 700)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -510,7 +510,7 @@ func TestLongRow(t *testing.T) {
 		return io.NopCloser(io.MultiReader(strings.NewReader(someRows(2000)+"\"open"), repeat("1,2,3\n"))), nil
 	}
 	path := writeFile(t, "x.csv", someRows(1))
-	tab, err := openWith(Options{Files: []string{path}}, endless, chunkBytes)
+	tab, err := openWith(t.Context(), Options{Files: []string{path}}, endless, chunkBytes)
 	if err != nil {
 		t.Fatal(err)
 	}

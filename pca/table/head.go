@@ -4,7 +4,6 @@ import (
 	"bytes"
 	"fmt"
 	"io"
-	"path/filepath"
 	"strconv"
 	"strings"
 )
@@ -17,7 +16,8 @@ const (
 
 // head is what the beginning of a file tells.
 type head struct {
-	file    string
+	file    string // what errors call it
+	counted string // what a line is called; empty: a line of text
 	dialect *dialect
 	names   []string
 	unnamed []bool
@@ -26,55 +26,8 @@ type head struct {
 	bytes   int // of mark, header and units
 }
 
-// format is a family of text tables. Others that are not text (columnar files,
-// databases) will need a wider interface; text formats differ in their separator.
-type format struct {
-	name       string
-	extensions []string
-	separator  byte // 0: looked up in the header
-}
-
-// formats lists what can be read, the default first.
-var formats = []format{
-	{"csv", []string{".csv", ".txt", ".dat"}, 0},
-	{"tsv", []string{".tsv", ".tab"}, '\t'},
-}
-
-// Formats returns the names of the formats.
-func Formats() []string {
-	var names []string
-	for _, f := range formats {
-		names = append(names, f.name)
-	}
-	return names
-}
-
-// formatOf finds the format by name or by the file's extension under .gz and .zst.
-func formatOf(name, file string) (format, error) {
-	base := strings.ToLower(filepath.Base(file))
-	base = strings.TrimSuffix(strings.TrimSuffix(base, ".gz"), ".zst")
-	for _, f := range formats {
-		if f.name == name {
-			return f, nil
-		}
-		for _, e := range f.extensions {
-			if name == "" && filepath.Ext(base) == e {
-				return f, nil
-			}
-		}
-	}
-	if name == "" {
-		return formats[0], nil
-	}
-	return format{}, &Error{Kind: WrongInput, Problem: fmt.Sprintf("unknown format %q; known: %s", name, strings.Join(Formats(), ", "))}
-}
-
 // readHead looks at the beginning of a file.
-func readHead(o *Options, open opener, file string) (*head, error) {
-	f, err := formatOf(o.Format, file)
-	if err != nil {
-		return nil, err
-	}
+func readHead(o *Options, open opener, file string, separator byte) (*head, error) {
 	s, err := openText(open, file)
 	if err != nil {
 		return nil, err
@@ -106,7 +59,7 @@ func readHead(o *Options, open opener, file string) (*head, error) {
 		return nil, &Error{Kind: BadContent, File: file, Line: 1 + bytes.Count(text[:i], []byte{'\n'}),
 			Problem: "holds a NUL byte, so it is not text", Hint: "was it cut off, or is it in another format?"}
 	}
-	h := &head{file: file, dialect: newDialect(o, separatorOf(o, f, text))}
+	h := &head{file: file, dialect: newDialect(o, separatorOf(o, separator, text))}
 	text = text[:bytes.LastIndexByte(text, '\n')+1]
 	if len(text) == 0 {
 		return nil, &Error{Kind: BadContent, File: file, Line: 1, Problem: "goes on for 64 MiB without a line end", Hint: "this is not a table"}
@@ -118,12 +71,12 @@ func readHead(o *Options, open opener, file string) (*head, error) {
 
 // separatorOf is the separator asked for, that of the format, or the candidate that the
 // first line holds most often outside quotes.
-func separatorOf(o *Options, f format, text []byte) byte {
+func separatorOf(o *Options, ofFormat byte, text []byte) byte {
 	if o.Separator != "" {
 		return o.Separator[0]
 	}
-	if f.separator != 0 {
-		return f.separator
+	if ofFormat != 0 {
+		return ofFormat
 	}
 	best, most := byte(','), 0
 	for _, candidate := range []byte(",;\t|") {

@@ -23,8 +23,9 @@ type Held struct {
 
 // heldFile says from which row on the rows come from a file.
 type heldFile struct {
-	name string
-	from int
+	name    string
+	from    int
+	counted string
 }
 
 // texts keeps many short texts in one piece of memory.
@@ -55,9 +56,9 @@ func (h *Held) Append(b *Block) {
 		panic("table: block and held table differ in width")
 	}
 	for i := range b.Rows {
-		file, line := b.place(i)
+		file, line, counted := b.place(i)
 		if n := len(h.files); n == 0 || h.files[n-1].name != file {
-			h.files = append(h.files, heldFile{file, h.Len() + i})
+			h.files = append(h.files, heldFile{file, h.Len() + i, counted})
 		}
 		h.lines = append(h.lines, line)
 	}
@@ -153,12 +154,12 @@ func (h *Held) fill(b *Block, from, to int) {
 	}
 }
 
-// place is the file and the line from which row i came.
-func (h *Held) place(i int) (file string, line int) {
+// place is the file and the line from which row i came, and what a line is called there.
+func (h *Held) place(i int) (file string, line int, counted string) {
 	for _, f := range h.files {
 		if f.from <= i {
-			file = f.name
+			file, counted = f.name, f.counted
 		}
 	}
-	return file, h.lines[i]
+	return file, h.lines[i], counted
 }

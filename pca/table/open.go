@@ -82,8 +82,8 @@ func (s *stream) Close() error {
 
 // openText opens a file and undoes its compression, which the first bytes tell.
 func openText(open opener, path string) (*stream, error) {
-	if info, err := os.Stat(path); err == nil && info.IsDir() {
-		return nil, &Error{Kind: WrongInput, File: path, Problem: "is a folder", Hint: "name the files in it, for example with *.csv"}
+	if err := notFolder(path); err != nil {
+		return nil, err
 	}
 	file, err := open(path)
 	if err != nil {
@@ -120,6 +120,13 @@ func openText(open opener, path string) (*stream, error) {
 		s.Reader = buffered
 	}
 	return s, nil
+}
+
+func notFolder(path string) error {
+	if info, err := os.Stat(path); err == nil && info.IsDir() {
+		return &Error{Kind: WrongInput, File: path, Problem: "is a folder", Hint: "name the files in it, for example with *.csv"}
+	}
+	return nil
 }
 
 // skippableFrame tells the other way for zstd data to start (RFC 8878, 3.1.2).

@@ -178,7 +178,7 @@ func TestOracle(t *testing.T) {
 // checkLines lets work find fault with one row and compares the line of the error.
 func checkLines(t *testing.T, o Options, pieces int, lines []int, text string) {
 	t.Helper()
-	tab, err := openWith(o, openFile, pieces)
+	tab, err := openWith(t.Context(), o, openFile, pieces)
 	if err != nil {
 		t.Fatal(err)
 	}

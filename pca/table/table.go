@@ -13,7 +13,7 @@ import (
 type Options struct {
 	Dir   string   // relative paths and globs in Files are relative to it
 	Files []string // paths or globs; several files are one table
-	// Format is the name of a format; empty takes it from the file name.
+	// Format is the name of a format; empty takes it from the file's first bytes and name.
 	Format       string
 	Separator    string // one byte; empty looks at the header
 	DecimalComma bool
@@ -30,20 +30,20 @@ type Table struct {
 	options Options
 	files   []string
 	before  []fingerprint
-	heads   []int // bytes before the rows of each file
+	parts   []part
 	layouts []*layout
 	columns []Column
 	notes   []Note
 	blank   int64
 	starts  []int64 // first data row of every block, once counted
-	open    opener
-	pieces  int // size of a piece of text
 }
 
 // Open finds the files, reads the head of each and decides what every column is.
-func Open(_ context.Context, o Options) (*Table, error) { return openWith(o, openFile, chunkBytes) }
+func Open(ctx context.Context, o Options) (*Table, error) {
+	return openWith(ctx, o, openFile, chunkBytes)
+}
 
-func openWith(o Options, open opener, pieces int) (*Table, error) {
+func openWith(ctx context.Context, o Options, open opener, pieces int) (*Table, error) {
 	if err := checkSeparator(&o); err != nil {
 		return nil, err
 	}
@@ -51,28 +51,36 @@ func openWith(o Options, open opener, pieces int) (*Table, error) {
 	if err != nil {
 		return nil, err
 	}
-	t := &Table{options: o, files: files, open: open, pieces: pieces}
-	for i, file := range files {
+	t := &Table{options: o, files: files}
+	s := &setting{options: &t.options, open: open, pieces: pieces}
+	for _, file := range files {
 		print, err := fingerprintOf(file)
 		if err != nil {
 			return nil, err
 		}
 		t.before = append(t.before, print)
-		h, err := readHead(&o, open, file)
+		f, err := formatOf(s, file)
 		if err != nil {
 			return nil, err
 		}
-		t.heads = append(t.heads, h.bytes)
-		if i == 0 {
-			err = t.assign(h)
-		} else {
-			err = t.align(h)
-		}
+		p, err := f.open(ctx, s, file)
 		if err != nil {
+			return nil, err
+		}
+		if err := t.add(p); err != nil {
 			return nil, err
 		}
 	}
 	return t, nil
+}
+
+// add takes a part into the table: the first says what the columns are.
+func (t *Table) add(p part) error {
+	t.parts = append(t.parts, p)
+	if len(t.parts) == 1 {
+		return t.assign(p.head())
+	}
+	return t.align(p.head())
 }
 
 // checkSeparator refuses separators that could be part of a number or of the quoting.
@@ -171,13 +179,13 @@ func (t *Table) align(h *head) error {
 		at := slices.Index(first.names, n)
 		if at < 0 {
 			return &Error{Kind: BadContent, File: h.file, Column: j + 1, Name: n,
-				Problem: fmt.Sprintf("is not a column of %s", filepath.Base(t.files[0])), Hint: "files of one table have the same columns"}
+				Problem: fmt.Sprintf("is not a column of %s", filepath.Base(t.parts[0].head().file)), Hint: "files of one table have the same columns"}
 		}
 		l.uses[j], l.to[j] = first.uses[at], first.to[at]
 	}
 	for _, n := range first.names {
 		if !slices.Contains(h.names, n) {
-			return &Error{Kind: BadContent, File: h.file, Problem: fmt.Sprintf("has no column %q, which %s has", n, filepath.Base(t.files[0])),
+			return &Error{Kind: BadContent, File: h.file, Problem: fmt.Sprintf("has no column %q, which %s has", n, filepath.Base(t.parts[0].head().file)),
 				Hint: "files of one table have the same columns"}
 		}
 	}

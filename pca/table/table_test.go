@@ -42,7 +42,7 @@ func collect(o Options, pieces, threads int) (*collected, error) {
 	if o.Missing == nil {
 		o.Missing = defaultMissing
 	}
-	t, err := openWith(o, openFile, pieces)
+	t, err := openWith(context.Background(), o, openFile, pieces)
 	if err != nil {
 		return nil, err
 	}

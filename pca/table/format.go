@@ -1,0 +1,112 @@
+package table
+
+import (
+	"bytes"
+	"context"
+	"fmt"
+	"io"
+	"path/filepath"
+	"strings"
+)
+
+// format is a family of tables. A new one is a file with its open function and one line
+// in formats.
+type format struct {
+	name       string
+	extensions []string
+	// magic is how every file of the format begins; nil where anything may stand there.
+	magic []byte
+	open  func(ctx context.Context, s *setting, file string) (part, error)
+}
+
+// formats lists what can be read, the default first.
+var formats = []format{
+	{"csv", []string{".csv", ".txt", ".dat"}, nil, openDelimited(0)},
+	{"tsv", []string{".tsv", ".tab"}, nil, openDelimited('\t')},
+}
+
+// setting is what formats are told.
+type setting struct {
+	options *Options
+	open    opener
+	pieces  int // size of a piece of text
+}
+
+// part is one file of a table, or what stands for one, opened by its format. A format
+// gives names, units and samples of the columns, and the rows in pieces; what columns
+// are used for, missing codes and gaps are the same for all.
+type part interface {
+	head() *head
+	// start begins a pass over the rows.
+	start(ctx context.Context) (pieces, error)
+}
+
+// pieces is a pass over the rows of a part.
+type pieces interface {
+	// next fills b with the next piece, as raw as it comes: it is called by one goroutine,
+	// and where a piece ends must depend on the table alone. io.EOF ends the pass.
+	next(b *Block) error
+	// parse makes rows of a piece, on many goroutines.
+	parse(p *parser, b *Block) error
+	Close() error
+}
+
+// Formats returns the names of the formats.
+func Formats() []string {
+	var names []string
+	for _, f := range formats {
+		names = append(names, f.name)
+	}
+	return names
+}
+
+// formatOf finds the format: the one asked for, or what the first bytes of the file say,
+// or its extension under .gz and .zst.
+func formatOf(s *setting, file string) (*format, error) {
+	name := s.options.Format
+	for i := range formats {
+		if name != "" && formats[i].name == name {
+			return &formats[i], nil
+		}
+	}
+	if name != "" {
+		return nil, &Error{Kind: WrongInput, Problem: fmt.Sprintf("unknown format %q; known: %s", name, strings.Join(Formats(), ", "))}
+	}
+	first, err := firstBytes(s.open, file)
+	if err != nil {
+		return nil, err
+	}
+	for i := range formats {
+		if m := formats[i].magic; m != nil && bytes.HasPrefix(first, m) {
+			return &formats[i], nil
+		}
+	}
+	base := strings.ToLower(filepath.Base(file))
+	base = strings.TrimSuffix(strings.TrimSuffix(base, ".gz"), ".zst")
+	for i := range formats {
+		for _, e := range formats[i].extensions {
+			if filepath.Ext(base) == e {
+				return &formats[i], nil
+			}
+		}
+	}
+	return &formats[0], nil
+}
+
+// firstBytes is how a file begins, as it is stored.
+func firstBytes(open opener, file string) ([]byte, error) {
+	if err := notFolder(file); err != nil {
+		return nil, err
+	}
+	r, err := open(file)
+	if err != nil {
+		return nil, pathError(file, err)
+	}
+	defer r.Close()
+	first := make([]byte, 16)
+	n, err := io.ReadFull(r, first)
+	if err != nil && err != io.EOF && err != io.ErrUnexpectedEOF {
+		return nil, readError(file, err)
+	}
+	return first[:n], nil
+}
