@@ -80,7 +80,7 @@ func TestDefaults(t *testing.T) {
 			Header: true, Gaps: "complete-rows"},
 		Standardize: Standardize{Scaling: "unit-normal", Constant: "error"},
 		Decompose:   Decompose{Matrix: "correlation", Route: "auto"},
-		Retain:      Rule{Rule: "parallel", Reference: "percentile", Percentile: 95, Replicates: 1000},
+		Retain:      Rule{Rule: "parallel", Reference: "percentile", Percentile: 95},
 		Regress: &Regress{Response: []string{"y"}, Intercept: true,
 			Retain: Rule{Rule: "one-standard-error", Folds: 10, Arrangement: "blocks", Order: "variance"}, Confidence: 0.95},
 		Draw:  &Draw{Formats: []string{"svg"}},
@@ -99,7 +99,7 @@ func TestDefaultsOfRules(t *testing.T) {
 		"share":                {AtLeast: 0.9},
 		"eigenvalue-above":     {Value: 1},
 		"broken-stick":         {},
-		"parallel":             {Reference: "percentile", Percentile: 95, Replicates: 1000},
+		"parallel":             {Reference: "percentile", Percentile: 95},
 	} {
 		f := load(t, start+"retain: {rule: "+text+"}\n")
 		want.Rule = f.Retain.Rule
@@ -112,7 +112,7 @@ func TestDefaultsOfRules(t *testing.T) {
 		"share":                {AtLeast: 0.9},
 		"eigenvalue-above":     {Value: 1},
 		"broken-stick":         {},
-		"parallel":             {Reference: "percentile", Percentile: 95, Replicates: 1000},
+		"parallel":             {Reference: "percentile", Percentile: 95},
 		"cross-validation":     {},
 		"one-standard-error":   {},
 	} {
@@ -215,7 +215,7 @@ standardize:
 decompose:
   matrix: correlation
   route: auto
-retain: {rule: parallel, reference: percentile, percentile: 95, replicates: 1000}
+retain: {rule: parallel, reference: percentile, percentile: 95, replicates: auto}
 regress:
   response: ["y"]
   predictors: []

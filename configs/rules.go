@@ -37,7 +37,7 @@ var rules = []listed{
 	{either, RuleDescription{"parallel", "eigenvalues above those of independent channels of the same shape", []Key{
 		{Name: "reference", Kind: Word, Allowed: []string{"percentile", "mean"}, Default: "percentile", Doc: "what of the replicates an eigenvalue must exceed"},
 		{Name: "percentile", Kind: Number, Range: below(100), Default: 95.0, Doc: "with reference: percentile"},
-		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Default: 1000, Doc: "tables of independent channels to draw"}}}},
+		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Blank: "auto", Doc: "tables of independent channels to draw; auto takes 1000, on large tables fewer, whose roots vary less"}}}},
 	{either, RuleDescription{"minimum-average-partial", "the number after which channels are least correlated with one another", []Key{
 		{Name: "power", Kind: Whole, Range: from(2, 4), Default: 4, Doc: "of the partial correlations; 2 is the first form, 4 the revised one"}}}},
 	{either, RuleDescription{"equal-roots", "up to where the remaining eigenvalues may be equal", []Key{alpha}}},
@@ -48,7 +48,7 @@ var rules = []listed{
 	{first, RuleDescription{"bic", "the Bayesian information criterion of components plus equal noise", nil}},
 	{either, RuleDescription{"parallel-shifts", "eigenvalues above those of the channels shifted in time against one another", []Key{
 		{Name: "percentile", Kind: Number, Range: below(100), Default: 95.0, Doc: "of the replicates"},
-		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Default: 1000, Doc: "shifted tables to make"}}}},
+		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Blank: "auto", Doc: "shifted tables to make; auto takes 1000, on large tables fewer"}}}},
 	{either, RuleDescription{"bi-cross-validation", "the number that best predicts hidden blocks of rows and channels", nil}},
 	{either, RuleDescription{"knee", "eigenvalues before the sharpest bend, a heuristic", nil}},
 	{either, RuleDescription{"agreement", "the number that most rules with a model of noise name", nil}},

@@ -43,7 +43,7 @@ decompose.route auto (default)
 retain.rule parallel (default)
 retain.reference percentile (default)
 retain.percentile 90
-retain.replicates 1000 (default)
+retain.replicates auto (default)
 regress.response [head]
 regress.predictors [] (default)
 regress.intercept true (default)

@@ -27,7 +27,10 @@ func applyParallel(e *Evidence, s Settings) Verdict {
 	if s.Reference != "mean" {
 		v.Setting = fmt.Sprintf("percentile %g", s.Percentile)
 	}
-	if s.Replicates != Defaults().Replicates {
+	if s.Replicates == 0 {
+		s.Replicates = usualReplicates(e)
+	}
+	if s.Replicates != mostReplicates {
 		v.Setting += fmt.Sprintf(", %d replicates", s.Replicates)
 	}
 	if e.Width() == 1 {
@@ -63,6 +66,23 @@ func applyParallel(e *Evidence, s Settings) Verdict {
 		v.Note = "every root is above its reference"
 	}
 	return v
+}
+
+// The number of replicates where none is asked for: as many as some half a minute of one
+// core can make, within limits. Large tables can do with few, because the roots of large
+// tables of independent channels hardly vary (Tracy & Widom 1996: like p^-2/3).
+const (
+	mostReplicates  = 1000
+	leastReplicates = 100
+	replicateWork   = 1e12 // operations
+)
+
+// usualReplicates counts, for one replicate, a hundred operations a random number, the
+// cross-products of the longer side and the roots of the shorter.
+func usualReplicates(e *Evidence) int {
+	p, free := float64(e.Width()), float64(e.Rows-1)
+	side := min(p, free)
+	return int(max(leastReplicates, min(mostReplicates, replicateWork/(p*side*(100+side)+3*side*side*side))))
 }
 
 // closeCall is the distance, in standard errors, within which a decision could turn.

@@ -22,11 +22,15 @@ var parallelShifts = Rule{
 	Summary:  "roots above those of the same channels shifted in time against one another; holds for rows that follow one another",
 	variants: []Settings{with(func(s *Settings) { s.Replicates = 200 })},
 	apply: func(e *Evidence, s Settings) Verdict {
+		n, p := e.Rows, e.Width()
+		work := float64(n) * float64(p) * float64(p)
+		if s.Replicates == 0 {
+			s.Replicates = int(max(leastReplicates, min(mostReplicates, mostShiftWork/work)))
+		}
 		v := Verdict{Setting: fmt.Sprintf("%d shifts", s.Replicates)}
 		if s.Percentile != Defaults().Percentile {
 			v.Setting += fmt.Sprintf(", percentile %g", s.Percentile)
 		}
-		n, p := e.Rows, e.Width()
 		switch {
 		case p == 1:
 			v.Components, v.Note = 1, "one channel is one component"
@@ -36,7 +40,7 @@ var parallelShifts = Rule{
 			return v.abstain("it needs the rows in memory")
 		case n-1 < p:
 			return v.abstain(fmt.Sprintf("%d rows leave %d channels no room to shift", n, p))
-		case float64(n)*float64(p)*float64(p)*float64(s.Replicates) > mostShiftWork:
+		case work*float64(s.Replicates) > mostShiftWork:
 			return v.abstain("the table is too large to shift so often; fewer replicates would do")
 		}
 		roots := shiftedRoots(e, s.Replicates)

@@ -61,7 +61,7 @@ type Settings struct {
 	Value      float64 // eigenvalue-above, as a multiple of the mean root
 	Reference  string  // parallel: "mean" or "percentile"
 	Percentile float64 // parallel
-	Replicates int     // parallel
+	Replicates int     // parallel, parallel-shifts; 0 takes 1000, or fewer on a large table
 	Power      int     // minimum-average-partial: 2 (1976) to 4 (2000)
 	Alpha      float64 // equal-roots, tracy-widom: of each test
 	Noise      float64 // hard-threshold: standard deviation of the noise; 0 estimates it
@@ -69,7 +69,7 @@ type Settings struct {
 
 // Defaults returns the settings a careful analyst would start from.
 func Defaults() Settings {
-	return Settings{Components: 1, AtLeast: 0.9, Value: 1, Reference: "percentile", Percentile: 95, Replicates: 1000, Power: 4, Alpha: 0.05}
+	return Settings{Components: 1, AtLeast: 0.9, Value: 1, Reference: "percentile", Percentile: 95, Power: 4, Alpha: 0.05}
 }
 
 // Step is the evidence of a rule on one component: kept while value beats threshold.
