@@ -15,7 +15,7 @@ var (
 		Summary:  "the number with the largest evidence for components plus equal noise (Minka 2000)",
 		variants: []Settings{Defaults()},
 		apply: func(e *Evidence, _ Settings) Verdict {
-			return largest(e, Verdict{}, "log evidence", logEvidence)
+			return largest(e, Verdict{}, "log evidence", logEvidences)
 		},
 	}
 	bayesianInformation = Rule{
@@ -23,14 +23,14 @@ var (
 		Summary:  "the Bayesian information criterion of components plus equal noise",
 		variants: []Settings{Defaults()},
 		apply: func(e *Evidence, _ Settings) Verdict {
-			return largest(e, Verdict{}, "criterion", bic)
+			return largest(e, Verdict{}, "criterion", criteria)
 		},
 	}
 )
 
 // largest takes the k with the largest score among 1..p-1; k = 0 has no rotation to
-// weigh and is left to other rules.
-func largest(e *Evidence, v Verdict, what string, score func(l []float64, p, k int, n float64) float64) Verdict {
+// weigh and is left to other rules. score returns those of 1 to most components.
+func largest(e *Evidence, v Verdict, what string, score func(l []float64, most int, n float64) []float64) Verdict {
 	p := e.Width()
 	n := float64(e.Rows)
 	if p < 3 {
@@ -45,11 +45,10 @@ func largest(e *Evidence, v Verdict, what string, score func(l []float64, p, k i
 	if most < 1 || e.Rank < min(p, e.Rows-1) || e.Values[len(e.Values)-1] <= 0 {
 		return v.abstain("some roots are zero: there is no noise to measure")
 	}
-	scores := make([]float64, len(e.Values))
-	for k := 1; k <= most; k++ {
-		scores[k-1] = score(roots, p, k, n)
-		if scores[k-1] > best {
-			best, v.Components = scores[k-1], k
+	scores := score(roots, most, n)
+	for i, s := range scores {
+		if s > best {
+			best, v.Components = s, i+1
 		}
 	}
 	if unequalNoise(&v, e) {
@@ -75,33 +74,53 @@ func fitTerms(l []float64, p, k int, n float64) (fit, noise float64) {
 	return fit - n*float64(p-k)/2*math.Log(noise), noise
 }
 
-func logEvidence(l []float64, p, k int, n float64) float64 {
-	fit, noise := fitTerms(l, p, k, n)
-	pk, kk := float64(p), float64(k)
-	m := pk*kk - kk*(kk+1)/2
-	u := -kk * math.Ln2
-	for i := 1; i <= k; i++ {
-		half := (pk - float64(i) + 1) / 2
+// logEvidences are by number of components, from 1. Of the pairs of roots that make ln|A|
+// only those with the noise depend on the number, and they are alike, so that all numbers
+// together cost p² logarithms.
+func logEvidences(l []float64, most int, n float64) []float64 {
+	p := len(l)
+	out := make([]float64, 0, most)
+	u, pairs := 0.0, 0.0
+	for k := 1; k <= most; k++ {
+		fit, noise := fitTerms(l, p, k, n)
+		pk, kk := float64(p), float64(k)
+		m := pk*kk - kk*(kk+1)/2
+		half := (pk - kk + 1) / 2
 		lg, _ := math.Lgamma(half)
-		u += lg - half*math.Log(math.Pi)
-	}
-	// ln|A|: equal roots would give ln 0; a gap of ε·l stands in for them.
-	logA := 0.0
-	for i := range k {
-		for j := i + 1; j < p; j++ {
-			hat := noise
-			if j < k {
-				hat = l[j]
-			}
-			tiny := 0x1p-52 * l[i]
-			logA += math.Log(math.Max(1/hat-1/l[i], tiny/(l[i]*l[i]))) + math.Log(math.Max(l[i]-l[j], tiny)) + math.Log(n)
+		u += lg - half*math.Log(math.Pi) - math.Ln2
+		last := l[k-1]
+		for _, x := range l[k:] {
+			pairs += logGap(last, x)
 		}
+		logA := float64(p-k) * logInverseGap(last, noise)
+		for _, x := range l[:k-1] {
+			pairs += logInverseGap(x, last)
+			logA += float64(p-k) * logInverseGap(x, noise)
+		}
+		logA += pairs + m*math.Log(n)
+		out = append(out, u+fit+(m+kk)/2*math.Log(2*math.Pi)-logA/2-kk/2*math.Log(n))
 	}
-	return u + fit + (m+kk)/2*math.Log(2*math.Pi) - logA/2 - kk/2*math.Log(n)
+	return out
 }
 
-func bic(l []float64, p, k int, n float64) float64 {
-	fit, _ := fitTerms(l, p, k, n)
-	m := float64(p*k) - float64(k*(k+1))/2
-	return fit - (m+float64(k))/2*math.Log(n)
+// Logarithms of the gap between a root and a smaller one, and between their inverses.
+// Equal roots would give ln 0; a gap of ε·l stands in for them.
+func logGap(larger, smaller float64) float64 {
+	return math.Log(math.Max(larger-smaller, 0x1p-52*larger))
+}
+
+func logInverseGap(larger, smaller float64) float64 {
+	return math.Log(math.Max(1/smaller-1/larger, 0x1p-52/larger))
+}
+
+// criteria are the information criteria by number of components, from 1.
+func criteria(l []float64, most int, n float64) []float64 {
+	p := len(l)
+	out := make([]float64, 0, most)
+	for k := 1; k <= most; k++ {
+		fit, _ := fitTerms(l, p, k, n)
+		m := float64(p*k) - float64(k*(k+1))/2
+		out = append(out, fit-(m+float64(k))/2*math.Log(n))
+	}
+	return out
 }
