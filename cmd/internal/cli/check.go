@@ -16,9 +16,10 @@ func newCheck() *cobra.Command {
 	c := &cobra.Command{
 		Use:   "check RUNFILE",
 		Short: "Check a run file against its table without computing, and print every setting",
-		Long: `Check all that can be checked without going through the rows: the run file, the heads
-of the table's files, the roles of the columns, and whether the run folder may be
-written. Prints every setting with its default.
+		Long: `Check all that can be checked without computing: the run file, the heads of the
+table's files, the roles of the columns, whether the run folder may be written, and in
+the first rows what would stop the run or spoil its result. Prints every setting with
+its default.
 ` + exitHelp,
 		Example: `  axisfold check configs/pump-hall.yaml`,
 		Args:    oneArg("a run file"),
@@ -42,10 +43,25 @@ written. Prints every setting with its default.
 }
 
 func writePreview(out io.Writer, runFile string, p *run.Preview, settings []configs.Setting) {
-	fmt.Fprintf(out, "%s is in order.\n\n", runFile)
+	switch len(p.Minds) {
+	case 0:
+		fmt.Fprintf(out, "%s is in order.\n\n", runFile)
+	case 1:
+		fmt.Fprintf(out, "%s is in order, but mind one thing in the rows.\n\n", runFile)
+	default:
+		fmt.Fprintf(out, "%s is in order, but mind %d things in the rows.\n\n", runFile, len(p.Minds))
+	}
+	for _, m := range p.Minds {
+		fmt.Fprintf(out, "mind       %s\n", m)
+	}
 	for _, f := range p.Files {
 		fmt.Fprintf(out, "table      %s\n", shown(f))
 	}
+	looked := "first "
+	if p.Whole {
+		looked = ""
+	}
+	fmt.Fprintf(out, "rows       %s%d, %d of them complete\n", looked, p.Rows, p.Complete)
 	fmt.Fprintf(out, "channels   %d: %s\n", len(p.Channels), listed(p.Channels))
 	if len(p.Responses) > 0 {
 		fmt.Fprintf(out, "responses  %d: %s\n", len(p.Responses), listed(p.Responses))

@@ -9,7 +9,7 @@ import (
 	"axisfold/pca/table"
 )
 
-// Preview is what can be told of a run without going through the rows.
+// Preview is what can be told of a run before it.
 type Preview struct {
 	Files     []string
 	Channels  []string // that would be decomposed
@@ -17,10 +17,15 @@ type Preview struct {
 	Notes     []report.Note
 	Folder    string
 	Replaces  bool // an earlier run's folder stands there
+	// Rows were looked at, all rows where Whole, and Complete of them have no gap in a
+	// channel in use. Minds says what in them would stop the run or spoil its result.
+	Rows, Complete int64
+	Whole          bool
+	Minds          []string
 }
 
 // Look checks all of a run that needs no computing: the run file against the heads of the
-// table's files, and whether the folder may be written.
+// table's files, whether the folder may be written, and the first rows.
 func Look(ctx context.Context, cfg *configs.File, o Options) (*Preview, error) {
 	p := &Preview{Folder: finalFolder(cfg, o)}
 	if err := mayReplace(p.Folder, cfg.Path, o.Replace); err != nil {
@@ -42,6 +47,11 @@ func Look(ctx context.Context, cfg *configs.File, o Options) (*Preview, error) {
 		p.Notes = append(p.Notes, report.Note{Column: n.Column, Text: n.Text})
 	}
 	p.Notes = append(p.Notes, r.notes...)
+	f, err := foresee(ctx, t, r, cfg, o)
+	if err != nil {
+		return nil, err
+	}
+	p.Rows, p.Complete, p.Whole, p.Minds = f.rows, f.complete, f.whole, f.minds
 	return p, nil
 }
 
