@@ -3,6 +3,7 @@ package configs
 import (
 	"fmt"
 	"path"
+	"regexp"
 	"slices"
 )
 
@@ -24,6 +25,7 @@ var checks = []check{
 			l.conflict("read.comment", "", "%q cannot both separate cells and begin a comment", r.Comment)
 		}
 	}},
+	{[]string{"read.files", "read.format", "read.query", "read.connection"}, server},
 	{[]string{"read.groups", "regress.retain.arrangement"}, func(l *loader) {
 		if g := l.file.Regress; g != nil && g.Retain.Arrangement == "groups" && l.file.Read.Groups == "" {
 			l.conflict("regress.retain.arrangement", "", "groups needs the name of their column in read.groups")
@@ -62,6 +64,24 @@ var checks = []check{
 		})
 	}},
 }
+
+// server: a server is asked by a query and reads no file.
+func server(l *loader) {
+	r := l.file.Read
+	switch {
+	case r.Format == "postgres" && len(r.Files) > 0:
+		l.conflict("read.files", "", "format: postgres asks a server and reads no file")
+	case r.Format == "postgres" && r.Query == "":
+		l.conflict("read.format", "", "postgres needs read.query")
+	case r.Format != "postgres" && r.Connection != "":
+		l.conflict("read.connection", "", "only format: postgres connects to a server")
+	case r.Connection != "" && !variableName.MatchString(r.Connection):
+		// Not quoted: it may be the connection string itself, with a password.
+		l.conflict("read.connection", "", "expected the name of an environment variable; the connection string stands in the variable, never in a run file")
+	}
+}
+
+var variableName = regexp.MustCompile(`^[A-Za-z_][A-Za-z0-9_]*$`)
 
 // throughOrigin: without an intercept the model goes through zero, so zero must stay zero.
 func throughOrigin(l *loader) {

@@ -129,6 +129,12 @@ func (l *loader) absent(k *Key, path string, at *yaml.Node, into reflect.Value, 
 		l.value(k, path, at, nil, into)
 	case k.Required:
 		l.fail(at, path, k.Name+": "+k.Doc, "required key %q is missing%s", k.Name, where)
+	case k.needed != nil:
+		l.follow = append(l.follow, func() {
+			if k.needed(l.file) {
+				l.fail(at, path, k.Name+": "+k.Doc, "required key %q is missing%s", k.Name, where)
+			}
+		})
 	case k.follow != nil:
 		l.follow = append(l.follow, func() { assign(into, k.follow(l.file)) })
 	case k.Default != nil:

@@ -19,8 +19,11 @@ var sections = []Key{
 	{Name: "title", Kind: Text, Doc: "stands above summary and report"},
 	{Name: "seed", Kind: Whole, Range: atLeast(0), Default: 1, Doc: "starts every random draw: the same seed gives the same results"},
 	{Name: "read", Kind: Section, Doc: "which table to read and how", Keys: []Key{
-		{Name: "files", Kind: Names, Required: true, Filled: true, Doc: "paths and globs, relative to the run file; several files are one table"},
-		{Name: "format", Kind: Word, Allowed: []string{"csv", "tsv"}, Blank: "auto", Doc: "of the files; auto takes it from the extension"},
+		{Name: "files", Kind: Names, needed: readsFiles, Filled: true, Doc: "paths and globs, relative to the run file; several files are one table"},
+		{Name: "format", Kind: Word, Allowed: []string{"csv", "tsv", "parquet", "xlsx", "sqlite", "postgres"}, Blank: "auto", Doc: "of the files; auto takes it from their first bytes and the extension; postgres asks a server"},
+		{Name: "sheet", Kind: Text, Doc: "of a spreadsheet; empty for the only one that holds a table"},
+		{Name: "query", Kind: Text, Doc: "that a database answers, one select; empty for all of the only table of an SQLite file"},
+		{Name: "connection", Kind: Text, Doc: "name of the environment variable that holds the connection string of a server; empty for PGHOST, PGUSER, PGPASSWORD and the others of its standard"},
 		{Name: "separator", Kind: Character, Blank: "auto", Doc: "between cells: comma, semicolon, tab, bar or one character; auto looks at the header"},
 		{Name: "decimal", Kind: Word, Allowed: []string{"point", "comma"}, Default: "point", Doc: "decimal sign of numbers in cells"},
 		{Name: "comment", Kind: Text, Doc: "lines that begin with it are passed over; empty for none"},
@@ -83,6 +86,9 @@ var sections = []Key{
 // Keys describes the whole run file, in the order in which it is written. It is there to
 // be read: sections share their keys with the loader.
 func Keys() []Key { return slices.Clone(sections) }
+
+// readsFiles tells whether the table comes from files, not from a server.
+func readsFiles(f *File) bool { return f.Read.Format != "postgres" }
 
 func defaultMatrix(f *File) any {
 	switch f.Standardize.Scaling {

@@ -146,7 +146,11 @@ func TestWordsOfEveryKey(t *testing.T) {
 				set += "}"
 			}
 			set = strings.Replace(set, "channels.", "channels.flow.", 1)
-			f, err := Parse("pump.yaml", []byte("axisfold: 1\nread: {files: a, groups: g}\nregress: {response: y}\n"), []string{set})
+			from := "files: a"
+			if w == "postgres" {
+				from = "query: select 1"
+			}
+			f, err := Parse("pump.yaml", []byte("axisfold: 1\nread: {"+from+", groups: g}\nregress: {response: y}\n"), []string{set})
 			tried++
 			switch {
 			case w == "neither-of-them":

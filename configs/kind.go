@@ -39,6 +39,8 @@ type Key struct {
 	Keys    []Key             // of Section, and of each channel of Channels
 	Rules   []RuleDescription // of Choice
 
+	// needed tells whether the key is required, where that depends on the rest of the file.
+	needed func(*File) bool
 	// follow works the default out from the rest of the file; Doc tells how.
 	follow func(*File) any
 }

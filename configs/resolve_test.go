@@ -29,6 +29,9 @@ seed: 7
 read:
   files: [../testdata/demo/pump-hall.csv, "more/*.csv"]
   format: csv
+  sheet: ""
+  query: ""
+  connection: ""
   separator: ";"
   decimal: comma
   comment: "#"
@@ -158,6 +161,9 @@ seed: 7
 read:
   files: [../testdata/demo/pump-hall.csv, "more/*.csv"]
   format: csv
+  sheet: ""
+  query: ""
+  connection: ""
   separator: semicolon
   decimal: comma
   comment: "#"
@@ -198,6 +204,9 @@ seed: 1
 read:
   files: [a.csv]
   format: auto
+  sheet: ""
+  query: ""
+  connection: ""
   separator: auto
   decimal: point
   comment: ""
@@ -299,6 +308,11 @@ func TestRoundTrip(t *testing.T) {
 		f.Retain.Value = v
 		roundTrip(t, f)
 	}
+}
+
+// A server is asked by a query; the list of files stays empty.
+func TestRoundTripOfAServer(t *testing.T) {
+	roundTrip(t, load(t, "axisfold: 1\nread: {format: postgres, query: select 1, connection: PUMP_HALL}\n"))
 }
 
 func TestPathsAreRelativeToTheRunFile(t *testing.T) {

@@ -151,8 +151,16 @@ func (l *loader) list(k *Key, path string, node *yaml.Node, into reflect.Value) 
 		return
 	}
 	if len(items) == 0 && k.Filled {
-		l.fail(node, path, "", "%sexpected at least one, found an empty list", prefix(path))
-		return
+		refuse := func() { l.fail(node, path, "", "%sexpected at least one, found an empty list", prefix(path)) }
+		if k.needed == nil {
+			refuse()
+			return
+		}
+		l.follow = append(l.follow, func() {
+			if k.needed(l.file) {
+				refuse()
+			}
+		})
 	}
 	values := []string{}
 	for _, n := range items {

@@ -42,6 +42,7 @@ type Block struct {
 	Result any
 
 	text   []byte
+	cells  cells  // in place of text, of typed tables
 	extra  []byte // unescaped text of quoted cells
 	times  []span
 	groups []span
@@ -55,6 +56,10 @@ type Block struct {
 	line    int // physical line of the block's first, from 1; known in merge
 	newBy   int // physical lines in the block
 	blank   int // rows without any value that were passed over
+	// remarks counts what the notes tell of values; digest identifies the values of a
+	// table that may change between passes. Both are nil mostly.
+	remarks map[remark]int64
+	digest  []byte
 	err     error
 	failed  bool // err comes from reading, there is no text
 

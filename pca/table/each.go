@@ -3,6 +3,7 @@ package table
 import (
 	"bytes"
 	"context"
+	"crypto/sha256"
 	"errors"
 	"fmt"
 	"io"
@@ -26,6 +27,7 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 	p := &parser{columns: t.columns, time: t.options.Time != "", group: t.options.Groups != ""}
 	row, blank := int64(0), int64(0)
 	line, file := 1, ""
+	remarks, digest := map[remark]int64{}, sha256.New()
 	err := inOrder(ctx, threads, t.pieceReader(ctx), func(worker int, b *Block) error {
 		// A file that grows meanwhile is found out at the end of the pass.
 		if counted && b.Index < len(t.starts) {
@@ -48,6 +50,10 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 		row += int64(b.Count)
 		line += b.newBy
 		blank += int64(b.blank)
+		for r, n := range b.remarks {
+			remarks[r] += n
+		}
+		digest.Write(b.digest)
 		return b.placed(merge(b))
 	})
 	if err != nil {
@@ -64,7 +70,24 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 	if starts == nil {
 		starts = []int64{}
 	}
-	t.starts, t.blank = starts, blank
+	if err := t.checkDigest(digest.Sum(nil)); err != nil {
+		return err
+	}
+	t.starts, t.blank, t.remarks = starts, blank, remarks
+	return nil
+}
+
+// checkDigest compares the values of a pass with those of the pass before, where no file
+// tells whether they changed.
+func (t *Table) checkDigest(now []byte) error {
+	if g, ok := t.parts[0].(*grid); !ok || !g.checked {
+		return nil
+	}
+	if t.digest != nil && !bytes.Equal(t.digest, now) {
+		return &Error{Kind: BadContent, File: t.parts[0].head().file, Problem: "gave other rows than the time before, or the same in another order",
+			Hint: "let the query name a finished stretch of rows, and give it an order by"}
+	}
+	t.digest = now
 	return nil
 }
 
@@ -82,12 +105,16 @@ func (b *Block) placed(err error) error {
 // pieceReader returns a function that fills blocks with pieces of the parts, one after
 // another; it returns io.EOF at the end.
 func (t *Table) pieceReader(ctx context.Context) func(b *Block) error {
+	t.late = nil
 	next := 0 // part
 	var current pieces
 	index := 0
 	closeCurrent := func() error {
 		if current == nil {
 			return nil
+		}
+		if g, ok := current.(interface{ late() []Note }); ok {
+			t.late = append(t.late, g.late()...)
 		}
 		err := current.Close()
 		current = nil
@@ -102,9 +129,8 @@ func (t *Table) pieceReader(ctx context.Context) func(b *Block) error {
 				if next == len(t.parts) {
 					return io.EOF
 				}
-				part := t.parts[next]
+				started, err := t.parts[next].start(ctx, t.layouts[next])
 				next++
-				started, err := part.start(ctx)
 				if err != nil {
 					return err
 				}

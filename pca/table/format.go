@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"io"
 	"path/filepath"
+	"slices"
 	"strings"
 )
 
@@ -14,15 +15,39 @@ import (
 type format struct {
 	name       string
 	extensions []string
+	// takes lists the settings, beside those of every table, that mean something here.
+	takes string
 	// magic is how every file of the format begins; nil where anything may stand there.
 	magic []byte
-	open  func(ctx context.Context, s *setting, file string) (part, error)
+	// server formats read no file.
+	server bool
+	open   func(ctx context.Context, s *setting, file string) (part, error)
 }
 
 // formats lists what can be read, the default first.
 var formats = []format{
-	{"csv", []string{".csv", ".txt", ".dat"}, nil, openDelimited(0)},
-	{"tsv", []string{".tsv", ".tab"}, nil, openDelimited('\t')},
+	{"csv", []string{".csv", ".txt", ".dat"}, textSettings, nil, false, openDelimited(0)},
+	{"tsv", []string{".tsv", ".tab"}, textSettings, nil, false, openDelimited('\t')},
+	{"parquet", []string{".parquet", ".pq"}, "", parquetMagic, false, openParquet},
+	{"xlsx", []string{".xlsx", ".xlsm", ".xls"}, "sheet header units_row decimal", zipMagic, false, openSpreadsheet},
+	{"sqlite", []string{".sqlite", ".sqlite3", ".db"}, "query decimal", sqliteMagic, false, openSQLite},
+	{"postgres", nil, "query connection", nil, true, openPostgres},
+}
+
+const textSettings = "separator decimal comment header units_row"
+
+// fits refuses settings that mean nothing to the format.
+func (f *format) fits(o *Options, file string) error {
+	for _, s := range []struct {
+		key   string
+		given bool
+	}{{"separator", o.Separator != ""}, {"decimal", o.DecimalComma}, {"comment", o.Comment != ""}, {"header", o.NoHeader}, {"units_row", o.UnitsRow},
+		{"sheet", o.Sheet != ""}, {"query", o.Query != ""}, {"connection", o.Connection != ""}} {
+		if s.given && !slices.Contains(strings.Fields(f.takes), s.key) {
+			return &Error{Kind: WrongInput, File: file, Problem: fmt.Sprintf("read.%s means nothing to the format %s", s.key, f.name)}
+		}
+	}
+	return nil
 }
 
 // setting is what formats are told.
@@ -37,8 +62,8 @@ type setting struct {
 // are used for, missing codes and gaps are the same for all.
 type part interface {
 	head() *head
-	// start begins a pass over the rows.
-	start(ctx context.Context) (pieces, error)
+	// start begins a pass over the rows; the layout tells which columns are used.
+	start(ctx context.Context, l *layout) (pieces, error)
 }
 
 // pieces is a pass over the rows of a part.
@@ -60,16 +85,22 @@ func Formats() []string {
 	return names
 }
 
+func named(name string) *format {
+	for i := range formats {
+		if formats[i].name == name {
+			return &formats[i]
+		}
+	}
+	return nil
+}
+
 // formatOf finds the format: the one asked for, or what the first bytes of the file say,
 // or its extension under .gz and .zst.
 func formatOf(s *setting, file string) (*format, error) {
-	name := s.options.Format
-	for i := range formats {
-		if name != "" && formats[i].name == name {
-			return &formats[i], nil
+	if name := s.options.Format; name != "" {
+		if f := named(name); f != nil {
+			return f, nil
 		}
-	}
-	if name != "" {
 		return nil, &Error{Kind: WrongInput, Problem: fmt.Sprintf("unknown format %q; known: %s", name, strings.Join(Formats(), ", "))}
 	}
 	first, err := firstBytes(s.open, file)

@@ -18,12 +18,14 @@ const (
 type head struct {
 	file    string // what errors call it
 	counted string // what a line is called; empty: a line of text
-	dialect *dialect
-	names   []string
-	unnamed []bool
-	units   []string
-	sample  []sampleColumn
-	bytes   int // of mark, header and units
+	// unordered: nothing says in which order the rows come.
+	unordered bool
+	dialect   *dialect
+	names     []string
+	unnamed   []bool
+	units     []string
+	sample    []sampleColumn
+	bytes     int // of mark, header and units
 }
 
 // readHead looks at the beginning of a file.

@@ -23,6 +23,11 @@ type Options struct {
 	UnitsRow     bool     // the row after the header holds units
 	Time, Groups string   // columns carried through as text; empty: none
 	LeaveOut     []string // names and glob patterns
+	Sheet        string   // of spreadsheets; empty: the only one that holds anything
+	Query        string   // of databases; SQLite takes its only table when empty
+	// Connection is the name of the environment variable that holds the connection string
+	// of a server; empty: the variables that its client programs use.
+	Connection string
 }
 
 // Table is an opened table.
@@ -36,6 +41,9 @@ type Table struct {
 	notes   []Note
 	blank   int64
 	starts  []int64 // first data row of every block, once counted
+	remarks map[remark]int64
+	late    []Note // known at the end of a pass
+	digest  []byte // of all values, where they may change between passes
 }
 
 // Open finds the files, reads the head of each and decides what every column is.
@@ -47,12 +55,23 @@ func openWith(ctx context.Context, o Options, open opener, pieces int) (*Table, 
 	if err := checkSeparator(&o); err != nil {
 		return nil, err
 	}
+	t := &Table{options: o}
+	s := &setting{options: &t.options, open: open, pieces: pieces}
+	if f := named(o.Format); f != nil && f.server {
+		if err := f.fits(&t.options, f.name); err != nil {
+			return nil, err
+		}
+		p, err := f.open(ctx, s, "")
+		if err != nil {
+			return nil, err
+		}
+		return t, t.add(p)
+	}
 	files, err := expand(o.Dir, o.Files)
 	if err != nil {
 		return nil, err
 	}
-	t := &Table{options: o, files: files}
-	s := &setting{options: &t.options, open: open, pieces: pieces}
+	t.files = files
 	for _, file := range files {
 		print, err := fingerprintOf(file)
 		if err != nil {
@@ -61,6 +80,9 @@ func openWith(ctx context.Context, o Options, open opener, pieces int) (*Table, 
 		t.before = append(t.before, print)
 		f, err := formatOf(s, file)
 		if err != nil {
+			return nil, err
+		}
+		if err := f.fits(&t.options, file); err != nil {
 			return nil, err
 		}
 		p, err := f.open(ctx, s, file)
@@ -97,7 +119,7 @@ func checkSeparator(o *Options) error {
 	return nil
 }
 
-// Files are the paths of the files read, in order.
+// Files are the paths of the files read, in order; none for a server.
 func (t *Table) Files() []string { return t.files }
 
 // Columns are the numeric channels.
@@ -105,14 +127,38 @@ func (t *Table) Columns() []Column { return t.columns }
 
 // Notes say what was left out and passed over; complete once the rows were gone through.
 func (t *Table) Notes() []Note {
+	notes := slices.Clone(t.notes)
+	for j, c := range t.columns {
+		for _, kind := range remarkKinds {
+			if n := t.remarks[remark{j, kind}]; n > 0 {
+				notes = append(notes, Note{c.Name, fmt.Sprintf("%d %s", n, kind)})
+			}
+		}
+	}
+	notes = append(notes, t.late...)
 	if t.blank == 0 {
-		return t.notes
+		return notes
 	}
 	text := fmt.Sprintf("%d empty rows were passed over", t.blank)
 	if t.blank == 1 {
 		text = "1 empty row was passed over"
 	}
-	return append(slices.Clone(t.notes), Note{Text: text})
+	return append(notes, Note{Text: text})
+}
+
+// Digest identifies the values of a table that no file holds: the SHA-256 of digests of its
+// stretches, known once the rows were gone through. It is nil for tables of files.
+func (t *Table) Digest() []byte {
+	if len(t.files) > 0 {
+		return nil
+	}
+	return t.digest
+}
+
+// Unordered tells that nothing says in which order the rows come, so that the same table
+// may give them in another one another day.
+func (t *Table) Unordered() bool {
+	return slices.ContainsFunc(t.parts, func(p part) bool { return p.head().unordered })
 }
 
 // assign decides what the columns of the first file are.
@@ -155,6 +201,9 @@ func (t *Table) assign(h *head) error {
 		default:
 			if h.unnamed[j] {
 				t.notes = append(t.notes, Note{n, "has no name in the header"})
+			}
+			if s.truths > 0 {
+				t.notes = append(t.notes, Note{n, "true and false are read as 1 and 0"})
 			}
 			l.uses[j], l.to[j] = number, len(t.columns)
 			t.columns = append(t.columns, Column{Name: n, Unit: h.units[j], Position: j + 1})

@@ -287,7 +287,7 @@ func TestErrors(t *testing.T) {
 		{"unknown left out", "alpha,b\n1,2\n", Options{LeaveOut: []string{"z*"}}, `x.csv: read.leave_out: no column matches "z*"`, "the columns are alpha, b"},
 		{"utf-16", "\xff\xfea\x00,\x00", Options{}, "x.csv: is UTF-16 text; expected UTF-8", ""},
 		{"damaged gzip", "\x1f\x8b\x08\x00nonsense", Options{}, "x.csv: ", ""},
-		{"format", "a\n1\n", Options{Format: "xls"}, `unknown format "xls"; known: csv, tsv`, ""},
+		{"format", "a\n1\n", Options{Format: "xls"}, `unknown format "xls"; known: csv, tsv, parquet, xlsx, sqlite, postgres`, ""},
 	}
 	for _, c := range cases {
 		for _, pieces := range []int{1, 9, chunkBytes} {

@@ -40,7 +40,9 @@ func looksDecimalComma(cell []byte) bool {
 // sampleColumn collects what a column's first cells look like.
 type sampleColumn struct {
 	filled, numbers, missing int
+	times, bytes, truths     int // among the filled, of typed tables
 	examples                 []string
+	declared                 string // what a typed table says the values are, when no numbers
 }
 
 func (s *sampleColumn) add(cell []byte, d *dialect) {
@@ -69,9 +71,17 @@ func (s *sampleColumn) add(cell []byte, d *dialect) {
 }
 
 // isText: more than half of the cells that hold anything are not numbers.
-func (s *sampleColumn) isText() bool { return 2*s.numbers < s.filled }
+func (s *sampleColumn) isText() bool { return s.declared != "" || 2*s.numbers < s.filled }
 
 func (s *sampleColumn) note() string {
+	switch {
+	case s.declared == "times" || s.declared == "" && 2*s.times > s.filled:
+		return "left out: times; read.time carries a column through"
+	case s.declared != "" && len(s.examples) == 0:
+		return "left out: " + s.declared
+	case 2*s.bytes > s.filled:
+		return "left out: bytes"
+	}
 	quoted := make([]string, len(s.examples))
 	for i, e := range s.examples {
 		quoted[i] = strconv.Quote(shorten(e, 24))

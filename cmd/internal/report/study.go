@@ -46,9 +46,9 @@ type Table struct {
 
 // File is one input.
 type File struct {
-	Path   string `json:"path"`
-	SHA256 string `json:"sha256"`
-	Bytes  int64  `json:"bytes"`
+	Path   string `json:"path"`   // the name of the format where a server was asked
+	SHA256 string `json:"sha256"` // of the file, or of the rows that a server gave
+	Bytes  int64  `json:"bytes"`  // 0 for a server
 }
 
 // Note says what was done with a column, or with rows when Column is empty.

@@ -87,6 +87,9 @@ func (w *work) attempt(ctx context.Context, form pca.Form, reason string) error 
 		w.warn("scaling-without-effect", "the correlation matrix brings every channel to unit variance, so the scaling asked for (%s) has no effect; decompose.matrix: covariance would use it", w.cfg.Standardize.Scaling)
 	}
 	w.describe()
+	if w.table.Unordered() {
+		w.warn("unordered-rows", "read.query has no order by, so the rows may come in another order another time: folds, neighbours and last digits depend on it")
+	}
 	w.correlate()
 	return nil
 }

@@ -41,7 +41,9 @@ func Look(ctx context.Context, cfg *configs.File, o Options) (*Preview, error) {
 	if err != nil {
 		return nil, err
 	}
-	p.Files = t.Files()
+	if p.Files = t.Files(); len(p.Files) == 0 {
+		p.Files = []string{cfg.Read.Format}
+	}
 	p.Channels, p.Responses = r.labels[:r.channels], r.labels[r.channels:]
 	for _, n := range t.Notes() {
 		p.Notes = append(p.Notes, report.Note{Column: n.Column, Text: n.Text})

@@ -47,7 +47,7 @@ func (w *work) write(ctx context.Context) error {
 	return w.writeManifest()
 }
 
-// inputs hashes the input files.
+// inputs hashes the input files, or the rows that a server gave.
 func (w *work) inputs(ctx context.Context) ([]report.File, error) {
 	var out []report.File
 	for _, path := range w.table.Files() {
@@ -57,6 +57,9 @@ func (w *work) inputs(ctx context.Context) ([]report.File, error) {
 		}
 		f.Path = relativeTo(w.cfg.Dir(), path)
 		out = append(out, f)
+	}
+	if d := w.table.Digest(); d != nil {
+		out = append(out, report.File{Path: w.cfg.Read.Format, SHA256: hex.EncodeToString(d)})
 	}
 	return out, nil
 }

@@ -1,0 +1,346 @@
+package table
+
+import (
+	"archive/zip"
+	"encoding/xml"
+	"errors"
+	"fmt"
+	"io"
+	"math"
+	"os"
+	"path"
+	"strconv"
+	"strings"
+	"time"
+)
+
+// Bounds on what a workbook unpacks to: a few bytes can claim to be gigabytes.
+const (
+	longestPart  = 256 << 20 // of what is kept: texts, styles, the list of sheets
+	longestSheet = 8 << 30   // of what is gone through
+)
+
+// workbook is an Office Open XML spreadsheet (ECMA-376, Part 1).
+type workbook struct {
+	file   string
+	from   io.Closer
+	zip    *zip.Reader
+	sheets []sheet
+	epoch  time.Time // day 0
+	dates  []dateStyle
+	texts  []string
+}
+
+// sheet is a worksheet of a workbook.
+type sheet struct {
+	name, part string
+	hidden     bool
+}
+
+// dateStyle tells what a style makes of a number.
+type dateStyle struct{ date, clock bool }
+
+// openWorkbook reads all but the sheets.
+func openWorkbook(open opener, file string) (*workbook, error) {
+	from, err := open(file)
+	if err != nil {
+		return nil, pathError(file, err)
+	}
+	b := &workbook{file: file, from: from, epoch: time.Date(1899, 12, 30, 0, 0, 0, 0, time.UTC)}
+	at, ok := from.(io.ReaderAt)
+	info, err := os.Stat(file)
+	if err == nil && !ok {
+		err = errors.New("cannot be read at any place")
+	}
+	if err == nil {
+		b.zip, err = zip.NewReader(at, info.Size())
+	}
+	if err == nil {
+		err = b.index()
+	}
+	if err != nil {
+		from.Close()
+		return nil, b.damaged(err)
+	}
+	return b, nil
+}
+
+func (b *workbook) Close() error { return b.from.Close() }
+
+// damaged words an error of the container or its XML.
+func (b *workbook) damaged(err error) error {
+	var own *Error
+	if errors.As(err, &own) {
+		return err
+	}
+	e := &Error{Kind: BadContent, File: b.file, Problem: "the spreadsheet is damaged: " + err.Error()}
+	if errors.Is(err, zip.ErrFormat) || errors.Is(err, io.ErrUnexpectedEOF) || errors.Is(err, io.EOF) {
+		e.Hint = "the copy may be incomplete"
+	}
+	return e
+}
+
+// part opens one part of the container; a missing one is an error.
+func (b *workbook) part(name string, most int64) (io.ReadCloser, error) {
+	for _, f := range b.zip.File {
+		if !strings.EqualFold(strings.TrimPrefix(f.Name, "/"), name) {
+			continue
+		}
+		if f.UncompressedSize64 > uint64(most) {
+			return nil, &Error{Kind: BadContent, File: b.file, Problem: fmt.Sprintf("%s unpacks to %d MiB, more than %d MiB", name, f.UncompressedSize64>>20, most>>20)}
+		}
+		r, err := f.Open()
+		if err != nil {
+			return nil, b.damaged(err)
+		}
+		return &unpacked{r, int64(f.UncompressedSize64)}, nil
+	}
+	return nil, &Error{Kind: BadContent, File: b.file, Problem: "is no spreadsheet: it lacks " + name}
+}
+
+// unpacked stops a part that gives more than its entry says: the bound looked at that.
+type unpacked struct {
+	io.ReadCloser
+	left int64
+}
+
+func (u *unpacked) Read(p []byte) (int, error) {
+	n, err := u.ReadCloser.Read(p)
+	if u.left -= int64(n); u.left < 0 {
+		return 0, errors.New("a part is longer than its entry says")
+	}
+	return n, err
+}
+
+// decode reads a whole part.
+func (b *workbook) decode(name string, into any) error {
+	r, err := b.part(name, longestPart)
+	if err != nil {
+		return err
+	}
+	defer r.Close()
+	return xml.NewDecoder(r).Decode(into)
+}
+
+// relations are what a part refers to: id to kind and target.
+type relations struct {
+	All []struct {
+		ID     string `xml:"Id,attr"`
+		Type   string `xml:"Type,attr"`
+		Target string `xml:"Target,attr"`
+	} `xml:"Relationship"`
+}
+
+// index reads the list of sheets, styles and shared texts.
+func (b *workbook) index() error {
+	var top relations
+	if err := b.decode("_rels/.rels", &top); err != nil {
+		return err
+	}
+	main := "xl/workbook.xml"
+	for _, r := range top.All {
+		if strings.HasSuffix(r.Type, "/officeDocument") {
+			main = strings.TrimPrefix(r.Target, "/")
+		}
+	}
+	var book struct {
+		Properties struct {
+			Date1904 string `xml:"date1904,attr"`
+		} `xml:"workbookPr"`
+		Sheets []struct {
+			Name  string     `xml:"name,attr"`
+			State string     `xml:"state,attr"`
+			Attrs []xml.Attr `xml:",any,attr"` // the id, whose namespace has two forms
+		} `xml:"sheets>sheet"`
+	}
+	if err := b.decode(main, &book); err != nil {
+		return err
+	}
+	if book.Properties.Date1904 == "1" || book.Properties.Date1904 == "true" {
+		b.epoch = time.Date(1904, 1, 1, 0, 0, 0, 0, time.UTC)
+	}
+	var links relations
+	if err := b.decode(path.Join(path.Dir(main), "_rels", path.Base(main)+".rels"), &links); err != nil {
+		return err
+	}
+	target := func(text string) string {
+		if strings.HasPrefix(text, "/") {
+			return text[1:]
+		}
+		return path.Join(path.Dir(main), text)
+	}
+	for _, r := range links.All {
+		var err error
+		switch {
+		case strings.HasSuffix(r.Type, "/styles"):
+			err = b.readStyles(target(r.Target))
+		case strings.HasSuffix(r.Type, "/sharedStrings"):
+			err = b.readTexts(target(r.Target))
+		case strings.HasSuffix(r.Type, "/worksheet"):
+			for _, s := range book.Sheets {
+				for _, a := range s.Attrs {
+					if a.Name.Local == "id" && a.Value == r.ID {
+						b.sheets = append(b.sheets, sheet{s.Name, target(r.Target), s.State != "" && s.State != "visible"})
+					}
+				}
+			}
+		}
+		if err != nil {
+			return err
+		}
+	}
+	if len(b.sheets) == 0 {
+		return errors.New("it has no worksheet")
+	}
+	return nil
+}
+
+// readStyles finds out which cell styles show dates and times.
+func (b *workbook) readStyles(name string) error {
+	var styles struct {
+		Formats []struct {
+			ID   int    `xml:"numFmtId,attr"`
+			Code string `xml:"formatCode,attr"`
+		} `xml:"numFmts>numFmt"`
+		Cells []struct {
+			Format int `xml:"numFmtId,attr"`
+		} `xml:"cellXfs>xf"`
+	}
+	if err := b.decode(name, &styles); err != nil {
+		return err
+	}
+	own := map[int]dateStyle{}
+	for _, f := range styles.Formats {
+		own[f.ID] = dateStyleOf(f.Code)
+	}
+	for _, c := range styles.Cells {
+		d, ok := own[c.Format]
+		if !ok {
+			d = builtInDates(c.Format)
+		}
+		b.dates = append(b.dates, d)
+	}
+	return nil
+}
+
+// builtInDates are the formats that need no code (ECMA-376, 18.8.30). Elapsed times,
+// 45 to 47, are numbers of days.
+func builtInDates(id int) dateStyle {
+	switch {
+	case id == 22:
+		return dateStyle{true, true}
+	case id >= 18 && id <= 21, id == 32 || id == 33:
+		return dateStyle{clock: true}
+	case id >= 14 && id <= 17, id >= 27 && id <= 36, id >= 50 && id <= 58:
+		return dateStyle{date: true}
+	}
+	return dateStyle{}
+}
+
+// dateStyleOf reads a format code: letters outside quotes and brackets; m is the month
+// beside y or d, and the minute beside h or s.
+func dateStyleOf(code string) (d dateStyle) {
+	months := false
+	for i := 0; i < len(code); i++ {
+		switch c := code[i]; c {
+		case '"':
+			i += 1 + indexOr(code[i+1:], `"`)
+		case '[':
+			inside := strings.ToLower(code[i+1 : i+1+indexOr(code[i+1:], "]")])
+			if inside != "" && strings.Trim(inside, "hms") == "" {
+				return dateStyle{} // elapsed time
+			}
+			i += 1 + len(inside)
+		case '\\', '_', '*':
+			i++
+		case ';':
+			d.date = d.date || months && !d.clock
+			return d
+		case 'y', 'Y', 'd', 'D':
+			d.date = true
+		case 'h', 'H', 's', 'S':
+			d.clock = true
+		case 'm', 'M':
+			months = true
+		case 'G', 'g': // General
+			if strings.HasPrefix(strings.ToLower(code[i:]), "general") {
+				i += len("general") - 1
+			}
+		}
+	}
+	d.date = d.date || months && !d.clock
+	return d
+}
+
+// readTexts reads the texts that cells share.
+func (b *workbook) readTexts(name string) error {
+	r, err := b.part(name, longestPart)
+	if err != nil {
+		return err
+	}
+	defer r.Close()
+	d := xml.NewDecoder(r)
+	for {
+		token, err := d.Token()
+		if err == io.EOF {
+			return nil
+		}
+		if err != nil {
+			return err
+		}
+		if e, ok := token.(xml.StartElement); ok && e.Name.Local == "si" {
+			var item richText
+			if err := d.DecodeElement(&item, &e); err != nil {
+				return err
+			}
+			b.texts = append(b.texts, item.text())
+		}
+	}
+}
+
+// richText is a text, whole or in runs; readings beside it (rPh) are no part of it.
+type richText struct {
+	Plain string `xml:"t"`
+	Runs  []struct {
+		Text string `xml:"t"`
+	} `xml:"r"`
+}
+
+func (t *richText) text() string {
+	out := t.Plain
+	for _, r := range t.Runs {
+		out += r.Text
+	}
+	return out
+}
+
+// appendTime appends a day number as RFC 3339 has it, without a zone: a sheet knows none.
+func (b *workbook) appendTime(to []byte, day float64, style dateStyle) ([]byte, bool) {
+	if !(day >= 0 && day < 2958466) { // the day after 9999-12-31
+		return to, false
+	}
+	if !style.date && day < 1 {
+		return time.Time{}.Add(time.Duration(math.Round(day*86400e3))*time.Millisecond).AppendFormat(to, "15:04:05.999"), true
+	}
+	start := b.epoch
+	if day < 60 && start.Year() == 1899 {
+		start = start.AddDate(0, 0, 1) // day 60 is 29 February 1900, which never was
+	}
+	whole := math.Floor(day)
+	t := start.AddDate(0, 0, int(whole)).Add(time.Duration(math.Round((day-whole)*86400e3)) * time.Millisecond)
+	layout := "2006-01-02T15:04:05.999"
+	if !style.clock && day == whole {
+		layout = time.DateOnly
+	}
+	return t.AppendFormat(to, layout), true
+}
+
+// columnNumber reads the letters of a reference such as AB12: columns from 0.
+func columnNumber(ref string) (column, row int, ok bool) {
+	i := 0
+	for ; i < len(ref) && i < 4 && ref[i]|0x20 >= 'a' && ref[i]|0x20 <= 'z'; i++ {
+		column = column*26 + int(ref[i]|0x20-'a') + 1
+	}
+	row, err := strconv.Atoi(ref[i:])
+	return column - 1, row, i > 0 && err == nil && column <= mostSheetColumns
+}
