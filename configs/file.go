@@ -39,6 +39,7 @@ type Read struct {
 	Groups     string   `key:"groups"`    // empty: none
 	LeaveOut   []string `key:"leave_out"` // names and globs
 	Gaps       string   `key:"gaps"`
+	Spill      float64  `key:"spill"` // gigabytes; 0: none
 }
 
 // Standardize says how channels are centred and scaled.

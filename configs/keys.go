@@ -34,6 +34,7 @@ var sections = []Key{
 		{Name: "groups", Kind: Text, Doc: "column of groups, carried through and used by folds; empty for none"},
 		{Name: "leave_out", Kind: Names, Doc: "columns that take no part; names and globs"},
 		{Name: "gaps", Kind: Word, Allowed: []string{"complete-rows"}, Default: "complete-rows", Doc: "what happens to rows with missing values: complete-rows leaves them out"},
+		{Name: "spill", Kind: Number, Range: atLeast(0), Default: 8.0, Doc: "gigabytes of disk beside the run folder, while it runs, for rows that are slow to read again (compressed files, spreadsheets, databases) and too many to hold; 0 for none"},
 	}},
 	{Name: "standardize", Kind: Section, Doc: "how channels are centred and scaled", Keys: []Key{
 		{Name: "scaling", Kind: Word, Allowed: scalings, Default: "unit-normal", Doc: "of every channel"},

@@ -42,6 +42,7 @@ read:
   groups: campaign
   leave_out: [operator, "*_raw"]
   gaps: complete-rows
+  spill: 8
 standardize:
   scaling: none
   constant: drop
@@ -62,7 +63,7 @@ func TestEverySettingIsRead(t *testing.T) {
 	want := File{Path: "study/pump.yaml", Version: 1, Title: "Pump hall, spring campaign", Seed: 7,
 		Read: Read{Files: []string{"../testdata/demo/pump-hall.csv", "more/*.csv"}, Format: "csv", Separator: ";",
 			Decimal: "comma", Comment: "#", Missing: []string{"", "NA", "-999", "010", "1e5", "no", "~"},
-			UnitsRow: true, Time: "stamp", Groups: "campaign", LeaveOut: []string{"operator", "*_raw"}, Gaps: "complete-rows"},
+			UnitsRow: true, Time: "stamp", Groups: "campaign", LeaveOut: []string{"operator", "*_raw"}, Gaps: "complete-rows", Spill: 8},
 		Standardize: Standardize{Scaling: "none", Constant: "drop", Channels: []Channel{
 			{Name: "flow_7", Scaling: "none", Transform: "log"}, {Name: "t*", Transform: "square-root"}}},
 		Decompose: Decompose{Matrix: "correlation", Route: "svd"},
@@ -80,7 +81,7 @@ func TestEverySettingIsRead(t *testing.T) {
 func TestDefaults(t *testing.T) {
 	want := File{Path: "study/pump.yaml", Version: 1, Seed: 1,
 		Read: Read{Files: []string{"a.csv"}, Decimal: "point", Missing: []string{"", "NA", "NaN", "nan", "null"},
-			Header: true, Gaps: "complete-rows"},
+			Header: true, Gaps: "complete-rows", Spill: 8},
 		Standardize: Standardize{Scaling: "unit-normal", Constant: "error"},
 		Decompose:   Decompose{Matrix: "correlation", Route: "auto"},
 		Retain:      Rule{Rule: "parallel", Reference: "percentile", Percentile: 95},
@@ -174,6 +175,7 @@ read:
   groups: campaign
   leave_out: [operator, "*_raw"]
   gaps: complete-rows
+  spill: 8
 standardize:
   scaling: none
   constant: drop
@@ -217,6 +219,7 @@ read:
   groups: ""
   leave_out: []
   gaps: complete-rows
+  spill: 8
 standardize:
   scaling: unit-normal
   constant: error

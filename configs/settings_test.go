@@ -38,6 +38,7 @@ read.time "" (default)
 read.groups "" (default)
 read.leave_out [] (default)
 read.gaps complete-rows (default)
+read.spill 8 (default)
 standardize.scaling center
 standardize.constant error (default)
 standardize.channels {a: {transform: log}}

@@ -8,7 +8,8 @@ import (
 // delimited is a file of text with separators between cells.
 type delimited struct {
 	*setting
-	h *head
+	h          *head
+	compressed bool
 }
 
 // openDelimited opens text; a separator of 0 is looked up in the header.
@@ -18,7 +19,11 @@ func openDelimited(separator byte) func(context.Context, *setting, string) (part
 		if err != nil {
 			return nil, err
 		}
-		return &delimited{s, h}, nil
+		first, err := firstBytes(s.open, file)
+		if err != nil {
+			return nil, err
+		}
+		return &delimited{s, h, isGzip(first) || isZstd(first)}, nil
 	}
 }
 

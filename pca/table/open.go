@@ -97,7 +97,7 @@ func openText(open opener, path string) (*stream, error) {
 		return nil, readError(path, err)
 	}
 	switch {
-	case bytes.HasPrefix(magic, []byte{0x1f, 0x8b}):
+	case isGzip(magic):
 		z, err := gzip.NewReader(buffered)
 		if err != nil {
 			s.Close()
@@ -105,7 +105,7 @@ func openText(open opener, path string) (*stream, error) {
 		}
 		s.closers = append(s.closers, z.Close)
 		s.Reader = z
-	case bytes.HasPrefix(magic, []byte{0x28, 0xb5, 0x2f, 0xfd}), skippableFrame(magic):
+	case isZstd(magic):
 		z, err := zstd.NewReader(buffered, zstd.WithDecoderConcurrency(1), zstd.WithDecoderMaxMemory(256<<20))
 		if err != nil {
 			s.Close()
@@ -127,6 +127,13 @@ func notFolder(path string) error {
 		return &Error{Kind: WrongInput, File: path, Problem: "is a folder", Hint: "name the files in it, for example with *.csv"}
 	}
 	return nil
+}
+
+// How compressed data begin (RFC 1952, 2.3.1; RFC 8878, 3.1.1).
+func isGzip(first []byte) bool { return bytes.HasPrefix(first, []byte{0x1f, 0x8b}) }
+
+func isZstd(first []byte) bool {
+	return bytes.HasPrefix(first, []byte{0x28, 0xb5, 0x2f, 0xfd}) || len(first) >= 4 && skippableFrame(first[:4])
 }
 
 // skippableFrame tells the other way for zstd data to start (RFC 8878, 3.1.2).

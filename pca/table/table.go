@@ -122,6 +122,17 @@ func checkSeparator(o *Options) error {
 // Files are the paths of the files read, in order; none for a server.
 func (t *Table) Files() []string { return t.files }
 
+// Costly tells whether going through the rows once more takes much longer than reading as
+// many bytes: for all but plain text, which is read as fast as a file of numbers.
+func (t *Table) Costly() bool {
+	for _, p := range t.parts {
+		if d, ok := p.(*delimited); !ok || d.compressed {
+			return true
+		}
+	}
+	return false
+}
+
 // Columns are the numeric channels.
 func (t *Table) Columns() []Column { return t.columns }
 

@@ -199,6 +199,10 @@ func (f *folder) create(name string) (*output, error) {
 	return o, nil
 }
 
+// scratch is a path for what only this run needs; it goes before the folder is put in its
+// place.
+func (f *folder) scratch(name string) string { return filepath.Join(f.partial, "."+name) }
+
 // Close writes what is left and enters the file into the list of outputs.
 func (o *output) Close() error {
 	err := o.Flush()

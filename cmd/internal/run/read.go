@@ -31,7 +31,8 @@ type reading struct {
 
 // readTable goes through the table once. Small tables end up in memory; once a table
 // proves too large, what was read is summarised and the rest streams through summaries.
-func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, form pca.Form, o Options) (*reading, error) {
+// Rows then also go to the spill, if there is one; where that fails they are read again.
+func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, form pca.Form, spill *table.Spill, o Options) (*reading, error) {
 	out := &reading{missing: make([]int64, r.width())}
 	held := table.NewHeld(labelledColumns(r))
 	prepare := newPreparers(r)
@@ -64,6 +65,11 @@ func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, f
 		}
 		out.complete += int64(b.Rows)
 		out.rows = b.Row + int64(b.Count)
+		// From the first block on, so that the blocks are those of the table.
+		if spill != nil && spill.Append(b) != nil {
+			spill.Close()
+			spill = nil
+		}
 		if held != nil {
 			held.Append(b)
 			if int64(held.Len())*int64(r.width()) <= limit {
@@ -83,10 +89,14 @@ func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, f
 		collect.add(res.sums)
 		return nil
 	})
+	if spill != nil && (err != nil || held != nil || spill.Finish() != nil) {
+		spill.Close()
+		spill = nil
+	}
 	if err != nil {
 		return nil, err
 	}
-	out.source = &source{rows: rows, roles: r, held: held}
+	out.source = &source{rows: rows, roles: r, held: held, spill: spill}
 	if held == nil {
 		out.stream = collect
 	}

@@ -104,6 +104,7 @@ func (w *work) rows(ctx context.Context) error {
 	if err != nil {
 		return err
 	}
+	w.reading.source.close()
 	w.warnOfFollowing(follow, min(k, 1))
 	for _, o := range []*output{scores, predictions} {
 		if o != nil {

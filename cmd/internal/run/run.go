@@ -109,11 +109,25 @@ func (w *work) read(ctx context.Context) error {
 	if w.cfg.Decompose.Route == string(pca.SVD) {
 		form = pca.Factor
 	}
-	if w.reading, err = readTable(ctx, t, w.roles, w.plan, form, w.options); err != nil {
+	if w.reading, err = readTable(ctx, t, w.roles, w.plan, form, w.spill(), w.options); err != nil {
 		return err
 	}
 	w.study = &report.Study{Title: w.cfg.Title, Seed: w.cfg.Seed}
 	return w.checkRows()
+}
+
+// spill makes room beside the run folder for rows that are slow to read again; nil where
+// that does not pay or there is none.
+func (w *work) spill() *table.Spill {
+	most := int64(w.cfg.Read.Spill * 1e9)
+	if most == 0 || !w.table.Costly() {
+		return nil
+	}
+	s, err := table.NewSpill(labelledColumns(w.roles), w.folder.scratch("rows"), most)
+	if err != nil {
+		return nil
+	}
+	return s
 }
 
 // foldsOf returns the folds that regression and reduction are judged on: those of

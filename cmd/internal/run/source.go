@@ -15,12 +15,16 @@ type source struct {
 	rows  table.Rows
 	roles *roles // nil once the rows are held in memory, already prepared
 	held  *table.Held
+	spill *table.Spill // prepared rows of a table that is too large to hold and slow to read
 }
 
 // each goes through the rows in blocks: work in parallel, merge in row order.
 func (s *source) each(ctx context.Context, threads int, work func(worker int, b *table.Block) error, merge func(b *table.Block) error) error {
 	if s.held != nil {
 		return s.held.Each(ctx, threads, work, merge)
+	}
+	if s.spill != nil {
+		return s.spill.Each(ctx, threads, work, merge)
 	}
 	prepare := newPreparers(s.roles)
 	return s.rows.Each(ctx, threads, func(worker int, b *table.Block) error {
@@ -29,6 +33,13 @@ func (s *source) each(ctx context.Context, threads int, work func(worker int, b 
 		}
 		return work(worker, b)
 	}, merge)
+}
+
+// close gives up what the source keeps beside the rows; no pass follows.
+func (s *source) close() {
+	if s.spill != nil {
+		s.spill.Close()
+	}
 }
 
 // newPreparers returns a function that prepares a block in place and adds the gaps it
