@@ -192,7 +192,7 @@ func (h *head) header(cells []string, line int) error {
 	}
 	// Before the look for duplicates: rows of numbers often hold one twice.
 	if numbers > 0 && numbers+unnamed == len(cells) {
-		return &Error{Kind: BadContent, File: h.file, Line: line, Problem: "the header holds only numbers", Hint: "set read.header: false if the table has no header"}
+		return &Error{Kind: BadContent, File: h.file, Line: line, counted: h.counted, Problem: "the header holds only numbers", Hint: "set read.header: false if the table has no header"}
 	}
 	seen := map[string]int{}
 	for j, name := range cells {
@@ -201,7 +201,7 @@ func (h *head) header(cells []string, line int) error {
 			name = "column_" + strconv.Itoa(j+1)
 		}
 		if before, ok := seen[name]; ok {
-			return &Error{Kind: BadContent, File: h.file, Line: line, Column: j + 1, Name: name,
+			return &Error{Kind: BadContent, File: h.file, Line: line, Column: j + 1, Name: name, counted: h.counted,
 				Problem: fmt.Sprintf("has the same name as column %d", before), Hint: "give every column a name of its own"}
 		}
 		seen[name] = j + 1

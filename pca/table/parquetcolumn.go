@@ -236,7 +236,12 @@ func (c *parquetColumn) appendText(to []byte, v *parquet.Value) []byte {
 			return strconv.AppendInt(to, v.Int64(), 10)
 		}
 		return strconv.AppendInt(to, int64(v.Int32()), 10)
-	case meansNumber, meansUnsigned, meansHalf:
+	case meansUnsigned:
+		if v.Kind() == parquet.Int64 {
+			return strconv.AppendUint(to, v.Uint64(), 10)
+		}
+		return strconv.AppendUint(to, uint64(v.Uint32()), 10)
+	case meansNumber, meansHalf:
 		x, _ := c.number(v)
 		return appendNumber(to, x)
 	}

@@ -203,7 +203,7 @@ func (r *sheetRows) readCell(e *xml.StartElement) error {
 		style, _ = strconv.Atoi(text) // an unknown style shows a number
 	}
 	r.value = r.value[:0]
-	formula, inValue, depth := false, 0, 1
+	formula, solved, inValue, depth := false, false, 0, 1
 	for depth > 0 {
 		t, err := r.token()
 		if err != nil {
@@ -216,7 +216,7 @@ func (r *sheetRows) readCell(e *xml.StartElement) error {
 			case "f":
 				formula = true
 			case "v":
-				inValue = depth
+				inValue, solved = depth, true
 			case "t": // of an inline text; not of the readings beside it
 				if inValue == 0 && kind == "inlineStr" {
 					inValue = depth
@@ -238,8 +238,8 @@ func (r *sheetRows) readCell(e *xml.StartElement) error {
 	row.columns = append(row.columns, column)
 	row.all = append(row.all, cell{})
 	row.width = 1 // of the cell added last
-	if len(r.value) == 0 && kind != "inlineStr" && kind != "str" {
-		if formula {
+	if len(r.value) == 0 {
+		if formula && !solved {
 			row.at(0).kind = unsolvedCell
 		}
 		return nil

@@ -4,10 +4,12 @@ import (
 	"bytes"
 	"context"
 	"database/sql"
+	"encoding/binary"
 	"errors"
 	"fmt"
 	"io"
 	"net/url"
+	"os"
 	"path/filepath"
 	"strings"
 	"time"
@@ -31,6 +33,9 @@ func openSQLite(ctx context.Context, s *setting, file string) (part, error) {
 	}
 	if !bytes.HasPrefix(first, sqliteMagic) {
 		return nil, &Error{Kind: BadContent, File: file, Problem: "does not begin as an SQLite database does", Hint: "is it another format, or compressed?"}
+	}
+	if err := wholeDatabase(s.open, file); err != nil {
+		return nil, err
 	}
 	f := &sqliteFile{file: file, query: s.options.Query, Options: s.options}
 	ordered := true
@@ -56,6 +61,35 @@ func openSQLite(ctx context.Context, s *setting, file string) (part, error) {
 	}
 	g.h.unordered = !ordered
 	return g, g.sample(ctx)
+}
+
+// wholeDatabase compares the size of the file with the number of pages in its header
+// (www.sqlite.org/fileformat.html, 1.3): the database itself takes what is cut off a page
+// for zeros.
+func wholeDatabase(open opener, file string) error {
+	r, err := open(file)
+	if err != nil {
+		return pathError(file, err)
+	}
+	defer r.Close()
+	header := make([]byte, 100)
+	if _, err := io.ReadFull(r, header); err != nil {
+		return &Error{Kind: BadContent, File: file, Problem: "ends within the header of its database", Hint: "the copy is incomplete"}
+	}
+	info, err := os.Stat(file)
+	if err != nil {
+		return pathError(file, err)
+	}
+	page := int64(binary.BigEndian.Uint16(header[16:]))
+	if page == 1 {
+		page = 65536
+	}
+	pages := int64(binary.BigEndian.Uint32(header[28:]))
+	current := bytes.Equal(header[24:28], header[92:96]) // else an old program left the number behind
+	if current && info.Size() < page*pages {
+		return &Error{Kind: BadContent, File: file, Problem: fmt.Sprintf("is %d bytes long, its header says %d", info.Size(), page*pages), Hint: "the copy is incomplete"}
+	}
+	return nil
 }
 
 // connect opens the file for reading only; nothing in it can write or load code.

@@ -119,7 +119,11 @@ func (b *workbook) decode(name string, into any) error {
 		return err
 	}
 	defer r.Close()
-	return xml.NewDecoder(r).Decode(into)
+	if err := xml.NewDecoder(r).Decode(into); err != nil {
+		return err
+	}
+	_, err = io.Copy(io.Discard, r) // the checksum stands at the end
+	return err
 }
 
 // relations are what a part refers to: id to kind and target.
