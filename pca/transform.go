@@ -29,6 +29,20 @@ func (t Transform) Apply(v float64) (result float64, ok bool) {
 	return v, true
 }
 
+// Invert returns the value whose transform is v. A square root below 0, which no value
+// has, is taken as 0.
+func (t Transform) Invert(v float64) float64 {
+	switch t {
+	case Log:
+		return math.Exp(v)
+	case Log10:
+		return math.Pow(10, v)
+	case SquareRoot:
+		return math.Max(v, 0) * math.Max(v, 0)
+	}
+	return v
+}
+
 // Label is the name of a channel after the transform: log(flow) for flow.
 func (t Transform) Label(channel string) string {
 	if t == NoTransform || t == "" {

@@ -44,16 +44,26 @@ type ModelComponent struct {
 
 // ModelRegression predicts one response: y = intercept + Σ coefficient_j·transform(x_j).
 type ModelRegression struct {
-	Response      string        `json:"response"`
-	Column        string        `json:"column"`
-	Unit          string        `json:"unit,omitempty"`
-	Transform     pca.Transform `json:"transform"`
-	Intercept     Number        `json:"intercept"`
-	Coefficients  []Number      `json:"coefficients"`
-	Components    []int         `json:"components"` // that the coefficients use, from 1
-	Residual      Number        `json:"residual_standard_deviation"`
-	Freedom       int           `json:"degrees_of_freedom"`
-	ThroughOrigin bool          `json:"through_origin"`
+	Response      string         `json:"response"`
+	Column        string         `json:"column"`
+	Unit          string         `json:"unit,omitempty"`
+	Transform     pca.Transform  `json:"transform"`
+	Intercept     Number         `json:"intercept"`
+	Coefficients  []Number       `json:"coefficients"`
+	Components    []int          `json:"components"` // that the coefficients use, from 1
+	Residual      Number         `json:"residual_standard_deviation"`
+	Freedom       int            `json:"degrees_of_freedom"`
+	ThroughOrigin bool           `json:"through_origin"`
+	Smearing      *ModelSmearing `json:"smearing,omitempty"`
+}
+
+// ModelSmearing is what brings predictions of a transformed response back to its unit:
+// exp(p)·factor for logarithms, 10^p for decimal ones; p² + 2p·mean + square for square
+// roots, with the mean of the residuals and of their squares.
+type ModelSmearing struct {
+	Factor Number `json:"factor"`
+	Mean   Number `json:"mean_residual"`
+	Square Number `json:"mean_squared_residual"`
 }
 
 // WriteModel writes model.json.
@@ -61,7 +71,7 @@ func WriteModel(s *Study, out io.Writer) error {
 	d := s.Decomposition
 	f := ModelFile{Axisfold: FormatVersion, Title: s.Title, Rows: d.Rows, Matrix: d.Matrix, Retained: s.Retained()}
 	for j, c := range s.Channels {
-		f.Channels = append(f.Channels, ModelChannel{Name: c.Name, Column: c.Source, Unit: c.Unit, Transform: c.Transform,
+		f.Channels = append(f.Channels, ModelChannel{Name: c.Name, Column: c.Source, Unit: c.SourceUnit, Transform: c.Transform,
 			Scaling: d.Scaling.Methods[j], Center: Number(d.Scaling.Center[j]), Scale: Number(d.Scaling.Scale[j]),
 			Offset: Number(d.Offset[j]), Minimum: Number(c.Minimum), Maximum: Number(c.Maximum)})
 	}
@@ -76,13 +86,17 @@ func WriteModel(s *Study, out io.Writer) error {
 	if r := s.Regression; r != nil {
 		for i, m := range r.Result.Models {
 			response := r.Responses[i]
-			e := ModelRegression{Response: m.Response, Column: response.Source, Unit: response.Unit, Transform: response.Transform,
+			e := ModelRegression{Response: m.Response, Column: response.Source, Unit: response.SourceUnit, Transform: response.Transform,
 				Intercept: Number(m.Intercept.Coefficient), Residual: Number(m.Residual), Freedom: m.Free, ThroughOrigin: r.Origin}
 			for _, t := range m.Terms {
 				e.Coefficients = append(e.Coefficients, Number(t.Coefficient))
 			}
 			for _, a := range m.Entering[:m.Components] {
 				e.Components = append(e.Components, a+1)
+			}
+			if r.Smearing != nil && response.Transform != pca.NoTransform {
+				back := &r.Smearing[i]
+				e.Smearing = &ModelSmearing{Number(back.Factor()), Number(back.MeanResidual()), Number(back.MeanSquare())}
 			}
 			f.Regression = append(f.Regression, e)
 		}

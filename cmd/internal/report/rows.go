@@ -1,6 +1,10 @@
 package report
 
-import "strconv"
+import (
+	"strconv"
+
+	"axisfold/pcr"
+)
 
 // RowWriter builds lines of the tables that have one line per row. It holds scratch
 // space: one per goroutine.
@@ -38,10 +42,15 @@ func (l RowLayout) ScoresHeader(k int) []byte {
 	return w.b
 }
 
-// PredictionsHeader returns the first line of predictions.csv.
-func (l RowLayout) PredictionsHeader() []byte {
+// PredictionsHeader returns the first line of predictions.csv; back tells whether some
+// response was transformed.
+func (l RowLayout) PredictionsHeader(back bool) []byte {
 	var w csvWriter
-	w.header(append(l.names(), "response", "observed", "predicted", "lower", "upper", "residual")...)
+	names := append(l.names(), "response", "observed", "predicted", "lower", "upper", "residual")
+	if back {
+		names = append(names, "observed_back", "predicted_back", "lower_back", "upper_back")
+	}
+	w.header(names...)
 	return w.b
 }
 
@@ -71,9 +80,14 @@ func (w *RowWriter) Scores(l RowLayout, k RowKey, scores []float64, t2, spe floa
 	w.number(t2).number(spe).end()
 }
 
-// Prediction adds a line of predictions.csv; half is the half width of the interval.
-func (w *RowWriter) Prediction(l RowLayout, k RowKey, response string, observed, predicted, half float64) {
+// Prediction adds a line of predictions.csv; half is the half width of the interval. back,
+// where some response was transformed, adds all of it in the unit of the response.
+func (w *RowWriter) Prediction(l RowLayout, k RowKey, response string, observed, predicted, half float64, back *pcr.Smearing) {
 	w.key(l, k)
 	w.text(response).number(observed).number(predicted).number(predicted - half).number(predicted + half).number(observed - predicted)
+	if back != nil {
+		t := back.Transform
+		w.number(t.Invert(observed)).number(back.Mean(predicted)).number(t.Invert(predicted - half)).number(t.Invert(predicted + half))
+	}
 	w.end()
 }

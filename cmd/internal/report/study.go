@@ -62,13 +62,15 @@ type Channel struct {
 	Name      string
 	Source    string // column it comes from; differs from Name after a transform
 	Transform pca.Transform
-	Unit      string
-	Count     int64
-	Missing   int64
-	Mean      float64
-	Deviation float64 // divisor n-1
-	Minimum   float64
-	Maximum   float64
+	Unit      string // empty after a transform, whose values have none
+	// SourceUnit is that of the column.
+	SourceUnit string
+	Count      int64
+	Missing    int64
+	Mean       float64
+	Deviation  float64 // divisor n-1
+	Minimum    float64
+	Maximum    float64
 }
 
 // Regression holds the fits and what was asked for.
@@ -79,11 +81,14 @@ type Regression struct {
 	Collinearity *pca.Collinearity
 	Dependencies []pca.Dependency
 	Responses    []Channel
-	Rule         string
-	Arrangement  string // of the folds
-	Order        pcr.Order
-	Confidence   float64
-	Origin       bool
+	// Smearing brings predictions back to the units of the responses; nil where none was
+	// transformed.
+	Smearing    []pcr.Smearing
+	Rule        string
+	Arrangement string // of the folds
+	Order       pcr.Order
+	Confidence  float64
+	Origin      bool
 }
 
 // Reduction is the choice of channels to keep and what was asked for.

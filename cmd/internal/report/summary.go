@@ -274,6 +274,14 @@ func (p *page) regression(s *Study, m *pcr.Model) {
 		}
 		p.term(m.Terms[j])
 	}
+	if i := slices.Index(r.Result.Models, m); r.Smearing != nil && r.Responses[i].Transform != pca.NoTransform {
+		text := fmt.Sprintf("Fitted and judged as %s; predictions.csv also has the mean of %s itself (predicted_back, by smearing: Duan 1983) and its interval, turned back",
+			m.Response, r.Responses[i].Source)
+		if f := r.Smearing[i].Factor(); !math.IsNaN(f) {
+			text += fmt.Sprintf("; the mean is %s times what the prediction turned back gives", short(f))
+		}
+		p.paragraph("  ", "  ", text+".")
+	}
 	p.paragraph("  ", "  ", "Terms by the size of their standardized coefficient. Standard errors take components and their number as given, "+
 		"not chosen from these rows, and those left out as without effect.")
 }

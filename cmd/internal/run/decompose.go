@@ -199,7 +199,11 @@ func (w *work) describe() {
 func (w *work) channel(i int) report.Channel {
 	r := w.roles
 	c := r.columns[r.use[i]]
-	return report.Channel{Name: r.labels[i], Source: c.Name, Transform: r.transforms[i], Unit: c.Unit,
+	unit := c.Unit
+	if r.transforms[i] != pca.NoTransform {
+		unit = ""
+	}
+	return report.Channel{Name: r.labels[i], Source: c.Name, Transform: r.transforms[i], Unit: unit, SourceUnit: c.Unit,
 		Count: w.reading.complete, Missing: w.reading.missing[i],
 		Mean: w.whole.Mean(i), Deviation: w.whole.Deviation(i), Minimum: w.whole.Min(i), Maximum: w.whole.Max(i)}
 }

@@ -4,11 +4,11 @@ import (
 	"context"
 	"io"
 	"math"
-	"runtime"
 	"slices"
 	"sync"
 
 	"axisfold/cmd/internal/report"
+	"axisfold/configs"
 	"axisfold/pca"
 	"axisfold/pca/table"
 	"axisfold/pcr"
@@ -34,7 +34,7 @@ type sample struct {
 // distances, predictions and residuals.
 func (w *work) rows(ctx context.Context) error {
 	k := w.study.Retained()
-	layout := report.RowLayout{Time: w.cfg.Read.Time != "", Group: w.cfg.Read.Groups != ""}
+	layout := reportLayout(w.cfg)
 	models := 0
 	if w.study.Regression != nil {
 		models = len(w.study.Regression.Result.Models)
@@ -56,12 +56,9 @@ func (w *work) rows(ctx context.Context) error {
 			return err
 		}
 		defer predictions.abandon()
-		predictions.Write(layout.PredictionsHeader())
+		predictions.Write(layout.PredictionsHeader(w.study.Regression.Smearing != nil))
 	}
-	threads := w.options.Threads
-	if threads <= 0 {
-		threads = runtime.GOMAXPROCS(0)
-	}
+	threads := w.options.threads()
 	follow := newLag(min(k, 1) + models)
 	values := make([]float64, min(k, 1)+models)
 	base := 0.0 // score of the mean row on C1, where a scaling does not centre at the mean
@@ -114,6 +111,10 @@ func (w *work) rows(ctx context.Context) error {
 		}
 	}
 	return nil
+}
+
+func reportLayout(cfg *configs.File) report.RowLayout {
+	return report.RowLayout{Time: cfg.Read.Time != "", Group: cfg.Read.Groups != ""}
 }
 
 // warnOfFollowing says where rows are not independent of the rows before them. The first
@@ -180,15 +181,22 @@ func (w *work) newLineMaker(layout report.RowLayout, k int) *lineMaker {
 // sized returns a slice of n numbers, the old one where it is long enough.
 func sized(old []float64, n int) []float64 { return slices.Grow(old[:0], n)[:n] }
 
-func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredictions bool) {
-	n, p := b.Rows, len(m.w.active)
-	m.x, m.t2, m.spe = sized(m.x, n*p), sized(m.t2, n), sized(m.spe, n)
-	for r := range n {
+// gather puts the channels that take part into x.
+func (m *lineMaker) gather(b *table.Block) {
+	p := len(m.w.active)
+	m.x = sized(m.x, b.Rows*p)
+	for r := range b.Rows {
 		row := b.Data[r*b.Width : r*b.Width+b.Width]
 		for j, i := range m.w.active {
 			m.x[r*p+j] = row[i]
 		}
 	}
+}
+
+func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredictions bool) {
+	n := b.Rows
+	m.t2, m.spe = sized(m.t2, n), sized(m.spe, n)
+	m.gather(b)
 	out.scores = sized(out.scores, n*m.k)
 	m.scorer.Scores(out.scores, m.t2, m.spe, m.x, n)
 	out.scoreText.Reset()
@@ -211,7 +219,11 @@ func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredic
 	if wantPredictions {
 		for r := range n {
 			for i, response := range m.w.study.Regression.Result.Models {
-				out.predictionText.Prediction(m.layout, m.key(b, r), response.Response, out.observed[i][r], out.predicted[i][r], m.half[i][r])
+				var back *pcr.Smearing
+				if s := m.w.study.Regression.Smearing; s != nil {
+					back = &s[i]
+				}
+				out.predictionText.Prediction(m.layout, m.key(b, r), response.Response, out.observed[i][r], out.predicted[i][r], m.half[i][r], back)
 			}
 		}
 	}

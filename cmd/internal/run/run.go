@@ -8,6 +8,7 @@ import (
 	"context"
 	"fmt"
 	"io"
+	"runtime"
 
 	"axisfold/cmd/internal/report"
 	"axisfold/configs"
@@ -28,6 +29,13 @@ type Options struct {
 	// For tests: a bound in place of heldCells, and files that fail.
 	held int64
 	open func(path string) (io.WriteCloser, error)
+}
+
+func (o *Options) threads() int {
+	if o.Threads > 0 {
+		return o.Threads
+	}
+	return runtime.GOMAXPROCS(0)
 }
 
 // Execute runs the run file and returns the study and the folder written. On any error,
@@ -63,7 +71,7 @@ func Execute(ctx context.Context, cfg *configs.File, o Options) (*report.Study, 
 
 // stages runs them in order.
 func (w *work) stages(ctx context.Context) error {
-	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.copies, w.retain, w.uncertainty, w.reduce, w.regress, w.rows, w.draw, w.write} {
+	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.copies, w.retain, w.uncertainty, w.reduce, w.regress, w.smear, w.rows, w.draw, w.write} {
 		if err := stage(ctx); err != nil {
 			return err
 		}
