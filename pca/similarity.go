@@ -1,26 +1,46 @@
 package pca
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
-// SimilarOrder returns an order of the p channels in which like stands beside like, from
-// their correlations, p×p row-major: average-linkage clustering on 1-|r| (Sokal &
-// Michener 1958) by nearest-neighbour chains in O(p²), each merged pair of clusters turned
-// so that its more alike ends meet. Ties go to the lower channel; runs that meet equally
-// well stay as they stand. A correlation that is NaN is the caller's mistake and panics.
-func SimilarOrder(correlations []float64, p int) []int {
+// Tree is how channels join into clusters of like ones.
+type Tree struct {
+	// Order lists the channels so that every cluster stands together, like beside like.
+	Order []int
+	// Joins are p-1; those that a join puts together come before it, but joins of other
+	// branches stand in no particular order.
+	Joins []Join
+}
+
+// Join puts two clusters together. A and B are channels below p, or p plus the position of
+// a join; Distance is the mean of 1-|r| between their channels.
+type Join struct {
+	A, B     int
+	Distance float64
+}
+
+// Cluster joins the p channels by average linkage on 1-|r| (Sokal & Michener 1958), from
+// their correlations, p×p row-major: by nearest-neighbour chains in O(p²), each merged
+// pair of clusters turned so that its more alike ends meet. Ties go to the lower channel;
+// runs that meet equally well stay as they stand. A correlation that is NaN is the
+// caller's mistake and panics.
+func Cluster(correlations []float64, p int) *Tree {
+	tree := &Tree{}
 	if p == 0 {
-		return nil
+		return tree
 	}
 	distance := make([]float64, p*p)
 	for i, r := range correlations {
 		if math.IsNaN(r) {
-			panic("pca: a correlation given to SimilarOrder is NaN")
+			panic("pca: a correlation given to Cluster is NaN")
 		}
 		distance[i] = 1 - math.Abs(r)
 	}
-	members := make([][]int, p)
+	members, name := make([][]int, p), make([]int, p)
 	for j := range members {
-		members[j] = []int{j}
+		members[j], name[j] = []int{j}, j
 	}
 	var chain []int
 	for left := p; left > 1; left-- {
@@ -55,6 +75,8 @@ func SimilarOrder(correlations []float64, p int) []int {
 		if a > b {
 			a, b = b, a
 		}
+		tree.Joins = append(tree.Joins, Join{name[a], name[b], distance[a*p+b]})
+		name[a] = p + len(tree.Joins) - 1
 		na, nb := float64(len(members[a])), float64(len(members[b]))
 		for j, m := range members {
 			if m != nil && j != a && j != b {
@@ -67,10 +89,40 @@ func SimilarOrder(correlations []float64, p int) []int {
 	}
 	for _, m := range members {
 		if m != nil {
-			return m
+			tree.Order = m
 		}
 	}
-	return nil
+	return tree
+}
+
+// Cut returns the clusters of two channels or more that are joined at distance or below,
+// each ascending, in order of their first channel.
+func (t *Tree) Cut(distance float64) [][]int {
+	p := len(t.Order)
+	members := make([][]int, p, p+len(t.Joins))
+	for j := range members {
+		members[j] = []int{j}
+	}
+	open := make([]bool, p, p+len(t.Joins)) // whether the cluster stands by itself
+	for _, join := range t.Joins {
+		whole := join.Distance <= distance && !open[join.A] && !open[join.B]
+		open = append(open, !whole)
+		if whole {
+			members = append(members, slices.Concat(members[join.A], members[join.B]))
+			members[join.A], members[join.B] = nil, nil
+		} else {
+			members = append(members, nil)
+		}
+	}
+	var out [][]int
+	for _, m := range members {
+		if len(m) > 1 {
+			slices.Sort(m)
+			out = append(out, m)
+		}
+	}
+	slices.SortFunc(out, func(a, b []int) int { return a[0] - b[0] })
+	return out
 }
 
 // joinAlike puts two runs of channels end to end, either turned round, so that the two

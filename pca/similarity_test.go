@@ -46,10 +46,83 @@ func TestSimilarOrder(t *testing.T) {
 		// 39, 43).
 		{"five sequences", 5, symmetric(5, .83, .79, .69, .77, .70, .66, .79, .72, .61, .57), []int{4, 1, 0, 2, 3}},
 	} {
-		if got := SimilarOrder(c.r, c.p); !slices.Equal(got, c.want) {
+		if got := Cluster(c.r, c.p).Order; !slices.Equal(got, c.want) {
 			t.Errorf("%s: %v, want %v", c.name, got, c.want)
 		}
 	}
+}
+
+// The joins of the same five sequences, and the clusters at heights between them.
+func TestJoins(t *testing.T) {
+	tree := Cluster(symmetric(5, .83, .79, .69, .77, .70, .66, .79, .72, .61, .57), 5)
+	var heights []float64
+	for _, j := range tree.Joins {
+		heights = append(heights, math.Round(j.Distance*1e12)/1e12)
+	}
+	slices.Sort(heights)
+	if !slices.Equal(heights, []float64{.17, .22, .28, .33}) {
+		t.Errorf("joined at %v", heights)
+	}
+	for _, c := range []struct {
+		at   float64
+		want string
+	}{{.1, "[]"}, {.2, "[[0 1]]"}, {.25, "[[0 1 4]]"}, {.3, "[[0 1 4] [2 3]]"}, {.4, "[[0 1 2 3 4]]"}} {
+		if got := fmt.Sprint(tree.Cut(c.at)); got != c.want && !(c.want == "[]" && len(tree.Cut(c.at)) == 0) {
+			t.Errorf("cut at %g: %s, want %s", c.at, got, c.want)
+		}
+	}
+}
+
+// Any cut has the clusters that merging the nearest pair again and again has, the slow way
+// by definition.
+func TestCutAgainstDefinition(t *testing.T) {
+	for seed := range uint64(20) {
+		p := 4 + int(seed)
+		r := randomCorrelations(p, seed)
+		for _, at := range []float64{.1, .3, .5, .7, .9} {
+			got := fmt.Sprint(Cluster(r, p).Cut(at))
+			if want := fmt.Sprint(cutByDefinition(r, p, at)); got != want {
+				t.Errorf("%d channels cut at %g: %s, by definition %s", p, at, got, want)
+			}
+		}
+	}
+}
+
+func cutByDefinition(r []float64, p int, at float64) [][]int {
+	var sets [][]int
+	for j := range p {
+		sets = append(sets, []int{j})
+	}
+	for {
+		best, a, b := math.Inf(1), 0, 0
+		for i := range sets {
+			for j := range i {
+				sum := 0.0
+				for _, k := range sets[i] {
+					for _, l := range sets[j] {
+						sum += 1 - math.Abs(r[k*p+l])
+					}
+				}
+				if d := sum / float64(len(sets[i])*len(sets[j])); d < best {
+					best, a, b = d, j, i
+				}
+			}
+		}
+		if best > at {
+			break
+		}
+		sets[a] = append(sets[a], sets[b]...)
+		sets = slices.Delete(sets, b, b+1)
+	}
+	var out [][]int
+	for _, m := range sets {
+		if len(m) > 1 {
+			slices.Sort(m)
+			out = append(out, m)
+		}
+	}
+	slices.SortFunc(out, func(a, b []int) int { return a[0] - b[0] })
+	return out
 }
 
 // randomCorrelations are those of p channels that follow a few common stories.
@@ -111,13 +184,13 @@ func TestSimilarOrderAgainstDefinition(t *testing.T) {
 		p := 3 + 2*int(seed)
 		r := randomCorrelations(p, seed)
 		want := slowOrder(r, p)
-		if got := SimilarOrder(r, p); !slices.Equal(got, want) {
+		if got := Cluster(r, p).Order; !slices.Equal(got, want) {
 			t.Errorf("p=%d: %v, want %v", p, got, want)
 		}
 		for i := 1; i < p; i++ {
 			r[i], r[i*p] = -r[i], -r[i*p]
 		}
-		if got := SimilarOrder(r, p); !slices.Equal(got, want) {
+		if got := Cluster(r, p).Order; !slices.Equal(got, want) {
 			t.Errorf("p=%d, channel 0 reversed: %v, want %v", p, got, want)
 		}
 	}
@@ -144,7 +217,7 @@ func TestSimilarOrderOfPairs(t *testing.T) {
 	for _, c := range [][2]int{{0, 1}, {0, 5}, {3, 1}, {3, 5}} {
 		r[c[0]*6+c[1]], r[c[1]*6+c[0]] = .3, .3
 	}
-	order := SimilarOrder(r, 6)
+	order := Cluster(r, 6).Order
 	for i := 0; i < 6; i += 2 {
 		if pair[order[i]] != order[i+1] {
 			t.Fatalf("partners apart: %v", order)
@@ -169,7 +242,7 @@ func TestSimilarOrderIsAnOrder(t *testing.T) {
 				r[i*p+j], r[j*p+i] = v, v
 			}
 		}
-		order := SimilarOrder(r, p)
+		order := Cluster(r, p).Order
 		sorted := slices.Sorted(slices.Values(order))
 		if len(order) != p {
 			t.Fatalf("p=%d: %d channels", p, len(order))
@@ -179,7 +252,7 @@ func TestSimilarOrderIsAnOrder(t *testing.T) {
 				t.Fatalf("p=%d: %v", p, sorted)
 			}
 		}
-		if !slices.Equal(order, SimilarOrder(r, p)) {
+		if !slices.Equal(order, Cluster(r, p).Order) {
 			t.Errorf("p=%d: another order the second time", p)
 		}
 	}
@@ -200,7 +273,7 @@ func TestSimilarOrderRefusesNaN(t *testing.T) {
 			t.Error("no panic")
 		}
 	}()
-	SimilarOrder(symmetric(3, .5, math.NaN(), .5), 3)
+	Cluster(symmetric(3, .5, math.NaN(), .5), 3)
 }
 
 func BenchmarkSimilarOrder(b *testing.B) {
@@ -209,7 +282,7 @@ func BenchmarkSimilarOrder(b *testing.B) {
 		b.Run(fmt.Sprintf("p=%d", p), func(b *testing.B) {
 			b.SetBytes(int64(8 * len(r)))
 			for b.Loop() {
-				SimilarOrder(r, p)
+				Cluster(r, p)
 			}
 		})
 	}

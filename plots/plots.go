@@ -37,6 +37,8 @@ type Material struct {
 	// channels; without it they keep the order of the table.
 	Correlations []float64
 	SimilarOrder []int
+	// Tree is how they join into clusters.
+	Tree *pca.Tree
 	// Scores is a sample of rows, ScoreRows×2 row-major, of TotalRows; Groups their group
 	// codes, positions in GroupNames.
 	Scores     []float64
@@ -77,7 +79,7 @@ type Picture struct {
 }
 
 // Pictures lists all pictures.
-var Pictures = []Picture{scree, cumulativeShare, loadings, loadingsPlane, scoresPlane, correlationMap, retention, tradeoff, rebuilt, validation, coefficients, predictions}
+var Pictures = []Picture{scree, cumulativeShare, loadings, loadingsPlane, scoresPlane, correlationMap, dendrogram, retention, tradeoff, rebuilt, validation, coefficients, predictions}
 
 // Drawing is one picture of one material.
 type Drawing struct {

@@ -21,7 +21,8 @@ func (w *work) draw(context.Context) error {
 		Groups: w.sample.groups, GroupNames: w.sample.names, Observed: w.sample.observed, Predicted: w.sample.predicted}
 	if w.correlations != nil {
 		m.Correlations = w.correlations
-		m.SimilarOrder = pca.SimilarOrder(m.Correlations, len(w.active))
+		m.Tree = pca.Cluster(m.Correlations, len(w.active))
+		m.SimilarOrder = m.Tree.Order
 	}
 	if w.sample.width == 2 {
 		m.Scores, m.ScoreRows = w.sample.scores, len(w.sample.scores)/2
