@@ -6,68 +6,102 @@ import (
 	"axisfold/pca"
 )
 
-// judge fills the held-out numbers: for each fold the equations are fitted on the other
-// folds and their squared error on the fold comes from its summary.
-func (q *problem) judge(s *pca.Summary, folds []*pca.Summary, r *Result) {
+// split is a fold and the rows without it.
+type split struct {
+	train, fold *pca.Summary
+	root        []float64 // of the squares of each channel in train
+}
+
+// splits makes one split per fold that holds rows; none without at least two.
+func (q *problem) splits(s *pca.Summary, folds []*pca.Summary, r *Result) []split {
 	var parts []*pca.Summary
+	rows := 0
 	for _, f := range folds {
 		if f.Count() > 0 {
 			parts = append(parts, f)
+			rows += f.Count()
 		}
 	}
-	m, d := len(r.Kept), len(r.Dropped)
-	if len(parts) < 2 || d == 0 {
-		return
-	}
-	rows := 0
-	for _, f := range parts {
-		rows += f.Count()
+	if len(parts) < 2 {
+		return nil
 	}
 	if rows != s.Count() {
 		r.warn("folds-differ", "the folds hold other rows than the summary; held-out numbers are theirs")
 	}
-	whole := pca.MergeAll(parts...)
-	sums, worst := make([]float64, d), make([]float64, d)
+	out := make([]split, len(parts))
 	for i, fold := range parts {
 		others := make([]*pca.Summary, 0, len(parts)-1)
 		others = append(others, parts[:i]...)
-		train := pca.MergeAll(append(others, parts[i+1:]...)...)
+		t := pca.MergeAll(append(others, parts[i+1:]...)...)
 		root := make([]float64, q.p)
 		for j := range root {
-			root[j] = math.Sqrt(train.CenteredSquares(j))
+			root[j] = math.Sqrt(t.CenteredSquares(j))
 		}
+		out[i] = split{t, fold, root}
+	}
+	return out
+}
+
+// judged is how well a channel is rebuilt on rows that its equation has not seen.
+type judged struct {
+	r2, sd, worst float64 // R² over all folds; residual sd over all, and in the worst fold
+}
+
+// heldOut judges the dropped channels: for each fold the equations are fitted on the other
+// folds and their squared error on the fold comes from its summary.
+func (q *problem) heldOut(splits []split, kept, dropped []int) []judged {
+	if len(dropped) == 0 {
+		return nil
+	}
+	m, d := len(kept), len(dropped)
+	rows := 0
+	sums, out := make([]float64, d), make([]judged, d)
+	parts := make([]*pca.Summary, len(splits))
+	for i, s := range splits {
+		parts[i] = s.fold
+		rows += s.fold.Count()
 		between := func(i, j int) float64 {
-			if root[i] == 0 || root[j] == 0 {
+			if s.root[i] == 0 || s.root[j] == 0 {
 				return 0
 			}
-			return train.CrossProduct(i, j) / root[i] / root[j]
+			return s.train.CrossProduct(i, j) / s.root[i] / s.root[j]
 		}
-		f := factorize(m, func(a, b int) float64 { return between(r.Kept[a], r.Kept[b]) }, q.floor[0]/q.m[0])
+		f := factorize(m, func(a, b int) float64 { return between(kept[a], kept[b]) }, q.floor[0]/q.m[0])
 		each(d, q.Threads, func(k int) {
-			j := r.Dropped[k]
+			j := dropped[k]
 			v := make([]float64, len(f.used))
 			for i, a := range f.used {
-				v[i] = between(j, r.Kept[a])
+				v[i] = between(j, kept[a])
 			}
 			f.solve(v)
 			w := make([]float64, q.p)
 			w[j] = 1
-			offset := fold.Mean(j) - train.Mean(j)
+			offset := s.fold.Mean(j) - s.train.Mean(j)
 			for i, a := range f.used {
-				c := r.Kept[a]
-				w[c] = -v[i] * root[j] / root[c]
-				offset += w[c] * (fold.Mean(c) - train.Mean(c))
+				c := kept[a]
+				w[c] = -v[i] * s.root[j] / s.root[c]
+				offset += w[c] * (s.fold.Mean(c) - s.train.Mean(c))
 			}
-			n := float64(fold.Count())
-			squares := fold.Spread(w) + n*offset*offset
+			n := float64(s.fold.Count())
+			squares := s.fold.Spread(w) + n*offset*offset
 			sums[k] += squares
-			worst[k] = math.Max(worst[k], math.Sqrt(squares/n))
+			out[k].worst = math.Max(out[k].worst, math.Sqrt(squares/n))
 		})
 	}
-	for k, j := range r.Dropped {
-		c := &r.Channels[j]
-		c.HeldOutR2 = 1 - sums[k]/whole.CenteredSquares(j)
-		c.HeldOutSD = math.Sqrt(sums[k] / float64(rows))
-		c.WorstFoldSD = worst[k]
+	all := pca.MergeAll(parts...)
+	for k, j := range dropped {
+		out[k].r2, out[k].sd = 1-sums[k]/all.CenteredSquares(j), math.Sqrt(sums[k]/float64(rows))
+	}
+	return out
+}
+
+// judge fills the held-out numbers of the result.
+func (q *problem) judge(splits []split, r *Result) {
+	if len(splits) == 0 {
+		return
+	}
+	for k, v := range q.heldOut(splits, r.Kept, r.Dropped) {
+		c := &r.Channels[r.Dropped[k]]
+		c.HeldOutR2, c.HeldOutSD, c.WorstFoldSD = v.r2, v.sd, v.worst
 	}
 }

@@ -184,6 +184,31 @@ func TestCurve(t *testing.T) {
 			t.Errorf("point %+v", c)
 		}
 	}
+	// Sets and costs belong to the numbers, and what is held out to the same equations.
+	x := rows(rng, 80, 12, 0.4)
+	folds := []*pca.Summary{summary(x[:40*12], 12), summary(x[40*12:], 12)}
+	cost := []float64{1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12}
+	r = mustChoose(t, pca.MergeAll(folds...), folds, Options{Size: 5, Cost: cost})
+	point := r.Curve[4]
+	worst, mean, total := 1.0, 0.0, 0.0
+	for _, j := range r.Dropped {
+		worst = math.Min(worst, r.Channels[j].HeldOutR2)
+		mean += r.Channels[j].HeldOutR2 / 7
+	}
+	for _, j := range r.Kept {
+		total += cost[j]
+	}
+	if !slices.Equal(point.Set, r.Kept) {
+		t.Errorf("the curve keeps %v, the result %v", point.Set, r.Kept)
+	}
+	near(t, "held-out worst", point.HeldOutWorst, worst, 1e-12)
+	near(t, "held-out mean", point.HeldOutMean, mean, 1e-12)
+	near(t, "cost", point.Cost, total, 0)
+	for _, c := range r.Curve[:11] {
+		if len(c.Set) != c.Kept || !(c.HeldOutWorst <= c.HeldOutMean) {
+			t.Errorf("point %+v", c)
+		}
+	}
 	// Also where the greedy pass that the curve follows would not have found the set.
 	for _, o := range []Options{{Size: 5, Criterion: "rm"}, {Rebuild: .6}, {Rebuild: .6, ExactUpTo: 1}, {Size: 4, Criterion: "mccabe-canonical"}} {
 		r := mustChoose(t, s, nil, o)

@@ -6,6 +6,8 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+
+	"axisfold/pca/reduce"
 )
 
 func hasReduction(s *Study) bool { return s.Reduction != nil }
@@ -60,11 +62,71 @@ func equation(s *Study, j int) string {
 }
 
 func fillTradeoff(s *Study, w *csvWriter) {
-	w.header("kept", "worst_r2", "mean_r2")
+	w.header("kept", "worst_r2", "mean_r2", "heldout_worst_r2", "heldout_mean_r2", "cost", "channels")
 	for _, p := range s.Reduction.Result.Curve {
-		w.whole(int64(p.Kept)).number(p.WorstR2).number(p.MeanR2)
+		w.whole(int64(p.Kept)).number(p.WorstR2).number(p.MeanR2).number(p.HeldOutWorst).number(p.HeldOutMean).number(p.Cost)
+		w.text(namesOf(s, p.Set))
 		w.end()
 	}
+}
+
+func namesOf(s *Study, channels []int) string {
+	names := make([]string, len(channels))
+	for i, j := range channels {
+		names[i] = s.Channels[j].Name
+	}
+	return strings.Join(names, "; ")
+}
+
+// sweepAround is how many numbers of channels before and after the chosen one are shown.
+const sweepAround = 3
+
+// sweep shows what fewer or more channels would give: what one more buys.
+func (p *page) sweep(s *Study) {
+	r := s.Reduction.Result
+	at := slices.IndexFunc(r.Curve, func(c reduce.CurvePoint) bool { return c.Kept == len(r.Kept) })
+	if at < 0 || len(r.Curve) < 2 {
+		return
+	}
+	costs := slices.ContainsFunc(r.Curve, func(c reduce.CurvePoint) bool { return c.Cost != float64(c.Kept) })
+	head := "  fewer or more  worst R2  held out   mean R2"
+	if costs {
+		head += "      cost"
+	}
+	p.line(head + "  against the line above")
+	for i := max(0, at-sweepAround); i < min(len(r.Curve), at+sweepAround+1); i++ {
+		c := r.Curve[i]
+		mark := " "
+		if i == at {
+			mark = ">"
+		}
+		text := fmt.Sprintf("  %s %11d  %8.4f  %8s  %8.4f", mark, c.Kept, c.WorstR2, fixed(c.HeldOutWorst, 4), c.MeanR2)
+		if costs {
+			text += fmt.Sprintf("  %8s", short3(c.Cost))
+		}
+		if i > max(0, at-sweepAround) {
+			text += "  " + p.changes(s, r.Curve[i-1].Set, c.Set)
+		}
+		p.line(strings.TrimRight(text, " "))
+	}
+	p.line("  all numbers, with their sets, in tables/tradeoff.csv")
+}
+
+// changes says which channels come in and which go out from one set to another.
+func (p *page) changes(s *Study, from, to []int) string {
+	list := func(sign string, a, b []int) string {
+		var names []string
+		for _, j := range a {
+			if !slices.Contains(b, j) {
+				names = append(names, sign+middle(s.Channels[j].Name, 16))
+			}
+		}
+		if len(names) > 2 {
+			names = append(names[:2], fmt.Sprintf("%s%d more", sign, len(names)-2))
+		}
+		return strings.Join(names, " ")
+	}
+	return strings.TrimSpace(list("+", to, from) + " " + list("-", from, to))
 }
 
 // reductionDecision is the sentence that says what may go.
@@ -110,6 +172,7 @@ func (p *page) reduction(s *Study) {
 			p.line(fmt.Sprintf("  %-24s  %6.4f  %11s  %17s  %s", middle(s.Channels[j].Name, 24), c.R2FromKept, fixed(c.HeldOutR2, 4), withUnit(short3(c.HeldOutSD), s.Channels[j].Unit), mostly(s, j)))
 		}
 	}
+	p.sweep(s)
 	for i, cluster := range r.Clusters {
 		if i == 6 {
 			p.line(fmt.Sprintf("  and %d more groups of like channels", len(r.Clusters)-i))
