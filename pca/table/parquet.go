@@ -220,14 +220,14 @@ func (p *parquetPass) begin(g parquet.RowGroup) error {
 	meta := p.opened.data.Metadata().RowGroups[p.group-1]
 	total := int64(0)
 	for _, r := range p.readers {
-		largest, err := checkPages(p.opened.at, &meta.Columns[r.at].MetaData)
+		facts, largest, err := checkPages(p.opened.at, &meta.Columns[r.at].MetaData)
 		if err != nil {
 			return fmt.Errorf("column %q: %w", p.of.h.names[r.at], err)
 		}
 		if total += largest; total > mostPageBytes {
 			return fmt.Errorf("the pages of row group %d take more than %d MiB at once", p.group, mostPageBytes>>20)
 		}
-		r.turnTo(chunks[r.at].Pages())
+		r.turnTo(chunks[r.at].Pages(), facts)
 	}
 	return nil
 }

@@ -10,6 +10,7 @@ import (
 	"os"
 	"path/filepath"
 	"slices"
+	"strconv"
 	"strings"
 	"testing"
 	"time"
@@ -363,4 +364,22 @@ func BenchmarkReadParquet(b *testing.B) {
 			}
 		}
 	})
+}
+
+// Pages with fewer bytes than their values take are an error, not what memory held before;
+// fuzzing found this one: decimals of 11 bytes whose type says 24.
+func TestShortPages(t *testing.T) {
+	seed, err := os.ReadFile("testdata/fuzz/FuzzParquet/short-page")
+	if err != nil {
+		t.Fatal(err)
+	}
+	quoted := strings.TrimSuffix(strings.TrimPrefix(strings.Split(string(seed), "\n")[1], "[]byte("), ")")
+	file, err := strconv.Unquote(quoted)
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, err = collect(Options{Files: []string{writeFile(t, "x.parquet", file)}}, chunkBytes, 1)
+	if err == nil || !strings.Contains(err.Error(), "a page of 270 bytes claims 24 values") {
+		t.Errorf("%v", err)
+	}
 }

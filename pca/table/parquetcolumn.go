@@ -1,6 +1,7 @@
 package table
 
 import (
+	"errors"
 	"fmt"
 	"io"
 	"math"
@@ -36,18 +37,24 @@ type parquetColumn struct {
 	scale   int           // of decimals
 	unit    time.Duration // of times
 	zoned   bool          // times are in UTC
-	level   int           // definition level of a value that is there
+	bits    int64         // of a plain value, at least
 	what    string        // of values that mean nothing
 }
 
 // parquetColumnOf reads the type, in its present and its older form.
 func parquetColumnOf(leaf *parquet.Column) parquetColumn {
-	c := parquetColumn{level: leaf.MaxDefinitionLevel(), what: "bytes"}
+	c := parquetColumn{what: "bytes"}
 	if leaf.MaxRepetitionLevel() > 0 {
 		c.what = "lists"
 		return c
 	}
 	t := leaf.Type()
+	c.bits = int64(t.Length())
+	if t.Kind() == parquet.FixedLenByteArray {
+		c.bits *= 8
+	} else if t.Kind() == parquet.ByteArray {
+		c.bits = 32 // its length
+	}
 	switch t.Kind() {
 	case parquet.Boolean:
 		c.meaning = meansTruth
@@ -261,15 +268,30 @@ type columnReader struct {
 	dialect *dialect
 
 	pages  parquet.Pages
+	facts  []pageFacts // of the pages to come
 	page   parquet.Page
 	values parquet.ValueReader
 	buffer [512]parquet.Value
 	unread []parquet.Value
 }
 
-func (r *columnReader) turnTo(pages parquet.Pages) {
+func (r *columnReader) turnTo(pages parquet.Pages, facts []pageFacts) {
 	r.close()
-	r.pages = pages
+	r.pages, r.facts = pages, facts
+}
+
+// check compares the values that a page claims with the room it has for them: the library
+// fills up with what its memory held before.
+func (r *columnReader) check(page parquet.Page) error {
+	if len(r.facts) == 0 {
+		return errors.New("more pages than headers")
+	}
+	f := r.facts[0]
+	r.facts = r.facts[1:]
+	if there := page.NumValues() - page.NumNulls(); f.plain && there*r.column.bits > 8*f.bytes {
+		return fmt.Errorf("a page of %d bytes claims %d values", f.bytes, there)
+	}
+	return nil
 }
 
 func (r *columnReader) close() {
@@ -300,6 +322,9 @@ func (r *columnReader) more(n int) ([]parquet.Value, error) {
 				return nil, err
 			}
 			r.page, r.values = page, page.Values()
+			if err := r.check(page); err != nil {
+				return nil, err
+			}
 		}
 		got, err := r.values.ReadValues(r.buffer[:])
 		r.unread = r.buffer[:got]

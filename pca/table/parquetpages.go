@@ -21,47 +21,59 @@ const (
 	longestHeader  = 16 << 20
 )
 
-// checkPages walks the page headers of a column in a row group and returns about the most
-// memory that one page takes.
-func checkPages(at io.ReaderAt, m *parquetformat.ColumnMetaData) (largest int64, err error) {
+// pageFacts are what a data page has room for.
+type pageFacts struct {
+	plain bool  // each value takes its width
+	bytes int64 // for values, at most
+}
+
+// checkPages walks the page headers of a column in a row group and returns facts about the
+// data pages, and about the most memory that one page takes.
+func checkPages(at io.ReaderAt, m *parquetformat.ColumnMetaData) (facts []pageFacts, largest int64, err error) {
 	start := m.DataPageOffset
 	if m.DictionaryPageOffset > 0 && m.DictionaryPageOffset < start {
 		start = m.DictionaryPageOffset
 	}
 	if start < 0 || m.TotalCompressedSize < 0 {
-		return 0, errors.New("its place in the file is below zero")
+		return nil, 0, errors.New("its place in the file is below zero")
 	}
 	dictionary := int64(0)
 	for place, end := start, start+m.TotalCompressedSize; place < end; {
 		h, size, err := pageHeader(at, place, end)
 		if err != nil {
-			return 0, err
+			return nil, 0, err
 		}
 		place += size
 		values := int64(h.DataPageHeader.V.NumValues) + int64(h.DataPageHeaderV2.V.NumValues) + int64(h.DictionaryPageHeader.V.NumValues)
 		packed, unpacked := int64(h.CompressedPageSize), int64(h.UncompressedPageSize)
 		switch {
 		case packed < 0 || unpacked < 0 || values < 0:
-			return 0, errors.New("a page has a size below zero")
+			return nil, 0, errors.New("a page has a size below zero")
 		case packed > end-place:
-			return 0, io.ErrUnexpectedEOF
+			return nil, 0, io.ErrUnexpectedEOF
 		case unpacked > mostPageBytes:
-			return 0, fmt.Errorf("a page unpacks to %d MiB, more than %d MiB", unpacked>>20, mostPageBytes>>20)
+			return nil, 0, fmt.Errorf("a page unpacks to %d MiB, more than %d MiB", unpacked>>20, mostPageBytes>>20)
 		case values > mostPageValues:
-			return 0, fmt.Errorf("a page holds %d values, more than %d", values, mostPageValues)
+			return nil, 0, fmt.Errorf("a page holds %d values, more than %d", values, mostPageValues)
 		}
 		if err := checkUnpacked(at, place, packed, h, m.Codec); err != nil {
-			return 0, err
+			return nil, 0, err
 		}
 		size = unpacked + 8*values
 		if h.Type == parquetformat.DictionaryPage {
 			dictionary = size
 		} else {
 			largest = max(largest, size)
+			v1, v2 := h.DataPageHeader.V, h.DataPageHeaderV2
+			p := pageFacts{v1.Encoding == parquetformat.Plain, unpacked}
+			if v2.Valid {
+				p = pageFacts{v2.V.Encoding == parquetformat.Plain, unpacked - int64(v2.V.RepetitionLevelsByteLength) - int64(v2.V.DefinitionLevelsByteLength)}
+			}
+			facts = append(facts, p)
 		}
 		place += packed
 	}
-	return largest + dictionary, nil
+	return facts, largest + dictionary, nil
 }
 
 // pageHeader reads the header at a place and tells its size.

@@ -6,9 +6,12 @@ import (
 	"encoding/csv"
 	"encoding/json"
 	"fmt"
+	"math/rand/v2"
+	"net/url"
 	"os"
 	"path/filepath"
 	"reflect"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
@@ -19,6 +22,7 @@ import (
 	_ "modernc.org/sqlite"
 
 	"axisfold/configs"
+	"axisfold/pca"
 	"axisfold/pca/table"
 )
 
@@ -82,10 +86,8 @@ var writers = map[string]func(t *testing.T, dir string, header []string, rows []
 			t.Fatal(err)
 		}
 		defer db.Close()
-		for _, statement := range statements(header, rows, "real", "text") {
-			if _, err := db.Exec(statement); err != nil {
-				t.Fatal(err)
-			}
+		if _, err := db.Exec("begin;" + strings.Join(statements(header, rows, "real", "text"), ";") + ";commit"); err != nil {
+			t.Fatal(err)
 		}
 		return "files: x.db"
 	},
@@ -244,5 +246,127 @@ func TestFormatsAgree(t *testing.T) {
 				t.Errorf("predictions differ from those of csv:\n%.400s\n%.400s", scores[format], scores["csv"])
 			}
 		})
+	}
+}
+
+// Streamed tables give the same bits for any number of threads, in every format.
+func TestFormatsOnThreads(t *testing.T) {
+	header := []string{"number", "group", "a", "b", "y"}
+	var rows [][]string
+	rng := rand.New(rand.NewPCG(9, 8))
+	for i := range 6000 {
+		u := rng.NormFloat64()
+		row := []string{strconv.Itoa(i + 1), fmt.Sprint("g", i/1500)}
+		for j := range 3 {
+			row = append(row, strconv.FormatFloat(u+rng.NormFloat64()*float64(j+1), 'f', 6, 64))
+		}
+		if i > 0 && rng.IntN(50) == 0 {
+			row[3] = ""
+		}
+		rows = append(rows, row)
+	}
+	for _, format := range table.Formats() {
+		t.Run(format, func(t *testing.T) {
+			dir := t.TempDir()
+			text := "axisfold: 1\nread: {" + writers[format](t, dir, header, rows) + ", time: number, groups: group}\nregress: {response: y, retain: {rule: cross-validation, folds: 4}}\n"
+			path := filepath.Join(dir, "run.yaml")
+			if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
+				t.Fatal(err)
+			}
+			first := map[string]string{}
+			for _, threads := range []int{1, 2, 5} {
+				cfg, err := configs.Load(path, nil)
+				if err != nil {
+					t.Fatal(err)
+				}
+				out := filepath.Join(dir, "out")
+				study, _, err := Execute(t.Context(), cfg, Options{Out: out, Threads: threads, held: 1000})
+				if err != nil {
+					t.Fatal(err)
+				}
+				if study.Table.Held || study.Table.Rows != 6000 {
+					t.Fatalf("held %v, %d rows", study.Table.Held, study.Table.Rows)
+				}
+				for _, name := range []string{"results.json", "model.json", "tables/scores.csv", "tables/predictions.csv"} {
+					b, err := os.ReadFile(filepath.Join(out, name))
+					if err != nil {
+						t.Fatal(err)
+					}
+					if threads == 1 {
+						first[name] = string(b)
+					} else if first[name] != string(b) {
+						t.Errorf("%s differs with %d threads", name, threads)
+					}
+				}
+			}
+		})
+	}
+}
+
+// What is written tells nothing of the connection but the variable's name; the manifest
+// identifies the rows; a query without an order brings a warning.
+func TestServerLeavesNoSecrets(t *testing.T) {
+	header, rows := printedTable(t, "us_arrests_1973.csv")
+	header[0] = "number"
+	dir := t.TempDir()
+	read := strings.TrimSuffix(writers["postgres"](t, dir, header, rows), " order by number")
+	path := filepath.Join(dir, "run.yaml")
+	if err := os.WriteFile(path, []byte("axisfold: 1\nread: {"+read+"}\ndraw:\n"), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	cfg, err := configs.Load(path, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	out := filepath.Join(dir, "out")
+	study, _, err := Execute(t.Context(), cfg, Options{Out: out})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !slices.ContainsFunc(study.Warnings, func(w pca.Warning) bool { return w.Code == "unordered-rows" }) {
+		t.Errorf("%+v", study.Warnings)
+	}
+	server, err := url.Parse(os.Getenv(postgresVariable))
+	if err != nil {
+		t.Fatal(err)
+	}
+	password, _ := server.User.Password()
+	if password == "" {
+		t.Fatal("the test server needs a password")
+	}
+	files, digest := 0, ""
+	err = filepath.WalkDir(out, func(path string, d os.DirEntry, err error) error {
+		if err != nil || d.IsDir() {
+			return err
+		}
+		content, err := os.ReadFile(path)
+		for _, secret := range []string{password, server.Host, server.String()} {
+			if strings.Contains(string(content), secret) {
+				t.Errorf("%s holds %q", path, secret)
+			}
+		}
+		if filepath.Base(path) == "manifest.json" {
+			var m struct {
+				Inputs []struct{ Path, SHA256 string }
+			}
+			if err := json.Unmarshal(content, &m); err != nil {
+				return err
+			}
+			digest = m.Inputs[0].Path + " " + m.Inputs[0].SHA256
+		}
+		files++
+		return err
+	})
+	if err != nil || files < 10 || len(digest) != len("postgres ")+64 {
+		t.Errorf("%d files, %q: %v", files, digest, err)
+	}
+	// The resolved run file does the same again.
+	again, err := configs.Load(filepath.Join(out, "run.yaml"), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	second, _, err := Execute(t.Context(), again, Options{Out: filepath.Join(dir, "again")})
+	if err != nil || !reflect.DeepEqual(second.Table.Files, study.Table.Files) {
+		t.Errorf("%+v, before %+v: %v", second.Table.Files, study.Table.Files, err)
 	}
 }
