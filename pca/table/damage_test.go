@@ -7,6 +7,7 @@ import (
 	"math/rand/v2"
 	"os"
 	"path/filepath"
+	"sync/atomic"
 	"testing"
 
 	"github.com/parquet-go/parquet-go"
@@ -90,18 +91,18 @@ func formatFor(name string) string {
 // failingAt is a file whose nth read fails.
 type failingAt struct {
 	*os.File
-	left *int
+	left *atomic.Int64
 }
 
 func (f *failingAt) Read(p []byte) (int, error) {
-	if *f.left--; *f.left == 0 {
+	if f.left.Add(-1) == 0 {
 		return 0, errBroken
 	}
 	return f.File.Read(p)
 }
 
 func (f *failingAt) ReadAt(p []byte, off int64) (int, error) {
-	if *f.left--; *f.left == 0 {
+	if f.left.Add(-1) == 0 {
 		return 0, errBroken
 	}
 	return f.File.ReadAt(p, off)
@@ -118,7 +119,8 @@ func TestFailingReadsAt(t *testing.T) {
 			t.Fatal(err)
 		}
 		for n := 1; ; n++ {
-			left := n
+			var left atomic.Int64
+			left.Store(int64(n))
 			open := func(path string) (io.ReadCloser, error) {
 				f, err := os.Open(path)
 				return &failingAt{f, &left}, err
@@ -128,7 +130,7 @@ func TestFailingReadsAt(t *testing.T) {
 			if err == nil {
 				got, err = gather(tab, 2, Options{})
 			}
-			if left > 0 {
+			if left.Load() > 0 {
 				if err != nil {
 					t.Errorf("%s: %d reads, none failed: %v", name, n, err)
 				}

@@ -8,8 +8,10 @@ import (
 	"fmt"
 	"io"
 	"os"
+	"runtime"
 	"slices"
 	"strings"
+	"sync"
 
 	"github.com/parquet-go/parquet-go"
 )
@@ -247,14 +249,19 @@ func (p *parquetPass) fill(b *Block, n int) error {
 	for i := range n {
 		b.Offset, b.lines = append(b.Offset, int32(i)), append(b.lines, int32(i+1))
 	}
+	if err := p.readAll(b, n); err != nil {
+		return err
+	}
 	var first *Error
 	for _, r := range p.readers {
-		bad, err := r.read(b, n)
-		if err != nil {
-			return fmt.Errorf("column %q after row %d: %w", p.of.h.names[r.at], p.rows, err)
+		if r.bad != nil && (first == nil || r.bad.Line < first.Line) {
+			first = r.bad
 		}
-		if bad != nil && (first == nil || bad.Line < first.Line) {
-			first = bad
+		if r.rounded > 0 {
+			if b.remarks == nil {
+				b.remarks = map[remark]int64{}
+			}
+			b.remarks[remark{r.to, roundedRemark}] = r.rounded
 		}
 	}
 	p.left -= n
@@ -264,6 +271,38 @@ func (p *parquetPass) fill(b *Block, n int) error {
 	}
 	p.rows += n
 	b.newBy = n
+	return nil
+}
+
+// readAll reads n rows of the columns, those of numbers on all cores: a column goes to its
+// own places in the block. Of several errors the first column's counts.
+func (p *parquetPass) readAll(b *Block, n int) error {
+	errs := make([]error, len(p.readers))
+	read := func(i int) {
+		errs[i] = p.of.guarded(func() error { return p.readers[i].read(b, n) })
+	}
+	threads := min(runtime.GOMAXPROCS(0), len(p.readers)/4)
+	var wg sync.WaitGroup
+	for t := range threads {
+		wg.Go(func() {
+			for i := t * len(p.readers) / threads; i < (t+1)*len(p.readers)/threads; i++ {
+				if p.readers[i].use == number {
+					read(i)
+				}
+			}
+		})
+	}
+	wg.Wait()
+	for i, r := range p.readers {
+		if threads == 0 || r.use != number {
+			read(i)
+		}
+		var own *Error
+		if errors.As(errs[i], &own) {
+			own.Problem = fmt.Sprintf("column %q after row %d: %s", p.of.h.names[r.at], p.rows, own.Problem)
+			return own
+		}
+	}
 	return nil
 }
 

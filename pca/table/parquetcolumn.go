@@ -273,6 +273,10 @@ type columnReader struct {
 	values parquet.ValueReader
 	buffer [512]parquet.Value
 	unread []parquet.Value
+
+	// Of the rows read last: the first value that is no number, and how many are rounded.
+	bad     *Error
+	rounded int64
 }
 
 func (r *columnReader) turnTo(pages parquet.Pages, facts []pageFacts) {
@@ -339,14 +343,14 @@ func (r *columnReader) more(n int) ([]parquet.Value, error) {
 	return out, nil
 }
 
-// read puts the next n values where they belong in the block. bad is the first value that
-// is no number, in the row counted from 1 in the block.
-func (r *columnReader) read(b *Block, n int) (bad *Error, err error) {
-	rounded := int64(0)
+// read puts the next n values where they belong in the block. It notes the first value
+// that is no number, in the row counted from 1 in the block.
+func (r *columnReader) read(b *Block, n int) error {
+	r.bad, r.rounded = nil, 0
 	for row := 0; row < n; {
 		values, err := r.more(n - row)
 		if err != nil {
-			return nil, err
+			return err
 		}
 		for i := range values {
 			v := &values[i]
@@ -359,25 +363,19 @@ func (r *columnReader) read(b *Block, n int) (bad *Error, err error) {
 			if !v.IsNull() {
 				var off bool
 				if x, off = r.column.number(v); off {
-					rounded++
+					r.rounded++
 				}
 				x = r.dialect.coded(x)
 			}
-			if math.IsInf(x, 0) && bad == nil {
-				bad = &Error{Kind: BadContent, File: r.of.file, Line: row + 1, Column: r.at + 1, Name: r.of.h.names[r.at], counted: "row",
+			if math.IsInf(x, 0) && r.bad == nil {
+				r.bad = &Error{Kind: BadContent, File: r.of.file, Line: row + 1, Column: r.at + 1, Name: r.of.h.names[r.at], counted: "row",
 					absolute: true, Problem: fmt.Sprintf("%v is not a finite number", x)}
 			}
 			b.Data[row*b.Width+r.to] = x
 			row++
 		}
 	}
-	if rounded > 0 {
-		if b.remarks == nil {
-			b.remarks = map[remark]int64{}
-		}
-		b.remarks[remark{r.to, roundedRemark}] += rounded
-	}
-	return bad, nil
+	return nil
 }
 
 // carry takes a value of the time or group column along as text.
