@@ -27,6 +27,9 @@ type Error struct {
 	Name    string
 	Problem string
 	Hint    string
+	// Cell is the text of a cell that is no number where one was expected; empty for other
+	// errors.
+	Cell string
 
 	absolute bool   // Line counts from the start of the file
 	counted  string // what Line counts; empty: lines of text

@@ -208,9 +208,11 @@ func (p *parser) badCell(b *Block, l *layout, c, line int, cell []byte, fault qu
 		e.Problem = fmt.Sprintf("text follows the closing quote of %q", shown)
 		e.Hint = "a quote within a quoted cell is written twice"
 	case infinite(cell, l.dialect.point):
+		e.Cell = string(cell)
 		e.Problem = fmt.Sprintf("%q is not a finite number", shown)
 		e.Hint = fmt.Sprintf("add %q to read.missing if it stands for a missing value", shown)
 	default:
+		e.Cell = string(cell)
 		e.Problem = fmt.Sprintf("%q is not a number", shown)
 		e.Hint = fmt.Sprintf("add %q to read.missing if it stands for a missing value, or name the column in read.leave_out", shown)
 		if l.dialect.point == '.' && looksDecimalComma(cell) {

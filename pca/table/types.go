@@ -42,7 +42,8 @@ type sampleColumn struct {
 	filled, numbers, missing int
 	times, bytes, truths     int // among the filled, of typed tables
 	examples                 []string
-	declared                 string // what a typed table says the values are, when no numbers
+	declared                 string         // what a typed table says the values are, when no numbers
+	words                    map[string]int // how often each text occurs, of the first few different ones
 }
 
 func (s *sampleColumn) add(cell []byte, d *dialect) {
@@ -63,6 +64,7 @@ func (s *sampleColumn) add(cell []byte, d *dialect) {
 			break
 		}
 		text := string(cell)
+		s.word(text)
 		if len(s.examples) < 3 && !contains(s.examples, text) {
 			s.examples = append(s.examples, text)
 		}
