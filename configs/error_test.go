@@ -291,7 +291,7 @@ hint: did you mean "parallel"?
 pump.yaml:4:41: unknown key "percent" in retain
 hint: did you mean "percentile"?
 pump.yaml:4:54: unknown key "colour" in retain
-hint: known: components, at_least, value, reference, percentile, replicates, power, alpha, noise
+hint: known: components, at_least, value, reference, percentile, rows, replicates, power, alpha, noise
 `},
 	{"rule of another stage", start + "retain: {rule: one-standard-error}\n", nil, `
 pump.yaml:4:16: retain.rule: "one-standard-error" is not known

@@ -72,6 +72,7 @@ type Rule struct {
 	Value          float64 `key:"value"`
 	Reference      string  `key:"reference"`
 	Percentile     float64 `key:"percentile"`
+	Rows           string  `key:"rows"`
 	Replicates     int     `key:"replicates"`
 	Power          int     `key:"power"`
 	Alpha          float64 `key:"alpha"`

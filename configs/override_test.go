@@ -20,7 +20,7 @@ func TestOverrides(t *testing.T) {
 		{[]string{"retain.at_least=0.7"}, func(f *File) { f.Retain.AtLeast = 0.7 }},
 		{[]string{"retain={rule: fixed, components: 3}"}, func(f *File) { f.Retain = Rule{Rule: "fixed", Components: 3} }},
 		{[]string{"retain=", "retain.percentile=90"}, func(f *File) {
-			f.Retain = Rule{Rule: "parallel", Reference: "percentile", Percentile: 90}
+			f.Retain = Rule{Rule: "parallel", Reference: "percentile", Percentile: 90, Rows: "effective"}
 		}},
 		{[]string{"draw="}, func(f *File) { f.Draw = &Draw{Formats: []string{"svg"}} }},
 		{[]string{"draw.formats=[png]"}, func(f *File) { f.Draw = &Draw{Formats: []string{"png"}} }},

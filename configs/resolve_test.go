@@ -48,7 +48,7 @@ standardize:
   constant: drop
   channels: {flow_7: {transform: log, scaling: none}, "t*": {transform: square-root}}
 decompose: {matrix: correlation, route: svd}
-retain: {rule: parallel, reference: mean, percentile: 99.5, replicates: 500}
+retain: {rule: parallel, reference: mean, percentile: 99.5, rows: effective, replicates: 500}
 regress:
   response: head_loss
   predictors: ["flow_*", t_in]
@@ -67,7 +67,7 @@ func TestEverySettingIsRead(t *testing.T) {
 		Standardize: Standardize{Scaling: "none", Constant: "drop", Channels: []Channel{
 			{Name: "flow_7", Scaling: "none", Transform: "log"}, {Name: "t*", Transform: "square-root"}}},
 		Decompose: Decompose{Matrix: "correlation", Route: "svd"},
-		Retain:    Rule{Rule: "parallel", Reference: "mean", Percentile: 99.5, Replicates: 500},
+		Retain:    Rule{Rule: "parallel", Reference: "mean", Percentile: 99.5, Rows: "effective", Replicates: 500},
 		Regress: &Regress{Response: []string{"head_loss"}, Predictors: []string{"flow_*", "t_in"},
 			Retain:     Rule{Rule: "cross-validation", Folds: 5, Arrangement: "groups", Order: "correlation", MostComponents: 4},
 			Confidence: 0.9},
@@ -84,7 +84,7 @@ func TestDefaults(t *testing.T) {
 			Header: true, Gaps: "complete-rows", Spill: 8},
 		Standardize: Standardize{Scaling: "unit-normal", Constant: "error"},
 		Decompose:   Decompose{Matrix: "correlation", Route: "auto"},
-		Retain:      Rule{Rule: "parallel", Reference: "percentile", Percentile: 95},
+		Retain:      Rule{Rule: "parallel", Reference: "percentile", Percentile: 95, Rows: "effective"},
 		Regress: &Regress{Response: []string{"y"}, Intercept: true,
 			Retain: Rule{Rule: "one-standard-error", Folds: 10, Arrangement: "blocks", Order: "variance"}, Confidence: 0.95},
 		Draw:  &Draw{Formats: []string{"svg"}},
@@ -103,7 +103,7 @@ func TestDefaultsOfRules(t *testing.T) {
 		"share":                {AtLeast: 0.9},
 		"eigenvalue-above":     {Value: 1},
 		"broken-stick":         {},
-		"parallel":             {Reference: "percentile", Percentile: 95},
+		"parallel":             {Reference: "percentile", Percentile: 95, Rows: "effective"},
 	} {
 		f := load(t, start+"retain: {rule: "+text+"}\n")
 		want.Rule = f.Retain.Rule
@@ -116,7 +116,7 @@ func TestDefaultsOfRules(t *testing.T) {
 		"share":                {AtLeast: 0.9},
 		"eigenvalue-above":     {Value: 1},
 		"broken-stick":         {},
-		"parallel":             {Reference: "percentile", Percentile: 95},
+		"parallel":             {Reference: "percentile", Percentile: 95, Rows: "effective"},
 		"cross-validation":     {},
 		"one-standard-error":   {},
 	} {
@@ -185,7 +185,7 @@ standardize:
 decompose:
   matrix: correlation
   route: svd
-retain: {rule: parallel, reference: mean, percentile: 99.5, replicates: 500}
+retain: {rule: parallel, reference: mean, percentile: 99.5, rows: effective, replicates: 500}
 regress:
   response: [head_loss]
   predictors: ["flow_*", t_in]
@@ -227,7 +227,7 @@ standardize:
 decompose:
   matrix: correlation
   route: auto
-retain: {rule: parallel, reference: percentile, percentile: 95, replicates: auto}
+retain: {rule: parallel, reference: percentile, percentile: 95, rows: effective, replicates: auto}
 regress:
   response: ["y"]
   predictors: []

@@ -37,6 +37,7 @@ var rules = []listed{
 	{either, RuleDescription{"parallel", "eigenvalues above those of independent channels of the same shape", []Key{
 		{Name: "reference", Kind: Word, Allowed: []string{"percentile", "mean"}, Default: "percentile", Doc: "what of the replicates an eigenvalue must exceed"},
 		{Name: "percentile", Kind: Number, Range: below(100), Default: 95.0, Doc: "with reference: percentile"},
+		{Name: "rows", Kind: Word, Allowed: []string{"effective", "counted"}, Default: "effective", Doc: "effective takes rows that follow one another for as many independent ones as they are worth; counted takes each for one"},
 		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Blank: "auto", Doc: "tables of independent channels to draw; auto takes 1000, on large tables fewer, whose roots vary less"}}}},
 	{either, RuleDescription{"minimum-average-partial", "the number after which channels are least correlated with one another", []Key{
 		{Name: "power", Kind: Whole, Range: from(2, 4), Default: 4, Doc: "of the partial correlations; 2 is the first form, 4 the revised one"}}}},

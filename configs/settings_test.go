@@ -47,6 +47,7 @@ decompose.route auto (default)
 retain.rule parallel (default)
 retain.reference percentile (default)
 retain.percentile 90
+retain.rows effective (default)
 retain.replicates auto (default)
 regress.response [head]
 regress.predictors [] (default)

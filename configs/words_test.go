@@ -76,7 +76,7 @@ func TestRulesOfTheStages(t *testing.T) {
 		t.Errorf("the run file knows %v, the stages %v", second, names)
 	}
 	d := retain.Defaults()
-	defaults := map[string]any{"at_least": d.AtLeast, "value": d.Value, "reference": d.Reference, "percentile": d.Percentile, "replicates": nil, // auto, 0 in both
+	defaults := map[string]any{"at_least": d.AtLeast, "value": d.Value, "reference": d.Reference, "percentile": d.Percentile, "rows": d.Rows, "replicates": nil, // auto, 0 in both
 		"power": d.Power, "alpha": d.Alpha, "noise": d.Noise}
 	for _, r := range child(t, configs.Keys(), "retain").Rules {
 		for _, p := range r.Parameters {

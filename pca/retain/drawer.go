@@ -30,8 +30,8 @@ type drawer struct {
 	work  symeig.Work
 }
 
-func newDrawer(e *Evidence) *drawer {
-	p, free := e.Width(), e.Rows-1
+func newDrawer(e *Evidence, rows int) *drawer {
+	p, free := e.Width(), rows-1
 	d := &drawer{e: e, free: free}
 	side := min(p, free)
 	d.draws = make([]float64, p*side)
@@ -56,7 +56,7 @@ func (d *drawer) roots(dst []float64, replicate uint64) {
 	if d.e.Matrix == pca.Covariance {
 		divisor = float64(d.free)
 	}
-	for a := range dst {
+	for a := range min(len(dst), side) {
 		dst[a] = math.Max(d.all[a], 0) / divisor
 	}
 }

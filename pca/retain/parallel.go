@@ -18,6 +18,7 @@ var parallel = Rule{
 	variants: []Settings{
 		with(func(s *Settings) { s.Reference = "percentile" }),
 		with(func(s *Settings) { s.Reference = "mean" }),
+		with(func(s *Settings) { s.Reference, s.Rows = "percentile", "counted" }),
 	},
 	apply: applyParallel,
 }
@@ -27,8 +28,16 @@ func applyParallel(e *Evidence, s Settings) Verdict {
 	if s.Reference != "mean" {
 		v.Setting = fmt.Sprintf("percentile %g", s.Percentile)
 	}
+	rows, among := e.Rows, ""
+	if e.Effective > 0 && e.Effective < e.Rows {
+		if s.Rows == "counted" {
+			v.Setting += ", counted"
+		} else {
+			rows, among = e.Effective, fmt.Sprintf(" in %d rows, which is what these are worth", e.Effective)
+		}
+	}
 	if s.Replicates == 0 {
-		s.Replicates = usualReplicates(e)
+		s.Replicates = usualReplicates(e.Width(), rows)
 	}
 	if s.Replicates != mostReplicates {
 		v.Setting += fmt.Sprintf(", %d replicates", s.Replicates)
@@ -38,7 +47,7 @@ func applyParallel(e *Evidence, s Settings) Verdict {
 		v.Steps = []Step{{Value: e.Values[0], Kept: true}}
 		return v
 	}
-	roots := NullRoots(e, s.Replicates)
+	roots := NullRoots(e, rows, s.Replicates)
 	m := len(e.Values)
 	column := make([]float64, s.Replicates)
 	going := true
@@ -48,7 +57,7 @@ func applyParallel(e *Evidence, s Settings) Verdict {
 		}
 		slices.Sort(column)
 		reference, slip := referenceRoot(column, s)
-		going = going && e.Values[a] > reference && a < e.Rank
+		going = going && e.Values[a] > reference && a < min(e.Rank, rows-1)
 		v.Steps = append(v.Steps, Step{Value: e.Values[a], Threshold: reference, Kept: going})
 		v.Reference = append(v.Reference, reference)
 		first := a == 0 || v.Steps[a-1].Kept
@@ -60,8 +69,8 @@ func applyParallel(e *Evidence, s Settings) Verdict {
 	v.Components = leading(v.Steps)
 	if v.Components < m {
 		next := v.Steps[v.Components]
-		v.Note = fmt.Sprintf("root %d is %.3f; independent channels reach %.3f",
-			v.Components+1, next.Value, next.Threshold)
+		v.Note = fmt.Sprintf("root %d is %.3f; independent channels reach %.3f%s",
+			v.Components+1, next.Value, next.Threshold, among)
 	} else {
 		v.Note = "every root is above its reference"
 	}
@@ -79,9 +88,9 @@ const (
 
 // usualReplicates counts, for one replicate, a hundred operations a random number, the
 // cross-products of the longer side and the roots of the shorter.
-func usualReplicates(e *Evidence) int {
-	p, free := float64(e.Width()), float64(e.Rows-1)
-	side := min(p, free)
+func usualReplicates(channels, rows int) int {
+	p := float64(channels)
+	side := min(p, float64(rows-1))
 	return int(max(leastReplicates, min(mostReplicates, replicateWork/(p*side*(100+side)+3*side*side*side))))
 }
 
@@ -120,12 +129,16 @@ func referenceRoot(sorted []float64, s Settings) (reference, slip float64) {
 	return at(h), (at(h+d) - at(h-d)) / 2
 }
 
-// NullRoots returns the leading min(p, n-1) roots of replicates tables of e's shape whose
-// channels are independent and normal, replicates×m row-major, each row descending. Every
-// replicate has its own random stream, so the numbers do not depend on the threads. They
-// are kept with e and must not be changed.
-func NullRoots(e *Evidence, replicates int) []float64 {
-	if have, ok := e.null[replicates]; ok {
+// draws names a set of null roots.
+type draws struct{ rows, replicates int }
+
+// NullRoots returns the leading len(e.Values) roots of replicates tables of so many rows
+// whose channels are those of e but independent and normal, replicates×m row-major, each
+// row descending; roots that so few rows do not have are 0. Every replicate has its own
+// random stream, so the numbers do not depend on the threads. They are kept with e and
+// must not be changed.
+func NullRoots(e *Evidence, rows, replicates int) []float64 {
+	if have, ok := e.null[draws{rows, replicates}]; ok {
 		return have
 	}
 	m := len(e.Values)
@@ -138,7 +151,7 @@ func NullRoots(e *Evidence, replicates int) []float64 {
 	var wg sync.WaitGroup
 	for t := range threads {
 		wg.Go(func() {
-			draw := newDrawer(e)
+			draw := newDrawer(e, rows)
 			for r := t; r < replicates; r += threads {
 				draw.roots(out[r*m:(r+1)*m], uint64(r))
 			}
@@ -146,8 +159,8 @@ func NullRoots(e *Evidence, replicates int) []float64 {
 	}
 	wg.Wait()
 	if e.null == nil {
-		e.null = map[int][]float64{}
+		e.null = map[draws][]float64{}
 	}
-	e.null[replicates] = out
+	e.null[draws{rows, replicates}] = out
 	return out
 }

@@ -6,6 +6,7 @@ package retain
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"axisfold/pca"
@@ -13,8 +14,11 @@ import (
 
 // Evidence is what the rules judge: the roots of one table.
 type Evidence struct {
-	Rows   int // n
-	Matrix pca.Matrix
+	Rows int // n
+	// Effective is the number of independent rows whose correlations vary as much by chance
+	// as those of these rows, see [EffectiveRows]; 0 where that is not known or all n.
+	Effective int
+	Matrix    pca.Matrix
 	// Values are the eigenvalues, descending, min(p, n-1) of them.
 	Values []float64
 	// Vectors are the eigenvectors, p×len(Values) row-major; rules that look at single
@@ -32,9 +36,8 @@ type Evidence struct {
 	Seed         uint64
 	Threads      int // the verdict does not depend on it
 
-	// null keeps the roots of independent channels by number of replicates: several
-	// verdicts rest on the same draws.
-	null map[int][]float64
+	// null keeps the roots of independent channels: several verdicts rest on the same draws.
+	null map[draws][]float64
 }
 
 // EvidenceFor gathers the evidence from a decomposition. deviations are the standard
@@ -61,6 +64,7 @@ type Settings struct {
 	Value      float64 // eigenvalue-above, as a multiple of the mean root
 	Reference  string  // parallel: "mean" or "percentile"
 	Percentile float64 // parallel
+	Rows       string  // parallel: "effective" takes Evidence.Effective, "counted" all rows
 	Replicates int     // parallel, parallel-shifts; 0 takes 1000, or fewer on a large table
 	Power      int     // minimum-average-partial: 2 (1976) to 4 (2000)
 	Alpha      float64 // equal-roots, tracy-widom: of each test
@@ -69,7 +73,7 @@ type Settings struct {
 
 // Defaults returns the settings a careful analyst would start from.
 func Defaults() Settings {
-	return Settings{Components: 1, AtLeast: 0.9, Value: 1, Reference: "percentile", Percentile: 95, Power: 4, Alpha: 0.05}
+	return Settings{Components: 1, AtLeast: 0.9, Value: 1, Reference: "percentile", Percentile: 95, Rows: "effective", Power: 4, Alpha: 0.05}
 }
 
 // Step is the evidence of a rule on one component: kept while value beats threshold.
@@ -135,7 +139,7 @@ func Overview(e *Evidence, decided Verdict) []Verdict {
 	for _, r := range Rules {
 		for _, s := range r.variants {
 			v := r.run(e, s)
-			if v.Rule != decided.Rule || v.Setting != decided.Setting {
+			if !slices.ContainsFunc(out, func(o Verdict) bool { return o.Rule == v.Rule && o.Setting == v.Setting }) {
 				out = append(out, v)
 			}
 		}

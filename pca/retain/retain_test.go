@@ -182,7 +182,7 @@ func TestParallelRoutesAgree(t *testing.T) {
 			for j := range e.Deviations {
 				e.Deviations[j] = 1
 			}
-			roots := retain.NullRoots(e, 2000)
+			roots := retain.NullRoots(e, e.Rows, 2000)
 			sum := 0.0
 			for _, l := range roots {
 				sum += l * l
@@ -209,7 +209,7 @@ func TestParallelThreads(t *testing.T) {
 	for _, threads := range []int{1, 2, 3, 7} {
 		e := evidence(40, []float64{3, 1, .5, .3, .2})
 		e.Threads = threads
-		roots := retain.NullRoots(e, 50)
+		roots := retain.NullRoots(e, e.Rows, 50)
 		if first == nil {
 			first = roots
 		} else if !slices.Equal(first, roots) {
@@ -265,7 +265,7 @@ func BenchmarkParallel(b *testing.B) {
 			b.Run(fmt.Sprintf("n=%d/p=%d/replicates=100", n, p), func(b *testing.B) {
 				for b.Loop() {
 					fresh := *e // without the roots kept from the round before
-					retain.NullRoots(&fresh, 100)
+					retain.NullRoots(&fresh, fresh.Rows, 100)
 				}
 			})
 		}

@@ -25,6 +25,7 @@ type reading struct {
 	rows     int64 // data rows of the table
 	complete int64
 	missing  []int64 // by column in use
+	follow   *following
 	// For a table too large to hold, the summaries made on the way; nil otherwise.
 	stream *collector
 }
@@ -33,7 +34,7 @@ type reading struct {
 // proves too large, what was read is summarised and the rest streams through summaries.
 // Rows then also go to the spill, if there is one; where that fails they are read again.
 func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, form pca.Form, spill *table.Spill, o Options) (*reading, error) {
-	out := &reading{missing: make([]int64, r.width())}
+	out := &reading{missing: make([]int64, r.width()), follow: newFollowing(r.channels, r.grouped)}
 	held := table.NewHeld(labelledColumns(r))
 	prepare := newPreparers(r)
 	collect := newCollector(r, plan, form)
@@ -41,6 +42,7 @@ func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, f
 	type result struct {
 		missing []int64
 		sums    []keyed
+		steps   steps
 	}
 	limit := int64(r.width()) * int64(r.width())
 	if o.held > 0 {
@@ -53,6 +55,7 @@ func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, f
 		if err := prepare(b, res.missing); err != nil {
 			return err
 		}
+		res.steps = out.follow.within(b)
 		if streaming.Load() {
 			res.sums = collect.summarize(b)
 		}
@@ -63,6 +66,7 @@ func readTable(ctx context.Context, rows table.Rows, r *roles, plan *foldPlan, f
 		for i, m := range res.missing {
 			out.missing[i] += m
 		}
+		out.follow.add(b, res.steps)
 		out.complete += int64(b.Rows)
 		out.rows = b.Row + int64(b.Count)
 		// From the first block on, so that the blocks are those of the table.

@@ -20,6 +20,7 @@ type roles struct {
 	transforms []pca.Transform
 	methods    []pca.Method // of the channels
 	columns    []table.Column
+	grouped    bool // rows have groups
 	notes      []report.Note
 }
 
@@ -27,7 +28,7 @@ func (r *roles) width() int { return len(r.use) }
 
 // assignRoles matches the run file with the columns of the table.
 func assignRoles(cfg *configs.File, columns []table.Column) (*roles, error) {
-	r := &roles{columns: columns}
+	r := &roles{columns: columns, grouped: cfg.Read.Groups != ""}
 	names := make([]string, len(columns))
 	for j, c := range columns {
 		names[j] = c.Name

@@ -121,7 +121,7 @@ func reportLayout(cfg *configs.File) report.RowLayout {
 // series, if there is one, is that of C1; the rest are residuals.
 func (w *work) warnOfFollowing(l *lag, scores int) {
 	if scores == 1 && l.notable(0) {
-		w.warn("autocorrelated-rows", "rows follow one another: C1 has an autocorrelation of %.2f at lag one, so that the %d rows say about as much as %.0f independent ones; what takes rows as independent (parallel analysis, standard errors) is too sure of itself; parallel-shifts does not",
+		w.warn("autocorrelated-rows", "rows follow one another: C1 has an autocorrelation of %.2f at lag one, so that the %d rows say about as much as %.0f independent ones; what takes rows as independent (standard errors, rules other than parallel and parallel-shifts) is too sure of itself",
 			l.correlation(0), l.rows, l.effective(0))
 	}
 	if w.study.Regression == nil {

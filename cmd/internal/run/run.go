@@ -185,6 +185,7 @@ func (w *work) retain(context.Context) error {
 	if held := w.reading.source.held; held != nil {
 		e.Standardized = w.standardized(held.Matrix())
 	}
+	e.Effective = retain.EffectiveRows(e.Rows, w.autocorrelations())
 	w.roots = &e
 	r := w.cfg.Retain
 	verdict, err := retain.Apply(r.Rule, &e, settingsOf(r))
@@ -202,6 +203,16 @@ func (w *work) retain(context.Context) error {
 			Text: fmt.Sprintf("%s keeps no component: %s", r.Rule, verdict.Note)})
 	}
 	return nil
+}
+
+// autocorrelations of the channels at lag one.
+func (w *work) autocorrelations() []float64 {
+	out := make([]float64, len(w.active))
+	for j, i := range w.active {
+		deviation := w.whole.Deviation(i)
+		out[j] = w.reading.follow.correlation(i, deviation*deviation)
+	}
+	return out
 }
 
 // standardized brings the rows in memory to the scale of the decomposition, centred.

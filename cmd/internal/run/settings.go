@@ -17,6 +17,6 @@ func readOptions(cfg *configs.File, threads int) table.Options {
 // settingsOf translates the parameters of a rule.
 func settingsOf(r configs.Rule) retain.Settings {
 	return retain.Settings{Components: r.Components, AtLeast: r.AtLeast, Value: r.Value,
-		Reference: r.Reference, Percentile: r.Percentile, Replicates: r.Replicates,
+		Reference: r.Reference, Percentile: r.Percentile, Rows: r.Rows, Replicates: r.Replicates,
 		Power: r.Power, Alpha: r.Alpha, Noise: r.Noise}
 }
