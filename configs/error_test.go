@@ -155,7 +155,7 @@ hint: known: formats
 `},
 	{"stages to come", start + "reduce: {rebuild: 0.95}\nwatch:\n", nil, `
 pump.yaml:5:1: unknown key "watch"
-hint: known: axisfold, title, seed, read, standardize, decompose, retain, uncertainty, reduce, regress, draw, write
+hint: known: axisfold, title, seed, read, standardize, decompose, retain, rotate, uncertainty, reduce, regress, draw, write
 `},
 	{"required in a section", "axisfold: 1\nread:\n  time: t\nregress:\n", nil, `
 pump.yaml:2:1: required key "files" is missing in read

@@ -12,6 +12,7 @@ type File struct {
 	Standardize Standardize  `key:"standardize"`
 	Decompose   Decompose    `key:"decompose"`
 	Retain      Rule         `key:"retain"`
+	Rotate      *Rotate      `key:"rotate"`      // nil when not named
 	Uncertainty *Uncertainty `key:"uncertainty"` // nil when not named
 	Reduce      *Reduce      `key:"reduce"`      // nil when not named
 	Regress     *Regress     `key:"regress"`     // nil when not named
@@ -82,6 +83,14 @@ type Rule struct {
 	Arrangement    string  `key:"arrangement"`
 	Order          string  `key:"order"`
 	MostComponents int     `key:"most_components"` // 0: as many as the data carry
+}
+
+// Rotate asks for the kept components turned so that each is carried by few channels.
+type Rotate struct {
+	Method    string  `key:"method"`
+	Normalize bool    `key:"normalize"`
+	Power     float64 `key:"power"`
+	Starts    int     `key:"starts"`
 }
 
 // Uncertainty asks how sure the components are.

@@ -49,6 +49,12 @@ var sections = []Key{
 		{Name: "route", Kind: Word, Allowed: []string{"auto", "eigen", "svd"}, Default: "auto", Doc: "through cross-products or through a factor of the rows; auto looks at shape and condition"},
 	}},
 	{Name: "retain", Kind: Choice, Rules: rulesFor(components), Default: "parallel", Doc: "how many components to keep"},
+	{Name: "rotate", Kind: Section, Named: true, Doc: "the kept components turned so that each is carried by few channels", Keys: []Key{
+		{Name: "method", Kind: Word, Allowed: []string{"varimax", "quartimax", "promax"}, Default: "varimax", Doc: "promax lets the rotated components correlate"},
+		{Name: "normalize", Kind: Switch, Default: true, Doc: "weigh all channels alike, whatever share of their variance the components hold (Kaiser)"},
+		{Name: "power", Kind: Number, Range: above(1), Default: 4.0, Doc: "of the target of promax"},
+		{Name: "starts", Kind: Whole, Range: from(1, 10000), Default: 20, Doc: "from the components as they are, and from random ones; the best counts"},
+	}},
 	{Name: "uncertainty", Kind: Section, Named: true, Doc: "how sure roots, loadings and components are, by resampling stretches of rows", Keys: []Key{
 		{Name: "replicates", Kind: Whole, Range: from(50, 100000), Default: 1000, Doc: "resampled tables"},
 		{Name: "stretches", Kind: Whole, Range: from(2, 100000), Blank: "auto", Doc: "that the rows are cut into and drawn from; auto takes the root of the number of rows, 100 at most; as many as there are rows draws single rows, which suits rows that do not follow one another"},

@@ -29,6 +29,7 @@ func TestRefusals(t *testing.T) {
 		{func(m *Material) { m.Decomposition.Vectors[3] = nan }, `picture loadings: channel "channel_2" on C1: loading is NaN`},
 		{func(m *Material) { m.LoadingIntervals[3].Upper = inf }, `picture loadings: channel "channel_2" on C2: upper limit is +Inf`},
 		{func(m *Material) { m.LoadingIntervals = m.LoadingIntervals[1:] }, "picture loadings: 5 intervals of loadings, want 6"},
+		{func(m *Material) { m.Rotation.Loadings[2] = nan }, "picture rotated-loadings: rotated loading 3 is NaN"},
 		{func(m *Material) { m.Overview[1].Components = -1 }, `picture retention: rule "share" keeps -1 components`},
 		{func(m *Material) { m.Reduction.Curve[0].MeanR2 = nan }, "picture tradeoff: with 1 kept: mean R² is NaN"},
 		{func(m *Material) { m.ChannelSample[2] = nan }, "picture rebuilt: measured value 3 is NaN"},

@@ -64,8 +64,18 @@ var loadings = Picture{Name: "loadings", ready: always,
 				limit = 1
 			}
 		}
-		drawPanels(c, m, k, order, limit)
+		drawPanels(c, m, order, limit, panelSet{k, componentName, d.Share, d.Loading, m.interval})
 	}}
+
+// panelSet is what panels of loadings show: names and shares of components, loadings, and
+// their limits where there are any.
+type panelSet struct {
+	k        int
+	name     func(a int) string
+	share    func(a int) float64
+	loading  func(j, a int) float64
+	interval func(j, a int) (low, high float64, ok bool)
+}
 
 // interval returns the limits of a loading, where it has any.
 func (m *Material) interval(j, a int) (low, high float64, ok bool) {
@@ -114,8 +124,8 @@ func largestLoading(d *pca.Decomposition, j, k int) float64 {
 }
 
 // drawPanels draws one panel of bars per component beside one column of names.
-func drawPanels(c draw.Canvas, m *Material, k int, order []int, limit float64) {
-	d := m.Decomposition
+func drawPanels(c draw.Canvas, m *Material, order []int, limit float64, set panelSet) {
+	d, k := m.Decomposition, set.k
 	names := make([]string, len(order))
 	for i, j := range order {
 		names[i] = d.Channels[j]
@@ -143,20 +153,20 @@ func drawPanels(c draw.Canvas, m *Material, k int, order []int, limit float64) {
 			f.c.StrokeLine2(line(grid, hairline), f.x(x), f.low, f.x(x), f.high)
 		}
 		for i, j := range order {
-			v := d.Loading(j, a)
+			v := set.loading(j, a)
 			col := kept
 			if v < 0 {
 				col = against
 			}
 			fill(f.c, col, f.x(0), f.y(float64(i)-.36), f.x(v), f.y(float64(i)+.36))
-			if low, high, ok := m.interval(j, a); ok {
+			if low, high, ok := set.interval(j, a); ok {
 				ends := []vg.Point{f.at(math.Max(low, -limit), float64(i)), f.at(math.Min(high, limit), float64(i))}
 				f.c.StrokeLines(line(white, 2.2), ends)
 				f.c.StrokeLines(line(ink, .9), ends)
 			}
 		}
 		f.c.StrokeLine2(line(ink, hairline), f.x(0), f.low, f.x(0), f.high)
-		f.c.FillText(head, vg.Point{X: f.x(0), Y: f.high + 3}, componentName(a)+"  "+percent(d.Share(a)))
+		f.c.FillText(head, vg.Point{X: f.x(0), Y: f.high + 3}, set.name(a)+"  "+percent(set.share(a)))
 		for i, x := range []float64{-outermost, 0, outermost} {
 			small.XAlign = []text.XAlignment{text.XLeft, text.XCenter, text.XRight}[i]
 			f.c.FillText(small, vg.Point{X: f.x(x) + 2*vg.Length(i-1), Y: f.low - labelGap}, number(x, 3))

@@ -22,6 +22,7 @@ import (
 	"axisfold/pca"
 	"axisfold/pca/reduce"
 	"axisfold/pca/retain"
+	"axisfold/pca/rotation"
 	"axisfold/pca/stability"
 	"axisfold/pcr"
 )
@@ -48,6 +49,7 @@ type Material struct {
 	GroupNames []string
 	// LoadingIntervals are p × components kept, row-major; nil without.
 	LoadingIntervals []stability.Interval
+	Rotation         *rotation.Result
 	Reduction        *reduce.Result
 	// ChannelSample is a sample of rows in original units, ChannelRows×p row-major.
 	ChannelSample []float64
@@ -79,7 +81,7 @@ type Picture struct {
 }
 
 // Pictures lists all pictures.
-var Pictures = []Picture{scree, cumulativeShare, loadings, loadingsPlane, scoresPlane, correlationMap, dendrogram, retention, tradeoff, rebuilt, validation, coefficients, predictions}
+var Pictures = []Picture{scree, cumulativeShare, loadings, rotatedLoadings, loadingsPlane, scoresPlane, correlationMap, dendrogram, retention, tradeoff, rebuilt, validation, coefficients, predictions}
 
 // Drawing is one picture of one material.
 type Drawing struct {

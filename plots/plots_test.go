@@ -13,6 +13,7 @@ import (
 	"axisfold/pca"
 	"axisfold/pca/reduce"
 	"axisfold/pca/retain"
+	"axisfold/pca/rotation"
 	"axisfold/pca/stability"
 	"axisfold/pcr"
 )
@@ -68,6 +69,17 @@ func material(t testing.TB, p, k int, matrix pca.Matrix, names func(j int) strin
 		for a := range m.Verdict.Components {
 			v := d.Loading(j, a)
 			m.LoadingIntervals = append(m.LoadingIntervals, stability.Interval{Estimate: v, Lower: v - .08, Upper: v + .05})
+		}
+	}
+	if k := m.Verdict.Components; k > 1 {
+		var loadings []float64
+		for j := range p {
+			for a := range k {
+				loadings = append(loadings, d.Loading(j, a))
+			}
+		}
+		if m.Rotation, err = rotation.Rotate(loadings, k, rotation.Options{Method: rotation.Promax, Power: 4, Starts: 2}); err != nil {
+			t.Fatal(err)
 		}
 	}
 	for a := range d.Values {
@@ -144,7 +156,7 @@ func TestAllPictures(t *testing.T) {
 		}
 		want := len(Pictures)
 		if k < 2 {
-			want -= 2 // neither plane
+			want -= 3 // neither plane, nothing to rotate
 		}
 		if p == 1 {
 			want-- // no map of one channel
@@ -230,8 +242,8 @@ func TestNamesOfResponses(t *testing.T) {
 			t.Errorf("no %s", want)
 		}
 	}
-	if len(files) != 10+3*3 {
-		t.Errorf("%d files, want 19", len(files))
+	if len(files) != 11+3*3 {
+		t.Errorf("%d files, want 20", len(files))
 	}
 }
 

@@ -17,9 +17,12 @@ type ModelFile struct {
 	Channels   []ModelChannel   `json:"channels"`
 	Components []ModelComponent `json:"components"` // the retained ones and those a regression uses
 	// Eigenvalues and ScoreVariances are those of all components computed.
-	Eigenvalues    []Number          `json:"eigenvalues"`
-	ScoreVariances []Number          `json:"score_variances"`
-	Regression     []ModelRegression `json:"regression,omitempty"`
+	Eigenvalues    []Number `json:"eigenvalues"`
+	ScoreVariances []Number `json:"score_variances"`
+	// RotationWeights give rotated scores: a row of retained scores, each over the root of
+	// its variance, times them.
+	RotationWeights [][]Number        `json:"rotation_weights,omitempty"`
+	Regression      []ModelRegression `json:"regression,omitempty"`
 }
 
 // ModelChannel is one input of the model.
@@ -82,6 +85,9 @@ func WriteModel(s *Study, out io.Writer) error {
 			m.Vector = append(m.Vector, Number(d.Vector(j, a)))
 		}
 		f.Components = append(f.Components, m)
+	}
+	if r := s.Rotation; r != nil {
+		f.RotationWeights = rowsOf(r.Weights, r.Components())
 	}
 	if r := s.Regression; r != nil {
 		for i, m := range r.Result.Models {

@@ -19,6 +19,7 @@ type resultsFile struct {
 	Decomposition decompositionFacts `json:"decomposition"`
 	Adequacy      *adequacyFacts     `json:"adequacy,omitempty"`
 	Retention     []verdictFacts     `json:"retention"`
+	Rotation      *rotationFacts     `json:"rotation,omitempty"`
 	Uncertainty   *uncertaintyFacts  `json:"uncertainty,omitempty"`
 	Reduction     *reductionFacts    `json:"reduction,omitempty"`
 	Regression    []regressionFacts  `json:"regression,omitempty"`
@@ -155,6 +156,9 @@ func WriteResults(s *Study, out io.Writer) error {
 	}
 	for i, v := range s.Overview {
 		f.Retention = append(f.Retention, verdictOf(v, i == 0))
+	}
+	if s.Rotation != nil {
+		f.Rotation = rotationOf(s.Rotation)
 	}
 	if s.Uncertainty != nil {
 		f.Uncertainty = uncertaintyOf(s.Uncertainty)

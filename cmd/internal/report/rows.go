@@ -31,14 +31,16 @@ func (l RowLayout) names() []string {
 	return names
 }
 
-// ScoresHeader returns the first line of scores.csv for k components.
-func (l RowLayout) ScoresHeader(k int) []byte {
+// ScoresHeader returns the first line of scores.csv for k components, rotated of which are
+// there rotated too.
+func (l RowLayout) ScoresHeader(k, rotated int) []byte {
 	var w csvWriter
 	names := l.names()
 	for a := range k {
 		names = append(names, ComponentName(a))
 	}
-	w.header(append(names, "t2", "spe")...)
+	names = append(names, "t2", "spe")
+	w.header(append(names, rotatedNames(rotated)...)...)
 	return w.b
 }
 
@@ -71,13 +73,17 @@ func (w *RowWriter) key(l RowLayout, k RowKey) {
 	}
 }
 
-// Scores adds a line of scores.csv.
-func (w *RowWriter) Scores(l RowLayout, k RowKey, scores []float64, t2, spe float64) {
+// Scores adds a line of scores.csv; rotated may be empty.
+func (w *RowWriter) Scores(l RowLayout, k RowKey, scores []float64, t2, spe float64, rotated []float64) {
 	w.key(l, k)
 	for _, v := range scores {
 		w.number(v)
 	}
-	w.number(t2).number(spe).end()
+	w.number(t2).number(spe)
+	for _, v := range rotated {
+		w.number(v)
+	}
+	w.end()
 }
 
 // Prediction adds a line of predictions.csv; half is the half width of the interval. back,

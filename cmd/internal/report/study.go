@@ -6,6 +6,7 @@ import (
 	"axisfold/pca"
 	"axisfold/pca/reduce"
 	"axisfold/pca/retain"
+	"axisfold/pca/rotation"
 	"axisfold/pca/stability"
 	"axisfold/pcr"
 )
@@ -21,10 +22,11 @@ type Study struct {
 	Decomposition *pca.Decomposition
 	Verdict       retain.Verdict
 	Overview      []retain.Verdict
-	Adequacy      *pca.Adequacy // nil when channels are too many to measure it
-	Uncertainty   *Uncertainty  // nil when the run file asks for none
-	Reduction     *Reduction    // nil when the run file asks for none
-	Regression    *Regression   // nil when the run file has no regression
+	Adequacy      *pca.Adequacy    // nil when channels are too many to measure it
+	Rotation      *rotation.Result // nil when the run file asks for none
+	Uncertainty   *Uncertainty     // nil when the run file asks for none
+	Reduction     *Reduction       // nil when the run file asks for none
+	Regression    *Regression      // nil when the run file has no regression
 	Warnings      []pca.Warning
 }
 

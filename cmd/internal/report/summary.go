@@ -28,6 +28,7 @@ func WriteSummary(s *Study, out io.Writer) error {
 	p.decision(s)
 	p.table(s)
 	p.components(s)
+	p.carriers(s)
 	p.adequacy(s)
 	p.howMany(s)
 	if s.Uncertainty != nil {

@@ -23,6 +23,8 @@ var Tables = []TableFile{
 	{"eigenvectors.csv", always, fillEigenvectors},
 	{"loadings.csv", always, fillLoadings},
 	{"retention.csv", always, fillRetention},
+	{"rotated_loadings.csv", hasRotation, fillRotatedLoadings},
+	{"rotation.csv", hasRotation, fillRotation},
 	{"intervals.csv", hasUncertainty, fillIntervals},
 	{"loading_intervals.csv", hasUncertainty, fillLoadingIntervals},
 	{"redundancy.csv", hasReduction, fillRedundancy},

@@ -30,6 +30,7 @@ func (w *work) draw(context.Context) error {
 	if s.Uncertainty != nil {
 		m.LoadingIntervals = s.Uncertainty.Result.Loadings
 	}
+	m.Rotation = s.Rotation
 	if r := s.Reduction; r != nil {
 		m.Reduction = r.Result
 		m.ChannelSample, m.ChannelRows = w.sample.channels, len(w.sample.channels)/len(w.active)

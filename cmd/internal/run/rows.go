@@ -49,7 +49,7 @@ func (w *work) rows(ctx context.Context) error {
 			return err
 		}
 		defer scores.abandon()
-		scores.Write(layout.ScoresHeader(k))
+		scores.Write(layout.ScoresHeader(k, w.rotated()))
 	}
 	if models > 0 && w.cfg.Write.Predictions {
 		if predictions, err = w.folder.create("tables/predictions.csv"); err != nil {
@@ -165,10 +165,11 @@ type lineMaker struct {
 	x          []float64
 	t2, spe    []float64
 	half       [][]float64
+	turned     []float64 // rotated scores of a row
 }
 
 func (w *work) newLineMaker(layout report.RowLayout, k int) *lineMaker {
-	m := &lineMaker{w: w, layout: layout, k: k, scorer: w.study.Decomposition.NewScorer(pca.FirstComponents(k))}
+	m := &lineMaker{w: w, layout: layout, k: k, turned: make([]float64, w.rotated()), scorer: w.study.Decomposition.NewScorer(pca.FirstComponents(k))}
 	if r := w.study.Regression; r != nil {
 		for i := range r.Result.Models {
 			m.predictors = append(m.predictors, r.Result.NewPredictor(i, r.Confidence, r.Origin))
@@ -202,7 +203,9 @@ func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredic
 	out.scoreText.Reset()
 	if wantScores {
 		for r := range n {
-			out.scoreText.Scores(m.layout, m.key(b, r), out.scores[r*m.k:(r+1)*m.k], m.t2[r], m.spe[r])
+			scores := out.scores[r*m.k : (r+1)*m.k]
+			m.turn(scores)
+			out.scoreText.Scores(m.layout, m.key(b, r), scores, m.t2[r], m.spe[r], m.turned)
 		}
 	}
 	if out.predicted == nil {

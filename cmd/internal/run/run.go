@@ -71,7 +71,7 @@ func Execute(ctx context.Context, cfg *configs.File, o Options) (*report.Study, 
 
 // stages runs them in order.
 func (w *work) stages(ctx context.Context) error {
-	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.copies, w.retain, w.uncertainty, w.reduce, w.regress, w.smear, w.rows, w.draw, w.write} {
+	for _, stage := range []func(context.Context) error{w.read, w.decompose, w.copies, w.retain, w.rotate, w.uncertainty, w.reduce, w.regress, w.smear, w.rows, w.draw, w.write} {
 		if err := stage(ctx); err != nil {
 			return err
 		}
