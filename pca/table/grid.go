@@ -79,6 +79,7 @@ type gridPass struct {
 func (g *gridPass) next(b *Block) error {
 	c := &b.cells
 	c.reset(len(g.of.h.names))
+	c.all = slices.Grow(c.all, g.size*c.width)
 	for c.rows() < g.size && len(c.text) < longestTexts {
 		if err := g.rows.next(c); err == io.EOF {
 			break
