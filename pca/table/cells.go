@@ -32,6 +32,7 @@ type cells struct {
 	all   []cell
 	text  []byte
 	lines []int // of each row, ascending
+	over  bool  // texts are longer than their places can say
 }
 
 func (c *cells) reset(width int) {
@@ -74,6 +75,10 @@ func (c *cells) setTruth(j int, v bool) {
 }
 
 func (c *cells) setText(j int, kind cellKind, text []byte) {
+	if len(c.text)+len(text) > math.MaxInt32 {
+		c.over = true
+		return
+	}
 	from := int32(len(c.text))
 	c.text = append(c.text, text...)
 	*c.at(j) = cell{kind: kind, text: span{from: from, to: int32(len(c.text))}}

@@ -86,6 +86,9 @@ func (g *gridPass) next(b *Block) error {
 		} else if err != nil {
 			return err
 		}
+		if c.over {
+			return &Error{Kind: BadContent, File: g.of.h.file, Line: c.lines[c.rows()-1], counted: g.of.h.counted, absolute: true, Problem: "its texts take more than 2 GiB"}
+		}
 	}
 	if c.rows() == 0 {
 		return io.EOF

@@ -156,7 +156,7 @@ func (f *parquetFile) damaged(err error) error {
 	if errors.As(err, &own) {
 		return err
 	}
-	e := &Error{Kind: BadContent, File: f.file, Problem: "the Parquet data are damaged: " + err.Error()}
+	e := &Error{Kind: BadContent, File: f.file, Problem: "cannot be read as Parquet: " + err.Error()}
 	if errors.Is(err, io.ErrUnexpectedEOF) || errors.Is(err, io.EOF) || strings.Contains(err.Error(), "end as it should") {
 		e.Hint = "the copy may be incomplete"
 	}

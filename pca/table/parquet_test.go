@@ -3,6 +3,7 @@ package table
 import (
 	"bytes"
 	"encoding/binary"
+	"errors"
 	"fmt"
 	"math"
 	"math/big"
@@ -242,6 +243,41 @@ func TestWideParquet(t *testing.T) {
 				t.Fatalf("%d columns: value %d is %v", width, i, v)
 			}
 		}
+	}
+}
+
+// A hundred thousand columns are more than the library takes; the reader says so. A text
+// repeated by a dictionary is refused before it fills memory.
+func TestTooMuchParquet(t *testing.T) {
+	meta := parquetformat.FileMetaData{Version: 1, Schema: []parquetformat.SchemaElement{{Name: "root", NumChildren: thrift.New(int32(100000))}}}
+	for j := range 100000 {
+		meta.Schema = append(meta.Schema, parquetformat.SchemaElement{Name: fmt.Sprint("c", j), Type: thrift.New(parquetformat.Double), RepetitionType: thrift.New(parquetformat.Required)})
+	}
+	footer, err := thrift.Marshal(new(thrift.CompactProtocol), &meta)
+	if err != nil {
+		t.Fatal(err)
+	}
+	file := slices.Concat(parquetMagic, footer, binary.LittleEndian.AppendUint32(nil, uint32(len(footer))), parquetMagic)
+	var e *Error
+	if _, err := collect(Options{Files: []string{writeFile(t, "x.parquet", string(file))}}, chunkBytes, 1); !errors.As(err, &e) {
+		t.Errorf("%v", err)
+	} else {
+		t.Log(err)
+	}
+	type row struct {
+		A float64
+		G string `parquet:"G,dict"`
+	}
+	rows := make([]row, 300)
+	for i := range rows {
+		rows[i] = row{float64(i), strings.Repeat("g", 1<<20)}
+	}
+	path := filepath.Join(t.TempDir(), "x.parquet")
+	if err := parquet.WriteFile(path, rows); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := collect(Options{Files: []string{path}, Groups: "G"}, chunkBytes, 1); err == nil || !strings.Contains(err.Error(), "texts in 257 rows take more than 256 MiB") {
+		t.Errorf("%v", err)
 	}
 }
 

@@ -256,6 +256,9 @@ func (r *sheetRows) setCell(kind string, style int, ref string) error {
 		if err != nil || i < 0 || i >= len(r.book.texts) {
 			return r.fault("cell %s: text %q of %d", ref, shorten(string(text), 20), len(r.book.texts))
 		}
+		if len(row.text)+len(r.book.texts[i]) > longestRow { // few bytes can repeat a long text
+			return r.fault("its texts take more than %d MiB", longestRow>>20)
+		}
 		row.setText(0, textCell, []byte(r.book.texts[i]))
 	case "str", "inlineStr":
 		row.setText(0, textCell, text)
@@ -266,8 +269,8 @@ func (r *sheetRows) setCell(kind string, style int, ref string) error {
 	case "d":
 		row.setText(0, timeCell, text)
 	case "", "n":
-		v, err := strconv.ParseFloat(string(trim(text)), 64)
-		if err != nil && !errors.Is(err, strconv.ErrRange) || math.IsNaN(v) {
+		v, ok := readNumber(trim(text), '.')
+		if !ok && !math.IsInf(v, 0) {
 			return r.fault("cell %s: %q is not a number", ref, shorten(string(text), 40))
 		}
 		if style >= 0 && style < len(r.book.dates) && r.book.dates[style] != (dateStyle{}) {

@@ -279,6 +279,14 @@ func TestSheetBombs(t *testing.T) {
 	if _, err := collect(Options{Files: []string{bomb}}, chunkBytes, 1); err == nil || !strings.Contains(err.Error(), "more than 64 MiB") {
 		t.Errorf("%v", err)
 	}
+	long := strings.Repeat("long ", 3<<20)
+	bomb = rewrite(t, good, "xl/sharedStrings.xml", func(x string) string { return strings.Replace(x, "<t>b</t>", "<t>"+long+"</t>", 1) })
+	bomb = rewrite(t, bomb, "xl/worksheets/sheet1.xml", func(x string) string {
+		return strings.Replace(x, `<v>4</v></c>`, `<v>4</v></c>`+strings.Repeat(`<c t="s"><v>1</v></c>`, 9), 1)
+	})
+	if _, err := collect(Options{Files: []string{bomb}}, chunkBytes, 1); err == nil || !strings.Contains(err.Error(), "row 3: its texts take more than 64 MiB") {
+		t.Errorf("%v", err)
+	}
 	bomb = rewrite(t, good, "xl/sharedStrings.xml", func(x string) string { return x + strings.Repeat(" ", 257<<20) })
 	if _, err := collect(Options{Files: []string{bomb}}, chunkBytes, 1); err == nil || !strings.Contains(err.Error(), "unpacks to 257 MiB, more than 256 MiB") {
 		t.Errorf("%v", err)
