@@ -14,6 +14,9 @@ func (v *Survey) judgeChannel(c *Channel) {
 		f.Channels = []string{c.Name}
 		v.add(f)
 	}
+	if v.Clock != nil && v.Clock.Column == c.Name {
+		return // judged as a clock
+	}
 	leave := "read.leave_out: [" + quote(c.Name) + "]"
 	switch c.Type {
 	case "empty":
@@ -24,6 +27,11 @@ func (v *Survey) judgeChannel(c *Channel) {
 		c.LeaveOut = "holds one value, " + full(c.Min)
 		add(Finding{Kind: "constant", Weight: Spoils, Text: fmt.Sprintf("holds one value, %s, in all its %s", full(c.Min), counted(c.Count, "row")),
 			Numbers: []Number{{"value", c.Min}}, Setting: leave, affected: v.Rows})
+		return
+	case "beyond":
+		c.LeaveOut = "its squares lie beyond double precision"
+		add(Finding{Kind: "beyond", Weight: Spoils, Text: fmt.Sprintf("goes from %s to %s, and squares of that lie beyond double precision: give it in another unit", full(c.Min), full(c.Max)),
+			Setting: leave, affected: v.Rows})
 		return
 	case "equal steps":
 		c.LeaveOut = "rises in equal steps, as a number of the row or a clock does"

@@ -14,7 +14,7 @@ func (v *Survey) judgeClock() {
 		return
 	}
 	add := func(kind string, weight Weight, affected int64, setting, text string, args ...any) {
-		v.add(Finding{Kind: kind, Channels: []string{c.Column}, Weight: weight, affected: affected, Setting: setting, Text: fmt.Sprintf(text, args...),
+		v.add(Finding{Kind: kind, Weight: weight, affected: affected, Setting: setting, Text: fmt.Sprintf(text, args...),
 			Numbers: []Number{{"rows", float64(affected)}}})
 	}
 	if c.Ambiguous && c.Count > 0 {
@@ -32,12 +32,14 @@ func (v *Survey) judgeClock() {
 	if c.Gaps > 0 {
 		add("time-gaps", Know, c.Gaps, "", "%s in time, the largest %s before row %d (the usual step is %s)", counted(c.Gaps, "gap"), Span(c.LargestGap), c.LargestGapAt, Span(c.Interval))
 	}
-	setting := "read.time: " + quote(c.Column)
-	text := "says when: " + c.Sentence()
+	f := Finding{Kind: "time", Channels: []string{c.Column}, Weight: Know, affected: c.Count, Setting: "read.time: " + quote(c.Column), Text: "says when: " + c.Sentence()}
 	if c.OfDay != "" {
-		text = "and " + c.OfDay + " say when: " + c.Sentence()
+		f.Text = "and " + c.OfDay + " say when: " + c.Sentence()
 	}
-	add("time", Know, c.Count, setting, "%s", text)
+	if c.Numbers {
+		f.Weight = Spoils // unsaid, it would be a channel
+	}
+	v.add(f)
 }
 
 // Sentence says from when to when, and how often.

@@ -175,8 +175,12 @@ func (v *Survey) judgeRows() {
 				c.LeaveOut = fmt.Sprintf("lacks %s of %d values, and few rows are complete with it", percent(c.Missing, v.Rows), v.Rows)
 			}
 		}
+		text := fmt.Sprintf("only %d of %s are complete; without %s there are %d", v.Complete, counted(v.Rows, "row"), counted(int64(len(names)), "channel"), v.Proposal.Expected)
+		if 2*len(names) > v.Varying {
+			text += "; the gaps are spread over the channels, so much is lost that way"
+		}
 		v.add(Finding{Kind: "few-complete", Channels: names, Weight: Spoils, affected: v.Rows - v.Complete,
-			Text:    fmt.Sprintf("only %d of %s are complete; without %s there are %d", v.Complete, counted(v.Rows, "row"), counted(int64(len(names)), "channel"), v.Proposal.Expected),
+			Text:    text,
 			Numbers: []Number{{"complete", float64(v.Complete)}, {"complete_then", float64(v.Proposal.Expected)}}, Setting: "read.leave_out: [" + listed(quoteAll(names)) + "]"})
 	} else if 2*v.Complete < v.Rows {
 		v.add(Finding{Kind: "few-complete", Weight: Spoils, affected: v.Rows - v.Complete,

@@ -43,7 +43,7 @@ type Survey struct {
 type Channel struct {
 	Name, Unit string
 	// Type is "number", "whole", "categories", "two values", "constant", "counter",
-	// "equal steps" or "empty".
+	// "equal steps", "beyond" (squares lie beyond double precision) or "empty".
 	Type           string
 	Count, Missing int64
 	LongestGap     Run
@@ -103,10 +103,10 @@ func Look(ctx context.Context, s *Source, threads int) (*Survey, error) {
 	case !s.given.Time:
 		ticking = f.numberClock(names)
 	}
-	still := make([]bool, len(columns)) // empty or of one value
+	still := make([]bool, len(columns)) // empty, of one value, or beyond what can be squared
 	for j := range still {
 		e := f.ends[j].without(codes)
-		still[j] = len(e.low) == 0 || len(e.low) == 1 && len(e.high) == 1
+		still[j] = len(e.low) == 0 || len(e.low) == 1 && len(e.high) == 1 || beyond(e.low[0].value, e.high[0].value)
 	}
 	proposal := propose(f.sample, still)
 	out := slices.Clone(still)
@@ -178,6 +178,13 @@ func (r *second) channel(f *first, j int, column table.Column, codes []float64) 
 	return c
 }
 
+// beyond tells whether second moments of values between low and high are not to be had in
+// double precision.
+func beyond(low, high float64) bool {
+	const largest = 1e150
+	return math.Max(math.Abs(low), math.Abs(high)) > largest || high-low < 1/largest
+}
+
 // mostCategories is how many whole values may be codes of categories.
 const mostCategories = 12
 
@@ -187,6 +194,8 @@ func (r *second) typeOf(c *Channel, t *trace, whole bool) string {
 		return "empty"
 	case c.Min == c.Max:
 		return "constant"
+	case beyond(c.Min, c.Max):
+		return "beyond"
 	case c.Different == 2:
 		return "two values"
 	// The last bits of decimal steps differ.

@@ -185,6 +185,7 @@ func (g *gridPass) bad(b *Block, j int, line int32, x *cell) error {
 		e.Problem = "bytes are not a number"
 		e.Hint = "name the column in read.leave_out"
 	default:
+		e.Cell = string(b.cells.appendShown(nil, x))
 		e.Problem = fmt.Sprintf("%q is not a number", shown)
 		e.Hint = fmt.Sprintf("add %q to read.missing if it stands for a missing value, or name the column in read.leave_out", shown)
 	}

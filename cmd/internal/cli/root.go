@@ -60,7 +60,7 @@ and a manifest from which the run can be repeated.
 	root.SetVersionTemplate("axisfold {{.Version}}\n")
 	root.SetFlagErrorFunc(func(c *cobra.Command, err error) error { return usageError{c.CommandPath(), err.Error()} })
 	root.CompletionOptions.HiddenDefaultCmd = true
-	root.AddCommand(newSurvey(), newRun(), newCheck())
+	root.AddCommand(newSurvey(), newDraft(), newRun(), newCheck())
 	return root
 }
 
