@@ -18,7 +18,7 @@ var tidy = strings.NewReplacer(
 	"\n\t", " ",
 	`style="font-family:Liberation Sans;font-variant:normal;font-weight:normal;font-style:normal;`, `style="font-family:'Liberation Sans',Arial,Helvetica,sans-serif;`,
 	`style="font-family:Liberation Sans;font-variant:normal;font-weight:bold;font-style:normal;`, `style="font-family:'Liberation Sans',Arial,Helvetica,sans-serif;font-weight:bold;`,
-	`xlink:href="data:image/jpg;`, `style="image-rendering:pixelated" xlink:href="data:image/png;`,
+	`xlink:href="data:image/jpg;`, `style="image-rendering:pixelated" preserveAspectRatio="none" xlink:href="data:image/png;`,
 )
 
 func (s svgPage) WriteTo(w io.Writer) (int64, error) {

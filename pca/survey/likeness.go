@@ -67,7 +67,7 @@ func compare(f *first, traces []trace, names []string, skip []bool) *comparison 
 	n := min(len(s.rows), rowsCompared)
 	out.rows = n
 	z := make([]float64, n*p)
-	gaps := false
+	filled := make([]float64, p)
 	for k, j := range use {
 		sum, sum2, there := 0.0, 0.0, 0.0
 		c := &traces[j]
@@ -77,9 +77,7 @@ func compare(f *first, traces []trace, names []string, skip []bool) *comparison 
 				sum, sum2, there = sum+d, sum2+d*d, there+1
 			}
 		}
-		if there < float64(n) {
-			gaps = true
-		}
+		filled[k] = there
 		mean := sum / there
 		scale := math.Sqrt(sum2 - sum*mean)
 		for i := range n {
@@ -91,17 +89,19 @@ func compare(f *first, traces []trace, names []string, skip []bool) *comparison 
 	r := make([]float64, p*p)
 	kernel.AddCrossProducts(r, z, n, p)
 	out.spectrum(r, p, n)
-	// With gaps the products of a pair are shrunk by the rows where one is missing.
-	limit := .99
-	if gaps {
-		limit = .3
-	}
+	var x, y []float64
 	for a := range p {
 		for b := a + 1; b < p; b++ {
+			// With gaps the product of a pair is shrunk by the rows where one is missing.
+			limit := .99
+			if both := filled[a] + filled[b] - float64(n); both < float64(n) {
+				limit = .9 * math.Max(.3, both/math.Sqrt(filled[a]*filled[b]))
+			}
 			if copied[use[a]] || copied[use[b]] || !(math.Abs(r[a*p+b]) > limit*math.Sqrt(r[a*p+a]*r[b*p+b])) {
 				continue
 			}
-			l, ok := pair(s, n, use[a], use[b])
+			x, y = s.both(x[:0], y[:0], n, use[a], use[b])
+			l, ok := pair(x, y, use[a], use[b])
 			if ok && math.Abs(l.Correlation) > nearCopy {
 				l.A, l.B = names[l.a], names[l.b]
 				out.pairs = append(out.pairs, l)
@@ -136,15 +136,19 @@ func (c *comparison) spectrum(r []float64, p, n int) {
 	c.share = values[0] / total
 }
 
-// pair compares two channels on the sampled rows that have both.
-func pair(s *sample, n, a, b int) (Likeness, bool) {
-	var x, y []float64
+// both appends the values of two channels in the sampled rows that have both.
+func (s *sample) both(x, y []float64, n, a, b int) ([]float64, []float64) {
 	for i := range n {
 		u, v := s.data[i*s.width+a], s.data[i*s.width+b]
 		if !math.IsNaN(u) && !math.IsNaN(v) {
 			x, y = append(x, u), append(y, v)
 		}
 	}
+	return x, y
+}
+
+// pair compares two channels.
+func pair(x, y []float64, a, b int) (Likeness, bool) {
 	if len(x) < leastPairs {
 		return Likeness{}, false
 	}

@@ -17,6 +17,7 @@ type Proposal struct {
 func propose(s *sample, skip []bool) []int {
 	n := len(s.rows)
 	gaps := make([]int, n) // by row
+	holes := make([][]int32, s.width)
 	var use []int
 	for j, out := range skip {
 		if out {
@@ -26,6 +27,7 @@ func propose(s *sample, skip []bool) []int {
 		for i := range n {
 			if math.IsNaN(s.data[i*s.width+j]) {
 				gaps[i]++
+				holes[j] = append(holes[j], int32(i))
 			}
 		}
 	}
@@ -47,13 +49,10 @@ func propose(s *sample, skip []bool) []int {
 		// most gaps.
 		worst, score := 0, [2]int{-1, -1}
 		for k, j := range use {
-			alone, all := 0, 0
-			for i := range n {
-				if math.IsNaN(s.data[i*s.width+j]) {
-					all++
-					if gaps[i] == 1 {
-						alone++
-					}
+			alone, all := 0, len(holes[j])
+			for _, i := range holes[j] {
+				if gaps[i] == 1 {
+					alone++
 				}
 			}
 			if alone > score[0] && alone >= n/50 || score[0] < 0 && all > score[1] || alone == score[0] && all > score[1] {
@@ -64,12 +63,10 @@ func propose(s *sample, skip []bool) []int {
 			}
 		}
 		j := use[worst]
-		for i := range n {
-			if math.IsNaN(s.data[i*s.width+j]) {
-				gaps[i]--
-				if gaps[i] == 0 {
-					complete++
-				}
+		for _, i := range holes[j] {
+			gaps[i]--
+			if gaps[i] == 0 {
+				complete++
 			}
 		}
 		use = slices.Delete(use, worst, worst+1)
