@@ -49,45 +49,58 @@ type suspicion struct {
 	sure  bool
 }
 
+// farthestCodes is how many different codes may stand at one end of a channel.
+const farthestCodes = 3
+
 // suspects finds values of a channel that stand apart from the rest at either end.
 func suspects(e *ends, count int64, sorted []float64) []suspicion {
 	var out []suspicion
 	look := func(list []valueCount, low bool) {
-		for k := range min(2, len(list)-1) {
-			v := list[k]
-			rest := sorted[:placeOf(sorted, v.value, false)]
-			if low {
-				rest = sorted[placeOf(sorted, v.value, true):]
-			}
-			if len(rest) < 3 && count > 20 && v.count < count/2 {
+		// Several codes may stand side by side (-999 and -998): what counts is the gap after
+		// the last of them.
+		for k := range min(farthestCodes, len(list)-1) {
+			if k > 0 && !coded(list[0].value) {
 				return
 			}
-			gap := math.Abs(list[k+1].value - v.value)
-			spread := quantile(rest, .99) - quantile(rest, .01)
-			if len(rest) == 0 {
-				spread = 0
+			inner := list[k+1].value
+			gap := math.Abs(inner - list[k].value)
+			rest, n := ordinaryValues(sorted, inner, low)
+			if rest < 0 || gap <= .25*rest || gap == 0 {
+				continue
 			}
-			// The next value may be a code as well (-999 and -998): then the gap is small.
-			apart := gap > .25*spread && gap > 0
-			far := gap > 3*spread
-			otherSign := v.value < 0 && list[k+1].value >= 0 && low
-			switch {
-			case coded(v.value) && apart && far && v.count >= 2,
-				coded(v.value) && apart && otherSign && v.count >= 3,
-				coded(v.value) && gap > 20*spread && spread > 0,
-				far && gap > 10*spread && spread > 0 && v.count >= max(5, count/1000):
-				out = append(out, suspicion{v.value, true})
-			case coded(v.value) && apart && v.count >= 2:
-				out = append(out, suspicion{v.value, false})
-			default:
-				return // what lies further in does not stand apart either
+			for _, v := range list[:k+1] {
+				looks, otherSign := coded(v.value), low && v.value < 0 && inner >= 0
+				switch {
+				case looks && gap > 3*rest && v.count >= 2,
+					looks && otherSign && v.count >= 3,
+					looks && gap > 20*rest && rest > 0,
+					!looks && gap > 10*rest && rest > 0 && n > 3 && v.count >= max(5, count/1000):
+					out = append(out, suspicion{v.value, true})
+				case looks && v.count >= 2:
+					out = append(out, suspicion{v.value, false})
+				}
 			}
+			return
 		}
 	}
-	// A channel of few values has codes of its own: 0 and 100, say.
 	look(e.low, true)
 	look(e.high, false)
 	return out
+}
+
+// ordinaryValues is the spread of the values from inner on, those that look like codes left
+// out, and how many there are; -1 where too few are left to tell.
+func ordinaryValues(sorted []float64, inner float64, low bool) (spread float64, n int) {
+	var rest []float64
+	for _, v := range sorted {
+		if (low && v >= inner || !low && v <= inner) && !coded(v) {
+			rest = append(rest, v)
+		}
+	}
+	if len(rest) < 3 {
+		return -1, len(rest)
+	}
+	return quantile(rest, .99) - quantile(rest, .01), len(rest)
 }
 
 // placeOf is the place of the first value above v (after), or of the first that is not below.

@@ -218,6 +218,10 @@ func (c *Channel) skew(sorted []float64) {
 	if len(sorted) < 30 || c.Type != "number" && c.Type != "whole" || math.Abs(c.Skewness) < 1.5 {
 		return
 	}
+	// A few outliers are no skewness that a transform should mend.
+	if cut := max(1, len(sorted)/200); math.Abs(skewness(sorted[cut:len(sorted)-cut], pca.NoTransform)) < 1 {
+		return
+	}
 	best := .5 * math.Abs(c.Skewness)
 	for _, t := range []pca.Transform{pca.SquareRoot, pca.Log} {
 		if t == pca.SquareRoot && c.Min < 0 || t == pca.Log && !(c.Min > 0) {
@@ -226,6 +230,18 @@ func (c *Channel) skew(sorted []float64) {
 		if s := skewness(sorted, t); math.Abs(s) < best {
 			c.Transform, c.Transformed, best = t, s, math.Abs(s)
 		}
+	}
+	if c.Transform == pca.NoTransform || len(c.WorstSpikes) == 0 {
+		return
+	}
+	// What is far away may be the long tail: a spike stands out after the transform too.
+	values := make([]float64, len(sorted))
+	for i, v := range sorted {
+		values[i], _ = c.Transform.Apply(v)
+	}
+	at, _ := c.Transform.Apply(c.WorstSpikes[0].Value)
+	if math.Abs(at-quantile(values, .5)) < spikeSpread*robust*deviation(values) {
+		c.Spikes, c.WorstSpikes = 0, nil
 	}
 }
 
