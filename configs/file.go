@@ -30,6 +30,7 @@ type Read struct {
 	Sheet      string   `key:"sheet"`      // empty: the only one that holds a table
 	Query      string   `key:"query"`      // empty: all of the only table
 	Connection string   `key:"connection"` // name of an environment variable; empty: the standard ones
+	Encoding   string   `key:"encoding"`   // empty: looked up
 	Separator  string   `key:"separator"`  // one byte; empty: looked up in the header
 	Decimal    string   `key:"decimal"`
 	Comment    string   `key:"comment"` // empty: none

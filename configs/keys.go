@@ -24,6 +24,7 @@ var sections = []Key{
 		{Name: "sheet", Kind: Text, Doc: "of a spreadsheet; empty for the only one that holds a table"},
 		{Name: "query", Kind: Text, Doc: "that a database answers, one select; empty for all of the only table of an SQLite file"},
 		{Name: "connection", Kind: Text, Doc: "name of the environment variable that holds the connection string of a server; empty for PGHOST, PGUSER, PGPASSWORD and the others of its standard"},
+		{Name: "encoding", Kind: Word, Allowed: []string{"utf-8", "utf-16", "latin-1"}, Blank: "auto", Doc: "of text; latin-1 is Windows-1252 too; auto looks at the beginning, and a note says what was assumed"},
 		{Name: "separator", Kind: Character, Blank: "auto", Doc: "between cells: comma, semicolon, tab, bar or one character; auto looks at the header"},
 		{Name: "decimal", Kind: Word, Allowed: []string{"point", "comma"}, Default: "point", Doc: "decimal sign of numbers in cells"},
 		{Name: "comment", Kind: Text, Doc: "lines that begin with it are passed over; empty for none"},

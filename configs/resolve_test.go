@@ -32,6 +32,7 @@ read:
   sheet: ""
   query: ""
   connection: ""
+  encoding: auto
   separator: ";"
   decimal: comma
   comment: "#"
@@ -165,6 +166,7 @@ read:
   sheet: ""
   query: ""
   connection: ""
+  encoding: auto
   separator: semicolon
   decimal: comma
   comment: "#"
@@ -209,6 +211,7 @@ read:
   sheet: ""
   query: ""
   connection: ""
+  encoding: auto
   separator: auto
   decimal: point
   comment: ""

@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"fmt"
 	"io"
+	"path/filepath"
 	"strconv"
 	"strings"
 )
@@ -26,11 +27,32 @@ type head struct {
 	units     []string
 	sample    []sampleColumn
 	bytes     int // of mark, header and units
+	form      form
+	notes     []Note
 }
 
 // readHead looks at the beginning of a file.
 func readHead(o *Options, open opener, file string, separator byte) (*head, error) {
-	s, err := openText(open, file)
+	f := form{encoding: encoding(o.Encoding)}
+	h, err := f.readHead(o, open, file, separator)
+	if h == nil && err == nil {
+		// Not UTF-8 after all.
+		f.encoding = latin1Text
+		h, err = f.readHead(o, open, file, separator)
+	}
+	if err != nil {
+		return nil, err
+	}
+	h.form = f
+	if f.note != "" {
+		h.notes = append(h.notes, Note{Text: filepath.Base(file) + " " + f.note})
+	}
+	return h, nil
+}
+
+// readHead returns neither head nor error where the text turns out not to be UTF-8.
+func (f *form) readHead(o *Options, open opener, file string, separator byte) (*head, error) {
+	s, err := f.open(open, file)
 	if err != nil {
 		return nil, err
 	}
@@ -52,6 +74,12 @@ func readHead(o *Options, open opener, file string, separator byte) (*head, erro
 		}
 		if err != nil {
 			return nil, readError(file, err)
+		}
+	}
+	if f.encoding == autoEncoding {
+		if line := notUTF8(text); line > 0 && bytes.IndexByte(text, 0) < 0 {
+			f.note = latin1Text.assumed(line)
+			return nil, nil
 		}
 	}
 	mark := len(text)

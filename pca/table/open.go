@@ -113,9 +113,6 @@ func openText(open opener, path string) (*stream, error) {
 		}
 		s.closers = append(s.closers, func() error { z.Close(); return nil })
 		s.Reader = z
-	case bytes.HasPrefix(magic, []byte{0xff, 0xfe}), bytes.HasPrefix(magic, []byte{0xfe, 0xff}):
-		s.Close()
-		return nil, &Error{Kind: BadContent, File: path, Problem: "is UTF-16 text; expected UTF-8", Hint: "save it as UTF-8"}
 	default:
 		s.Reader = buffered
 	}

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"unicode/utf8"
 )
 
 // use says what a column of the file is for.
@@ -112,6 +113,9 @@ func (p *parser) parse(b *Block, l *layout) error {
 				cell, end, quoted, fault := d.cell(text, i, &b.extra)
 				if fault != wellQuoted {
 					return p.badCell(b, l, c, startLine, cell, fault)
+				}
+				if !utf8.Valid(cell) {
+					return &Error{Kind: BadContent, File: b.file, Line: startLine, Column: c + 1, Name: l.names[c], Problem: notUTF8Problem, Hint: notUTF8Hint}
 				}
 				s := span{quoted: quoted}
 				if quoted {

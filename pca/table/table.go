@@ -28,6 +28,8 @@ type Options struct {
 	// Connection is the name of the environment variable that holds the connection string
 	// of a server; empty: the variables that its client programs use.
 	Connection string
+	// Encoding of text, one of Encodings; empty: looked up, with a note where it is a guess.
+	Encoding string
 }
 
 // Table is an opened table.
@@ -99,6 +101,7 @@ func openWith(ctx context.Context, o Options, open opener, pieces int) (*Table, 
 // add takes a part into the table: the first says what the columns are.
 func (t *Table) add(p part) error {
 	t.parts = append(t.parts, p)
+	t.notes = append(t.notes, p.head().notes...)
 	if len(t.parts) == 1 {
 		return t.assign(p.head())
 	}

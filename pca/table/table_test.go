@@ -285,7 +285,9 @@ func TestErrors(t *testing.T) {
 		{"after quote", "a,b\n1,2\n\"3\"x,4\n", Options{}, `x.csv:3: column 1 "a": text follows the closing quote of "3"`, ""},
 		{"unknown time", "alpha,b\n1,2\n", Options{Time: "alhpa"}, `x.csv: has no column "alhpa"`, `the nearest column is "alpha"`},
 		{"unknown left out", "alpha,b\n1,2\n", Options{LeaveOut: []string{"z*"}}, `x.csv: read.leave_out: no column matches "z*"`, "the columns are alpha, b"},
-		{"utf-16", "\xff\xfea\x00,\x00", Options{}, "x.csv: is UTF-16 text; expected UTF-8", ""},
+		{"utf-16 without rows", "\xff\xfea\x00,\x00", Options{}, "x.csv: has a header but no rows", ""},
+		{"utf-16 cut in two", "\xff\xfea\x00\n\x001\x00\n\x002", Options{}, "x.csv:3: ends in the middle of a character of UTF-16", "the copy is incomplete"},
+		{"half a utf-16 pair", "\xff\xfea\x00\n\x00\x00\xd8\n\x00", Options{}, "x.csv:2: holds half a character of UTF-16", "the file is damaged, or in another encoding: see read.encoding"},
 		{"damaged gzip", "\x1f\x8b\x08\x00nonsense", Options{}, "x.csv: ", ""},
 		{"format", "a\n1\n", Options{Format: "xls"}, `unknown format "xls"; known: csv, tsv, parquet, xlsx, sqlite, postgres`, ""},
 	}

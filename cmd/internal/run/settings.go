@@ -11,7 +11,8 @@ func readOptions(cfg *configs.File, threads int) table.Options {
 	r := cfg.Read
 	return table.Options{Dir: cfg.Dir(), Files: r.Files, Format: r.Format, Separator: r.Separator,
 		DecimalComma: r.Decimal == "comma", Comment: r.Comment, Missing: r.Missing, NoHeader: !r.Header,
-		UnitsRow: r.UnitsRow, Time: r.Time, Groups: r.Groups, LeaveOut: r.LeaveOut, Sheet: r.Sheet, Query: r.Query, Connection: r.Connection}
+		UnitsRow: r.UnitsRow, Time: r.Time, Groups: r.Groups, LeaveOut: r.LeaveOut, Sheet: r.Sheet, Query: r.Query, Connection: r.Connection,
+		Encoding: r.Encoding}
 }
 
 // settingsOf translates the parameters of a rule.
