@@ -158,7 +158,7 @@ func TestInvariants(t *testing.T) {
 					for c := range k {
 						h += r.Loadings[j*k+c] * r.Structure[j*k+c]
 						want += a[j*k+c] * a[j*k+c]
-						}
+					}
 					if math.Abs(h-want) > 1e-10 {
 						t.Errorf("%s: communality of channel %d is %.12f, was %.12f", what, j+1, h, want)
 					}
