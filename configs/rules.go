@@ -51,6 +51,7 @@ var rules = []listed{
 		{Name: "percentile", Kind: Number, Range: below(100), Default: 95.0, Doc: "of the replicates"},
 		{Name: "replicates", Kind: Whole, Range: from(10, 1000000), Blank: "auto", Doc: "shifted tables to make; auto takes 1000, on large tables fewer"}}}},
 	{either, RuleDescription{"bi-cross-validation", "the number that best predicts hidden blocks of rows and channels", nil}},
+	{either, RuleDescription{"element-cross-validation", "the number that best predicts hidden cells", nil}},
 	{either, RuleDescription{"knee", "eigenvalues before the sharpest bend, a heuristic", nil}},
 	{either, RuleDescription{"agreement", "the number that most rules with a model of noise name", nil}},
 	{second, RuleDescription{"cross-validation", "the smallest error on held-out rows", heldOut}},

@@ -69,6 +69,7 @@ type Settings struct {
 	Power      int     // minimum-average-partial: 2 (1976) to 4 (2000)
 	Alpha      float64 // equal-roots, tracy-widom: of each test
 	Noise      float64 // hard-threshold: standard deviation of the noise; 0 estimates it
+	Quick      bool    // element-cross-validation: abstain where it would take long
 }
 
 // Defaults returns the settings a careful analyst would start from.
@@ -111,7 +112,7 @@ type Rule struct {
 
 // Rules is the list of all rules.
 var Rules = []Rule{fixed, share, eigenvalueAbove, brokenStick, parallel, minimumAveragePartial, equalRoots,
-	tracyWidom, hardThreshold, laplaceEvidence, bayesianInformation, parallelShifts, biCross, knee, agreement}
+	tracyWidom, hardThreshold, laplaceEvidence, bayesianInformation, parallelShifts, biCross, elementCross, knee, agreement}
 
 // Names returns the names of all rules.
 func Names() []string {
