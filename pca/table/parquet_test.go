@@ -200,39 +200,30 @@ func TestInfiniteInParquet(t *testing.T) {
 	}
 }
 
-// Tables as wide as they come: read, or refused in so many words.
+// A wide table, whose pieces are a few rows.
 func TestWideParquet(t *testing.T) {
-	for _, width := range []int{3000, 100000} {
+	for _, width := range []int{1, 3000} {
 		group := parquet.Group{}
 		for j := range width {
 			group[fmt.Sprintf("c%06d", j)] = parquet.Leaf(parquet.DoubleType)
 		}
 		path := filepath.Join(t.TempDir(), "x.parquet")
-		err := func() (err error) {
-			defer func() {
-				if r := recover(); r != nil {
-					err = fmt.Errorf("%v", r)
-				}
-			}()
-			var out bytes.Buffer
-			w := parquet.NewWriter(&out, parquet.NewSchema("x", group))
-			row := make(parquet.Row, width)
-			for i := range 3 {
-				for j := range row {
-					row[j] = parquet.DoubleValue(float64(i*width+j)).Level(0, 0, j)
-				}
-				if _, err := w.WriteRows([]parquet.Row{row}); err != nil {
-					return err
-				}
+		var out bytes.Buffer
+		w := parquet.NewWriter(&out, parquet.NewSchema("x", group))
+		row := make(parquet.Row, width)
+		for i := range 3 {
+			for j := range row {
+				row[j] = parquet.DoubleValue(float64(i*width+j)).Level(0, 0, j)
 			}
-			if err := w.Close(); err != nil {
-				return err
+			if _, err := w.WriteRows([]parquet.Row{row}); err != nil {
+				t.Fatal(err)
 			}
-			return os.WriteFile(path, out.Bytes(), 0o666)
-		}()
-		if err != nil {
-			t.Logf("%d columns: the writer: %v", width, err)
-			continue
+		}
+		if err := w.Close(); err != nil {
+			t.Fatal(err)
+		}
+		if err := os.WriteFile(path, out.Bytes(), 0o666); err != nil {
+			t.Fatal(err)
 		}
 		got, err := collect(Options{Files: []string{path}}, chunkBytes, 2)
 		if err != nil {
@@ -259,16 +250,14 @@ func TestTooMuchParquet(t *testing.T) {
 	}
 	file := slices.Concat(parquetMagic, footer, binary.LittleEndian.AppendUint32(nil, uint32(len(footer))), parquetMagic)
 	var e *Error
-	if _, err := collect(Options{Files: []string{writeFile(t, "x.parquet", string(file))}}, chunkBytes, 1); !errors.As(err, &e) {
+	if _, err := collect(Options{Files: []string{writeFile(t, "x.parquet", string(file))}}, chunkBytes, 1); !errors.As(err, &e) || !strings.Contains(err.Error(), "more than 65534 columns") {
 		t.Errorf("%v", err)
-	} else {
-		t.Log(err)
 	}
 	type row struct {
 		A float64
 		G string `parquet:"G,dict"`
 	}
-	rows := make([]row, 300)
+	rows := make([]row, 70)
 	for i := range rows {
 		rows[i] = row{float64(i), strings.Repeat("g", 1<<20)}
 	}
@@ -276,7 +265,7 @@ func TestTooMuchParquet(t *testing.T) {
 	if err := parquet.WriteFile(path, rows); err != nil {
 		t.Fatal(err)
 	}
-	if _, err := collect(Options{Files: []string{path}, Groups: "G"}, chunkBytes, 1); err == nil || !strings.Contains(err.Error(), "texts in 257 rows take more than 256 MiB") {
+	if _, err := collect(Options{Files: []string{path}, Groups: "G"}, chunkBytes, 1); err == nil || !strings.Contains(err.Error(), "texts in 65 rows take more than 64 MiB") {
 		t.Errorf("%v", err)
 	}
 }

@@ -106,8 +106,8 @@ func (r *columnReader) read(b *Block, n int) error {
 		for i := range values {
 			v := &values[i]
 			if r.use != number {
-				if r.carry(b, v); len(b.extra) > longestTexts { // few bytes can repeat a long text
-					return fmt.Errorf("its texts in %d rows take more than %d MiB", row+1, longestTexts>>20)
+				if r.carry(b, v); len(b.extra) > longestRow { // few bytes can repeat a long text
+					return fmt.Errorf("its texts in %d rows take more than %d MiB", row+1, longestRow>>20)
 				}
 				row++
 				continue

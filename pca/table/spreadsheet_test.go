@@ -3,6 +3,7 @@ package table
 import (
 	"archive/zip"
 	"bytes"
+	"compress/flate"
 	"errors"
 	"fmt"
 	"io"
@@ -120,6 +121,7 @@ func rewrite(t testing.TB, path, part string, change func(string) string) string
 	defer z.Close()
 	var out bytes.Buffer
 	w := zip.NewWriter(&out)
+	w.RegisterCompressor(zip.Deflate, func(to io.Writer) (io.WriteCloser, error) { return flate.NewWriter(to, flate.BestSpeed) })
 	found := false
 	for _, f := range z.File {
 		r, err := f.Open()
