@@ -83,7 +83,12 @@ func (p *postgres) connect(ctx context.Context) (*pgconn.PgConn, error) {
 		config.ConnectTimeout = connectTimeout
 	}
 	config.MaxProtocolMessageBodyLen = longestResponse
-	for key, value := range map[string]string{"application_name": "axisfold", "DateStyle": "ISO", "TimeZone": "UTC", "extra_float_digits": "3", "client_encoding": "UTF8"} {
+	for key, value := range map[string]string{"application_name": "axisfold", "datestyle": "ISO", "timezone": "UTC", "extra_float_digits": "3", "client_encoding": "UTF8"} {
+		for other := range config.RuntimeParams {
+			if strings.EqualFold(other, key) { // of PGTZ or the connection string
+				delete(config.RuntimeParams, other)
+			}
+		}
 		config.RuntimeParams[key] = value
 	}
 	conn, err := pgconn.ConnectConfig(ctx, config)

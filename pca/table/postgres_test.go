@@ -46,6 +46,15 @@ func TestKindsOfPostgres(t *testing.T) {
 		(2, 'NaN', null, 'NaN', -9223372036854775808, null, false, null, '1999-12-31 23:59:59.123456', '0044-03-15 BC', 'ä;"', null, null),
 		(3, 5e-324, 3.4028235e38, -0.0000000001, 9223372036854775807, 32767, null, '2024-06-01 00:00:00+05:30', null, null, null, null, null)`)
 	o.Query = "select * from kinds order by i"
+	// What the client's surroundings ask for changes nothing.
+	t.Setenv("PGTZ", "Asia/Kolkata")
+	address, err := url.Parse(os.Getenv(serverVariable))
+	if err != nil {
+		t.Fatal(err)
+	}
+	address.RawQuery = "DateStyle=German&extra_float_digits=0"
+	t.Setenv("AXISFOLD_TEST_GERMAN", address.String())
+	o.Connection = "AXISFOLD_TEST_GERMAN"
 	nan := math.NaN()
 	want := []float64{1, 0.1, float64(float32(0.1)), 12345678901234567890.0123456789, 1 << 53, -3, 1,
 		2, nan, nan, nan, -1 << 63, nan, 0, 3, 5e-324, math.MaxFloat32, -1e-10, 1 << 63, 32767, nan}

@@ -210,6 +210,15 @@ func TestSheets(t *testing.T) {
 			t.Errorf("%q: %s", c.sheet, said)
 		}
 	}
+	// Errors about a row name the row of the sheet, past those that are blank.
+	tab, err := Open(t.Context(), Options{Files: []string{path}, Sheet: "Spring"})
+	if err != nil {
+		t.Fatal(err)
+	}
+	err = tab.Each(t.Context(), 1, func(_ int, b *Block) error { return b.Problem(1, 0, "is wrong", "") }, func(*Block) error { return nil })
+	if err == nil || !strings.HasSuffix(err.Error(), `sheet "Spring": row 6: column 1 "c": is wrong`) {
+		t.Errorf("%v", err)
+	}
 	hidden := book(t, func(f *excelize.File) error { return errors.Join(two(f), f.SetSheetVisible("Spring", false)) })
 	if got, err := collect(Options{Files: []string{hidden}}, chunkBytes, 1); err != nil || len(got.data) != 2 {
 		t.Errorf("a hidden sheet: %v", err)
