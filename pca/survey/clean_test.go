@@ -28,6 +28,12 @@ func TestNothingFoundWhereNothingIs(t *testing.T) {
 		{"skewed", func(r *rand.Rand, _ int, _ float64) float64 { return math.Exp(1.2 * r.NormFloat64()) }, []string{"skew"}},
 		{"waits", func(r *rand.Rand, _ int, _ float64) float64 { return math.Round(10*r.ExpFloat64()) / 10 }, []string{"skew"}},
 		{"negative", func(r *rand.Rand, _ int, _ float64) float64 { return -300 + 80*r.NormFloat64() }, nil},
+		{"held", func(r *rand.Rand, _ int, last float64) float64 {
+			if r.Float64() < .85 && last != 0 {
+				return last
+			}
+			return math.Round(400+90*r.NormFloat64()) / 4
+		}, nil},
 		{"wave", func(r *rand.Rand, i int, _ float64) float64 { return 9*math.Sin(float64(i)/30) + .1*r.NormFloat64() }, []string{"drift"}},
 	}
 	table := []string{"dependent-rows", "few-rows", "redundancy"}

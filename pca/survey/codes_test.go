@@ -165,3 +165,31 @@ func TestBounded(t *testing.T) {
 		t.Errorf("median %g of %d rows", got, len(s.rows))
 	}
 }
+
+// Mean, deviation and autocorrelation of a skewed channel, whose median is not its mean, are
+// those of the plain sums.
+func TestMomentsByHand(t *testing.T) {
+	r := rand.New(rand.NewPCG(3, 4))
+	x := make([]float64, 300)
+	for i := range x {
+		x[i] = math.Round(1e6*r.ExpFloat64()*r.ExpFloat64()) / 1e6
+		if i > 0 {
+			x[i] += .5 * x[i-1]
+		}
+	}
+	c := lookAt(t, 0, tableOf(t, x)).Channels[0]
+	mean, squares, products := 0.0, 0.0, 0.0
+	for _, v := range x {
+		mean += v / 300
+	}
+	for i, v := range x {
+		squares += (v - mean) * (v - mean)
+		if i > 0 {
+			products += (v - mean) * (x[i-1] - mean)
+		}
+	}
+	want := products / 299 / (squares / 300)
+	if math.Abs(c.Mean-mean) > 1e-12 || math.Abs(c.Deviation-math.Sqrt(squares/299)) > 1e-12 || math.Abs(c.Autocorrelation-want) > 1e-12 {
+		t.Errorf("mean %g, deviation %g, autocorrelation %g; want %g, %g, %g", c.Mean, c.Deviation, c.Autocorrelation, mean, math.Sqrt(squares/299), want)
+	}
+}

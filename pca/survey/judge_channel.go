@@ -179,9 +179,12 @@ func stuck(c *Channel) (runs []Run, limit int64) {
 	if len(c.Held) == 0 {
 		return nil, 0
 	}
-	// The longest runs themselves must not make runs look usual.
+	// The longest runs themselves must not make runs look usual, as long as most rows stay.
 	same, pairs := c.same, c.pairs
 	for _, r := range c.Held {
+		if 5*(pairs-r.Length) < 4*c.pairs {
+			break
+		}
 		same -= r.Length - 1
 		pairs -= r.Length - 1
 	}
