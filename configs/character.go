@@ -7,12 +7,12 @@ import (
 )
 
 // characters have words because they are hard to see or to quote.
-var characters = []struct{ word, text string }{{"comma", ","}, {"semicolon", ";"}, {"tab", "\t"}, {"bar", "|"}}
+var characters = []struct{ word, text string }{{"comma", ","}, {"semicolon", ";"}, {"tab", "\t"}, {"bar", "|"}, {"blanks", " "}}
 
 // parseCharacter reads a word for a character or the character itself: one byte that
 // neither ends a line nor belongs to a number, a name or quotes.
 func parseCharacter(n *yaml.Node) (v any, expected, hint string) {
-	const words = "comma, semicolon, tab, bar, or one character in quotes"
+	const words = "comma, semicolon, tab, bar, blanks, or one character in quotes"
 	if n.Kind != yaml.ScalarNode || isNull(n) {
 		return nil, words, ""
 	}

@@ -232,10 +232,10 @@ pump.yaml:5:9: read.time: expected text, found a list
 pump.yaml:6:17: write.folder: expected text that is not empty, found text ""
 `},
 	{"characters", start + "  separator: |\nwrite:\n", nil, `
-pump.yaml:4:14: read.separator: expected comma, semicolon, tab, bar, or one character in quotes, found text ""
+pump.yaml:4:14: read.separator: expected comma, semicolon, tab, bar, blanks, or one character in quotes, found text ""
 `},
 	{"character that is none", start + "  separator: x\n", nil, `
-pump.yaml:4:14: read.separator: expected comma, semicolon, tab, bar, or one character in quotes, found text "x"
+pump.yaml:4:14: read.separator: expected comma, semicolon, tab, bar, blanks, or one character in quotes, found text "x"
 `},
 	{"lists", "axisfold: 1\nread:\n  files: []\n  missing:\n  leave_out: {a: b}\n", nil, `
 pump.yaml:3:10: read.files: expected at least one, found an empty list

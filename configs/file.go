@@ -25,23 +25,24 @@ type File struct {
 
 // Read says which table to read and how.
 type Read struct {
-	Files      []string `key:"files"`      // paths and globs, relative to Dir
-	Format     string   `key:"format"`     // empty: from first bytes and extension
-	Sheet      string   `key:"sheet"`      // empty: the only one that holds a table
-	Query      string   `key:"query"`      // empty: all of the only table
-	Connection string   `key:"connection"` // name of an environment variable; empty: the standard ones
-	Encoding   string   `key:"encoding"`   // empty: looked up
-	Separator  string   `key:"separator"`  // one byte; empty: looked up in the header
-	Decimal    string   `key:"decimal"`
-	Comment    string   `key:"comment"` // empty: none
-	Missing    []string `key:"missing"` // as written
-	Header     bool     `key:"header"`
-	UnitsRow   bool     `key:"units_row"`
-	Time       string   `key:"time"`      // empty: none
-	Groups     string   `key:"groups"`    // empty: none
-	LeaveOut   []string `key:"leave_out"` // names and globs
-	Gaps       string   `key:"gaps"`
-	Spill      float64  `key:"spill"` // gigabytes; 0: none
+	Files       []string `key:"files"`      // paths and globs, relative to Dir
+	Format      string   `key:"format"`     // empty: from first bytes and extension
+	Sheet       string   `key:"sheet"`      // empty: the only one that holds a table
+	Query       string   `key:"query"`      // empty: all of the only table
+	Connection  string   `key:"connection"` // name of an environment variable; empty: the standard ones
+	Encoding    string   `key:"encoding"`   // empty: looked up
+	Orientation string   `key:"orientation"`
+	Separator   string   `key:"separator"` // one byte; empty: looked up in the header
+	Decimal     string   `key:"decimal"`
+	Comment     string   `key:"comment"` // empty: none
+	Missing     []string `key:"missing"` // as written
+	Header      bool     `key:"header"`
+	UnitsRow    bool     `key:"units_row"`
+	Time        string   `key:"time"`      // empty: none
+	Groups      string   `key:"groups"`    // empty: none
+	LeaveOut    []string `key:"leave_out"` // names and globs
+	Gaps        string   `key:"gaps"`
+	Spill       float64  `key:"spill"` // gigabytes; 0: none
 }
 
 // Standardize says how channels are centred and scaled.

@@ -33,6 +33,7 @@ read:
   query: ""
   connection: ""
   encoding: auto
+  orientation: rows
   separator: ";"
   decimal: comma
   comment: "#"
@@ -63,7 +64,7 @@ write: {folder: runs/x, scores: false, predictions: false}
 func TestEverySettingIsRead(t *testing.T) {
 	want := File{Path: "study/pump.yaml", Version: 1, Title: "Pump hall, spring campaign", Seed: 7,
 		Read: Read{Files: []string{"../testdata/demo/pump-hall.csv", "more/*.csv"}, Format: "csv", Separator: ";",
-			Decimal: "comma", Comment: "#", Missing: []string{"", "NA", "-999", "010", "1e5", "no", "~"},
+			Orientation: "rows", Decimal: "comma", Comment: "#", Missing: []string{"", "NA", "-999", "010", "1e5", "no", "~"},
 			UnitsRow: true, Time: "stamp", Groups: "campaign", LeaveOut: []string{"operator", "*_raw"}, Gaps: "complete-rows", Spill: 8},
 		Standardize: Standardize{Scaling: "none", Constant: "drop", Channels: []Channel{
 			{Name: "flow_7", Scaling: "none", Transform: "log"}, {Name: "t*", Transform: "square-root"}}},
@@ -81,7 +82,7 @@ func TestEverySettingIsRead(t *testing.T) {
 
 func TestDefaults(t *testing.T) {
 	want := File{Path: "study/pump.yaml", Version: 1, Seed: 1,
-		Read: Read{Files: []string{"a.csv"}, Decimal: "point", Missing: []string{"", "NA", "NaN", "nan", "null"},
+		Read: Read{Files: []string{"a.csv"}, Orientation: "rows", Decimal: "point", Missing: []string{"", "NA", "NaN", "nan", "null"},
 			Header: true, Gaps: "complete-rows", Spill: 8},
 		Standardize: Standardize{Scaling: "unit-normal", Constant: "error"},
 		Decompose:   Decompose{Matrix: "correlation", Route: "auto"},
@@ -167,6 +168,7 @@ read:
   query: ""
   connection: ""
   encoding: auto
+  orientation: rows
   separator: semicolon
   decimal: comma
   comment: "#"
@@ -212,6 +214,7 @@ read:
   query: ""
   connection: ""
   encoding: auto
+  orientation: rows
   separator: auto
   decimal: point
   comment: ""

@@ -30,7 +30,7 @@ func openDelimited(separator byte) func(context.Context, *setting, string) (part
 func (d *delimited) head() *head { return d.h }
 
 func (d *delimited) start(context.Context, *layout) (pieces, error) {
-	s, err := d.h.form.open(d.open, d.h.file)
+	s, err := d.h.form.open(d.options, d.open, d.h.file, 0)
 	if err != nil {
 		return nil, err
 	}

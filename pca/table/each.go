@@ -97,6 +97,9 @@ func (b *Block) placed(err error) error {
 	var e *Error
 	if errors.As(err, &e) && e.File == b.file && e.Line > 0 && !e.absolute {
 		e.Line += b.line - 1
+		if e.counted == "" {
+			e.counted = b.counted
+		}
 		e.absolute = true
 	}
 	return err

@@ -57,14 +57,14 @@ func encodingOf(asked encoding, first []byte) encoding {
 	return autoEncoding
 }
 
-// decoded is the text as UTF-8. The readers within need room for a character, which the
-// buffer around them gives.
-func decoded(r io.Reader, file string, e encoding) io.Reader {
+// decoded is the text as UTF-8.
+func decoded(r *bufio.Reader, file string, e encoding) io.Reader {
 	switch e {
 	case latin1Text:
-		return bufio.NewReaderSize(&latin1Reader{bufio.NewReaderSize(r, 1<<16)}, 1<<16)
+		return &refilled{fill: func(out []byte) ([]byte, error) { return fromLatin1(out, r) }}
 	case utf16Little, utf16Big:
-		return bufio.NewReaderSize(&utf16Reader{r: bufio.NewReaderSize(r, 1<<16), file: file, big: e == utf16Big, line: 1}, 1<<16)
+		u := &utf16Reader{r: r, file: file, big: e == utf16Big, line: 1}
+		return &refilled{fill: u.fill}
 	}
 	return r
 }
@@ -76,26 +76,24 @@ var windows1252 = [32]rune{
 	0x90, 0x2018, 0x2019, 0x201c, 0x201d, 0x2022, 0x2013, 0x2014, 0x02dc, 0x2122, 0x0161, 0x203a, 0x0153, 0x9d, 0x017e, 0x0178,
 }
 
-// latin1Reader turns Windows-1252, which holds Latin-1, into UTF-8.
-type latin1Reader struct{ r *bufio.Reader }
-
-func (l *latin1Reader) Read(p []byte) (n int, err error) {
-	for n+utf8.UTFMax <= len(p) && (n == 0 || l.r.Buffered() > 0) {
-		c, err := l.r.ReadByte()
-		if err != nil {
-			return n, err
-		}
+// fromLatin1 turns some Windows-1252, which holds Latin-1, into UTF-8.
+func fromLatin1(out []byte, r *bufio.Reader) ([]byte, error) {
+	if _, err := r.Peek(1); err != nil {
+		return out, err
+	}
+	some, _ := r.Peek(r.Buffered())
+	for _, c := range some {
 		switch {
 		case c < 0x80:
-			p[n] = c
-			n++
+			out = append(out, c)
 		case c < 0xa0:
-			n += utf8.EncodeRune(p[n:], windows1252[c-0x80])
+			out = utf8.AppendRune(out, windows1252[c-0x80])
 		default:
-			n += utf8.EncodeRune(p[n:], rune(c))
+			out = utf8.AppendRune(out, rune(c))
 		}
 	}
-	return n, nil
+	_, err := r.Discard(len(some))
+	return out, err
 }
 
 // utf16Reader turns UTF-16 into UTF-8; its mark becomes that of UTF-8.
@@ -106,29 +104,29 @@ type utf16Reader struct {
 	line int
 }
 
-func (u *utf16Reader) Read(p []byte) (n int, err error) {
-	for n+utf8.UTFMax <= len(p) && (n == 0 || u.r.Buffered() >= 4) {
+func (u *utf16Reader) fill(out []byte) ([]byte, error) {
+	for len(out) == 0 || u.r.Buffered() >= 4 {
 		c, err := u.unit()
 		if err != nil {
-			return n, err
+			return out, err
 		}
 		if utf16.IsSurrogate(c) {
 			low, err := u.unit()
 			if err != nil && err != io.EOF {
-				return n, err
+				return out, err
 			}
 			c = utf16.DecodeRune(c, low)
 			if err == io.EOF || c == utf8.RuneError {
-				return n, &Error{Kind: BadContent, File: u.file, Line: u.line, absolute: true,
+				return out, &Error{Kind: BadContent, File: u.file, Line: u.line, absolute: true,
 					Problem: "holds half a character of UTF-16", Hint: "the file is damaged, or in another encoding: see read.encoding"}
 			}
 		}
 		if c == '\n' {
 			u.line++
 		}
-		n += utf8.EncodeRune(p[n:], c)
+		out = utf8.AppendRune(out, c)
 	}
-	return n, nil
+	return out, nil
 }
 
 // unit reads two bytes.

@@ -1,6 +1,7 @@
 package table
 
 import (
+	"bufio"
 	"encoding/binary"
 	"io"
 	"os"
@@ -25,7 +26,7 @@ func TestWindows1252(t *testing.T) {
 			bytes = append(bytes, byte(c))
 		}
 	}
-	got, err := io.ReadAll(decoded(strings.NewReader(string(bytes)), "x", latin1Text))
+	got, err := io.ReadAll(decoded(bufio.NewReader(strings.NewReader(string(bytes))), "x", latin1Text))
 	if err != nil || string(got) != characters1252 {
 		t.Errorf("%q, %v", got, err)
 	}

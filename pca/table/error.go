@@ -38,6 +38,8 @@ type Error struct {
 func (e *Error) Error() string {
 	text := e.File
 	switch {
+	case e.counted == turnedCell && e.Column > 0 && e.Line > 0:
+		return fmt.Sprintf("%s: channel %d %q: cell %d: %s", e.File, e.Column, e.Name, e.Line, e.Problem)
 	case e.Line > 0 && e.counted != "":
 		text += ": " + e.counted + " " + strconv.Itoa(e.Line)
 	case e.Line > 0:

@@ -34,7 +34,7 @@ var formats = []format{
 	{"postgres", nil, "query connection", nil, true, openPostgres},
 }
 
-const textSettings = "encoding separator decimal comment header units_row"
+const textSettings = "encoding orientation separator decimal comment header units_row"
 
 // fits refuses settings that mean nothing to the format.
 func (f *format) fits(o *Options, file string) error {
@@ -42,7 +42,7 @@ func (f *format) fits(o *Options, file string) error {
 		key   string
 		given bool
 	}{{"separator", o.Separator != ""}, {"decimal", o.DecimalComma}, {"comment", o.Comment != ""}, {"header", o.NoHeader}, {"units_row", o.UnitsRow},
-		{"sheet", o.Sheet != ""}, {"query", o.Query != ""}, {"connection", o.Connection != ""}, {"encoding", o.Encoding != ""}} {
+		{"sheet", o.Sheet != ""}, {"query", o.Query != ""}, {"connection", o.Connection != ""}, {"encoding", o.Encoding != ""}, {"orientation", o.ChannelsInRows}} {
 		if s.given && !slices.Contains(strings.Fields(f.takes), s.key) {
 			return &Error{Kind: WrongInput, File: file, Problem: fmt.Sprintf("read.%s means nothing to the format %s", s.key, f.name)}
 		}

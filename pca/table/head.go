@@ -33,7 +33,7 @@ type head struct {
 
 // readHead looks at the beginning of a file.
 func readHead(o *Options, open opener, file string, separator byte) (*head, error) {
-	f := form{encoding: encoding(o.Encoding)}
+	f := form{encoding: encoding(o.Encoding), turned: o.ChannelsInRows}
 	h, err := f.readHead(o, open, file, separator)
 	if h == nil && err == nil {
 		// Not UTF-8 after all.
@@ -41,9 +41,12 @@ func readHead(o *Options, open opener, file string, separator byte) (*head, erro
 		h, err = f.readHead(o, open, file, separator)
 	}
 	if err != nil {
-		return nil, err
+		return nil, f.named(err)
 	}
 	h.form = f
+	if f.turned {
+		h.counted = turnedCell
+	}
 	if f.note != "" {
 		h.notes = append(h.notes, Note{Text: filepath.Base(file) + " " + f.note})
 	}
@@ -52,7 +55,7 @@ func readHead(o *Options, open opener, file string, separator byte) (*head, erro
 
 // readHead returns neither head nor error where the text turns out not to be UTF-8.
 func (f *form) readHead(o *Options, open opener, file string, separator byte) (*head, error) {
-	s, err := f.open(open, file)
+	s, err := f.open(o, open, file, separator)
 	if err != nil {
 		return nil, err
 	}
@@ -89,7 +92,7 @@ func (f *form) readHead(o *Options, open opener, file string, separator byte) (*
 		return nil, &Error{Kind: BadContent, File: file, Line: 1 + bytes.Count(text[:i], []byte{'\n'}),
 			Problem: "holds a NUL byte, so it is not text", Hint: "was it cut off, or is it in another format?"}
 	}
-	h := &head{file: file, dialect: newDialect(o, separatorOf(o, separator, text))}
+	h := &head{file: file, dialect: newDialect(o, f.separator)}
 	text = text[:bytes.LastIndexByte(text, '\n')+1]
 	if len(text) == 0 {
 		return nil, &Error{Kind: BadContent, File: file, Line: 1, Problem: "goes on for 64 MiB without a line end", Hint: "this is not a table"}
@@ -100,7 +103,7 @@ func (f *form) readHead(o *Options, open opener, file string, separator byte) (*
 }
 
 // separatorOf is the separator asked for, that of the format, or the candidate that the
-// first line holds most often outside quotes.
+// first line holds most often outside quotes; a blank stands for runs of blanks.
 func separatorOf(o *Options, ofFormat byte, text []byte) byte {
 	if o.Separator != "" {
 		return o.Separator[0]
@@ -125,6 +128,9 @@ func separatorOf(o *Options, ofFormat byte, text []byte) byte {
 		if count > most {
 			best, most = candidate, count
 		}
+	}
+	if most == 0 && blankSeparated(o, text) {
+		return ' '
 	}
 	return best
 }

@@ -15,7 +15,7 @@ type Options struct {
 	Files []string // paths or globs; several files are one table
 	// Format is the name of a format; empty takes it from the file's first bytes and name.
 	Format       string
-	Separator    string // one byte; empty looks at the header
+	Separator    string // one byte, a blank for runs of blanks; empty looks at the first lines
 	DecimalComma bool
 	Comment      string   // lines that start with it are passed over; empty: none
 	Missing      []string // cells that mean missing; those that are numbers go by value
@@ -30,6 +30,9 @@ type Options struct {
 	Connection string
 	// Encoding of text, one of Encodings; empty: looked up, with a note where it is a guess.
 	Encoding string
+	// ChannelsInRows tells that text is stored transposed: a line holds a channel, its name
+	// first unless NoHeader. The text is then held in memory, up to 1 GiB of it.
+	ChannelsInRows bool
 }
 
 // Table is an opened table.
@@ -110,7 +113,7 @@ func (t *Table) add(p part) error {
 
 // checkSeparator refuses separators that could be part of a number or of the quoting.
 func checkSeparator(o *Options) error {
-	if o.Separator == "" {
+	if o.Separator == "" || o.Separator == " " {
 		return nil
 	}
 	if len(o.Separator) > 1 || strings.Contains("\"\r\n +-.eE0123456789", o.Separator) || o.Separator >= "\x80" {
@@ -129,7 +132,7 @@ func (t *Table) Files() []string { return t.files }
 // many bytes: for all but plain text, which is read as fast as a file of numbers.
 func (t *Table) Costly() bool {
 	for _, p := range t.parts {
-		if d, ok := p.(*delimited); !ok || d.compressed {
+		if d, ok := p.(*delimited); !ok || d.compressed || d.h.form.turned {
 			return true
 		}
 	}
