@@ -50,6 +50,8 @@ func (m *Model) choose(o Options) error {
 		return m.smallest("BIC", func(s Step) float64 { return s.BIC })
 	case SmallestCp:
 		return m.smallest("Cp", func(s Step) float64 { return s.Cp })
+	case SmallestPress:
+		return m.smallest("PRESS", func(s Step) float64 { return s.Press })
 	case TThreshold:
 		for _, a := range m.Entering {
 			if math.IsNaN(m.T[a]) {

@@ -30,10 +30,11 @@ const (
 	SmallestBIC      Choice = "bic"         // Schwarz 1978
 	SmallestCp       Choice = "cp"          // Mallows 1973
 	TThreshold       Choice = "t-threshold" // components with t² above Limit; 2 gives the smallest Cp
+	SmallestPress    Choice = "press"       // Allen 1974, directions fixed; needs Options.Press
 )
 
 // Choices lists the choices that look at the response.
-var Choices = []Choice{Minimum, OneStandardError, SmallestAICc, SmallestBIC, SmallestCp, TThreshold}
+var Choices = []Choice{Minimum, OneStandardError, SmallestAICc, SmallestBIC, SmallestCp, TThreshold, SmallestPress}
 
 // Options say how to fit.
 type Options struct {
@@ -43,8 +44,9 @@ type Options struct {
 	ThroughOrigin bool
 	Order         Order
 	Choice        Choice
-	Components    int     // for Given
-	Limit         float64 // of t², for TThreshold
+	Components    int       // for Given
+	Limit         float64   // of t², for TThreshold
+	Press         PressSums // from a pass over the rows; nil without
 	// Most bounds the components considered; 0 means as many as the data carry.
 	Most       int
 	Confidence float64 // of the intervals, in (0,1)
@@ -126,6 +128,9 @@ type Step struct {
 	// deviation of least squares; NaN where that is undefined.
 	Cp     float64
 	Chosen bool
+	// Press is Σ(leave-one-out error)² with directions fixed, see [Press]; NaN without a pass
+	// over the rows.
+	Press float64
 }
 
 // Fit regresses the responses y on components of the predictors x: positions in the joint
@@ -172,6 +177,7 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 		m := newModel(joint, d, projections[i], y[i], x, o.Responses[i], o)
 		m.path(projections[i], most)
 		m.addCriteria(projections[i], o)
+		m.addPress(o.press(i))
 		if cv != nil {
 			m.addValidation(cv, i)
 		}

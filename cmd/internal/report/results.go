@@ -129,6 +129,7 @@ type validationFact struct {
 	R2         Number `json:"r2_fit"`
 	CVR2       Number `json:"r2_cv"`
 	Chosen     bool   `json:"chosen"`
+	Press      Number `json:"press"`
 }
 
 // WriteResults writes results.json: all facts of the study but those of single rows.
@@ -197,7 +198,7 @@ func regressionOf(r *Regression, m *pcr.Model) regressionFacts {
 			Number(r.R2), Number(r.Length), Number(r.Parameters), r.SignChanges})
 	}
 	for _, s := range m.Path {
-		f.Validation = append(f.Validation, validationFact{s.Components, Number(s.RootMean), Number(s.CV), Number(s.CVError), Number(s.R2), Number(s.CVR2), s.Chosen})
+		f.Validation = append(f.Validation, validationFact{s.Components, Number(s.RootMean), Number(s.CV), Number(s.CVError), Number(s.R2), Number(s.CVR2), s.Chosen, Number(s.Press)})
 	}
 	return f
 }

@@ -16,7 +16,7 @@ import (
 const dependencyIndex = 30
 
 // regress fits the responses on the components.
-func (w *work) regress(context.Context) error {
+func (w *work) regress(ctx context.Context) error {
 	g := w.cfg.Regress
 	if g == nil {
 		return nil
@@ -39,6 +39,9 @@ func (w *work) regress(context.Context) error {
 	}
 	if err := w.chooseRegressors(&o); err != nil {
 		return err
+	}
+	if err := w.press(ctx, responses, &o); err != nil {
+		return fmt.Errorf("regress: %w", err)
 	}
 	result, err := pcr.Fit(w.whole, w.folds, w.active, responses, o)
 	if err != nil {

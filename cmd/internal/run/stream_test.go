@@ -62,6 +62,7 @@ func TestStreamedEqualsHeld(t *testing.T) {
 		// A sketch of 4096 values places the median of 30,000 rows to within 0.1 % of rank;
 		// components of nearly equal variance turn by more.
 		{[]string{"standardize.scaling=median-mad"}, 5e-2, 5e-2},
+		{[]string{"regress.retain={rule: press, folds: 4}"}, 2e-3, 1e-9},
 		{[]string{"decompose.route=eigen", "standardize.channels={c1: {transform: log}}"}, 2e-3, 1e-9},
 	} {
 		text := `
@@ -110,6 +111,14 @@ func compare(t *testing.T, what string, folders [2]string, name string, toleranc
 			case "t":
 				if tolerance > 1e-3 {
 					continue // of single components, which turn where roots are close
+				}
+			case "press":
+				// Another reading of a table too large to hold, made for the rule alone.
+				if streamed := b[i][column]; !strings.Contains(what, "rule: press") {
+					if streamed != "" {
+						t.Fatalf("%s line %d: press is %s without a pass for it", what, i, streamed)
+					}
+					continue
 				}
 			case "rmse_cv", "r2_cv":
 				allowed = max(cv, tolerance)
