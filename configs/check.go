@@ -31,6 +31,7 @@ var checks = []check{
 			l.conflict("regress.retain.arrangement", "", "groups needs the name of their column in read.groups")
 		}
 	}},
+	{[]string{"regress.retain.arrangement", "regress.retain.gap", "regress.retain.repeats"}, arrangement},
 	{[]string{"regress.intercept", "standardize.scaling", "standardize.channels"}, throughOrigin},
 	{[]string{"regress.response", "read.leave_out"}, func(l *loader) {
 		l.eachResponse(func(name string) {
@@ -82,6 +83,20 @@ func server(l *loader) {
 }
 
 var variableName = regexp.MustCompile(`^[A-Za-z_][A-Za-z0-9_]*$`)
+
+// arrangement: a gap has a place only between rows in their order, and only random deals differ.
+func arrangement(l *loader) {
+	if l.file.Regress == nil {
+		return
+	}
+	r := l.file.Regress.Retain
+	if r.Gap > 0 && r.Arrangement != "blocks" && r.Arrangement != "forward" {
+		l.conflict("regress.retain.gap", "", "a gap needs arrangement: blocks or forward, found %s", r.Arrangement)
+	}
+	if r.Repeats > 1 && r.Arrangement != "random" {
+		l.conflict("regress.retain.repeats", "", "only arrangement: random can be repeated, found %s", r.Arrangement)
+	}
+}
 
 // throughOrigin: without an intercept the model goes through zero, so zero must stay zero.
 func throughOrigin(l *loader) {

@@ -307,7 +307,7 @@ hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, minimum-ave
 pump.yaml:4:38: retain: rule fixed takes no "percentile"
 hint: it takes components
 pump.yaml:5:53: regress.retain: rule broken-stick takes no "at_least"
-hint: it takes folds, arrangement, order
+hint: it takes folds, arrangement, order, gap, repeats
 `},
 	{"slip in a parameter", start + "retain: {rule: parallel, percentil: 95}\n", nil, `
 pump.yaml:4:26: retain: rule parallel takes no "percentil"
@@ -469,5 +469,18 @@ func TestErrorsUnwrap(t *testing.T) {
 	several := err.(interface{ Unwrap() []error }).Unwrap()
 	if len(several) != 3 || err.Error() != errors.Join(several...).Error() {
 		t.Errorf("%d problems: %v", len(several), err)
+	}
+}
+
+// A gap and repeats stand only where they mean something.
+func TestArrangement(t *testing.T) {
+	for set, want := range map[string]string{
+		"{rule: aicc, arrangement: random, gap: 3}":      "regress.retain.gap: a gap needs arrangement: blocks or forward, found random",
+		"{rule: aicc, arrangement: forward, repeats: 2}": "regress.retain.repeats: only arrangement: random can be repeated, found forward",
+	} {
+		_, err := Parse("pump.yaml", []byte(start+"regress: {response: y, retain: "+set+"}\n"), nil)
+		if err == nil || !strings.Contains(err.Error(), want) {
+			t.Errorf("%s: %v", set, err)
+		}
 	}
 }

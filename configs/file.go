@@ -84,6 +84,8 @@ type Rule struct {
 	Folds          int     `key:"folds"`
 	Arrangement    string  `key:"arrangement"`
 	Order          string  `key:"order"`
+	Gap            int     `key:"gap"`
+	Repeats        int     `key:"repeats"`
 	MostComponents int     `key:"most_components"` // 0: as many as the data carry
 }
 

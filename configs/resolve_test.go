@@ -55,7 +55,7 @@ regress:
   response: head_loss
   predictors: ["flow_*", t_in]
   intercept: false
-  retain: {rule: cross-validation, folds: 5, arrangement: groups, order: correlation, most_components: 4}
+  retain: {rule: cross-validation, folds: 5, arrangement: groups, order: correlation, gap: 0, repeats: 1, most_components: 4}
   confidence: 0.9
 draw: {formats: [svg, png]}
 write: {folder: runs/x, scores: false, predictions: false}
@@ -71,7 +71,7 @@ func TestEverySettingIsRead(t *testing.T) {
 		Decompose: Decompose{Matrix: "correlation", Route: "svd"},
 		Retain:    Rule{Rule: "parallel", Reference: "mean", Percentile: 99.5, Rows: "effective", Replicates: 500},
 		Regress: &Regress{Response: []string{"head_loss"}, Predictors: []string{"flow_*", "t_in"},
-			Retain:     Rule{Rule: "cross-validation", Folds: 5, Arrangement: "groups", Order: "correlation", MostComponents: 4},
+			Retain:     Rule{Rule: "cross-validation", Folds: 5, Arrangement: "groups", Order: "correlation", Repeats: 1, MostComponents: 4},
 			Confidence: 0.9},
 		Draw:  &Draw{Formats: []string{"svg", "png"}},
 		Write: Write{Folder: "runs/x"}}
@@ -88,7 +88,7 @@ func TestDefaults(t *testing.T) {
 		Decompose:   Decompose{Matrix: "correlation", Route: "auto"},
 		Retain:      Rule{Rule: "parallel", Reference: "percentile", Percentile: 95, Rows: "effective"},
 		Regress: &Regress{Response: []string{"y"}, Intercept: true,
-			Retain: Rule{Rule: "one-standard-error", Folds: 10, Arrangement: "blocks", Order: "variance"}, Confidence: 0.95},
+			Retain: Rule{Rule: "one-standard-error", Folds: 10, Arrangement: "blocks", Order: "variance", Repeats: 1}, Confidence: 0.95},
 		Draw:  &Draw{Formats: []string{"svg"}},
 		Write: Write{Folder: "runs/pump", Scores: true, Predictions: true}}
 	if got := settings(load(t, start+"regress: {response: y}\ndraw:\n")); !reflect.DeepEqual(got, want) {
@@ -122,7 +122,7 @@ func TestDefaultsOfRules(t *testing.T) {
 		"cross-validation":     {},
 		"one-standard-error":   {},
 	} {
-		want.Folds, want.Arrangement, want.Order = 10, "blocks", "variance"
+		want.Folds, want.Arrangement, want.Order, want.Repeats = 10, "blocks", "variance", 1
 		f := load(t, start+"regress: {response: y, retain: {rule: "+text+"}}\n")
 		want.Rule = f.Regress.Retain.Rule
 		if f.Regress.Retain != want {
@@ -194,7 +194,7 @@ regress:
   response: [head_loss]
   predictors: ["flow_*", t_in]
   intercept: false
-  retain: {rule: cross-validation, folds: 5, arrangement: groups, order: correlation, most_components: 4}
+  retain: {rule: cross-validation, folds: 5, arrangement: groups, order: correlation, gap: 0, repeats: 1, most_components: 4}
   confidence: 0.9
 draw:
   formats: [svg, png]
@@ -238,7 +238,7 @@ regress:
   response: ["y"]
   predictors: []
   intercept: true
-  retain: {rule: one-standard-error, folds: 10, arrangement: blocks, order: variance, most_components: all}
+  retain: {rule: one-standard-error, folds: 10, arrangement: blocks, order: variance, gap: 0, repeats: 1, most_components: all}
   confidence: 0.95
 draw:
   formats: [svg]

@@ -73,8 +73,11 @@ var order = Key{Name: "order", Kind: Word, Allowed: []string{"variance", "correl
 // fit is judged on held-out rows.
 var judged = []Key{
 	{Name: "folds", Kind: Whole, Range: from(2, 100000), Default: 10, Doc: "parts, each held out once"},
-	{Name: "arrangement", Kind: Word, Allowed: []string{"random", "blocks", "groups"}, Default: "blocks", Doc: "of rows into folds: dealt at random, in stretches, or by read.groups"},
+	{Name: "arrangement", Kind: Word, Allowed: []string{"random", "blocks", "groups", "forward"}, Default: "blocks",
+		Doc: "of rows into folds: dealt at random, in stretches, by read.groups, or in stretches learnt from what lies before them"},
 	order,
+	{Name: "gap", Kind: Whole, Range: atLeast(0), Default: 0, Doc: "rows left out between a stretch held out and those learnt from; with arrangement: blocks or forward"},
+	{Name: "repeats", Kind: Whole, Range: from(1, 1000), Default: 1, Doc: "deals of the rows to folds, each anew; with arrangement: random"},
 }
 
 // heldOut are the parameters of rules that decide by held-out rows.

@@ -59,6 +59,8 @@ regress.retain.components 2
 regress.retain.folds 10 (default)
 regress.retain.arrangement blocks (default)
 regress.retain.order variance (default)
+regress.retain.gap 0 (default)
+regress.retain.repeats 1 (default)
 regress.confidence 0.95 (default)
 draw.formats [svg] (default)
 write.folder runs/pump (default)

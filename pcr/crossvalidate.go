@@ -11,7 +11,10 @@ import (
 
 // validation holds held-out squared errors.
 type validation struct {
-	rows []int // by fold
+	rows []int // held out, by fold
+	// deals is which deal of rows to folds each fold is of, from 0 up; the number of deals
+	// is one more than the last.
+	deals []int
 	// most is the largest number of components that every fold's training rows carry.
 	most int
 	// errors[fold][response] holds Σ error² over the held-out rows.
@@ -29,29 +32,24 @@ type heldErrors struct {
 	pls      []float64 // by number of partial least squares components, from 1
 }
 
-// crossValidate fits without each fold in turn and judges the fit on the fold, from
-// summaries alone: the held-out squared error is a quadratic form in the fold's moments.
-// Scaling, decomposition and order of entry are made anew from the other folds.
-func crossValidate(folds []*pca.Summary, x, y []int, most int, o Options) (*validation, error) {
-	v := &validation{rows: make([]int, len(folds)), most: most, errors: make([][]heldErrors, len(folds))}
-	carried := make([]int, len(folds))
-	failed := make([]error, len(folds))
+// crossValidate fits on what each split learns from and judges the fit on what it holds
+// out, from summaries alone: the held-out squared error is a quadratic form in the moments
+// of the held-out rows. Scaling, decomposition and order of entry are made anew every time.
+func crossValidate(parts []*pca.Summary, splits []pca.Split, x, y []int, most int, o Options) (*validation, error) {
+	v := &validation{rows: make([]int, len(splits)), deals: make([]int, len(splits)), most: most, errors: make([][]heldErrors, len(splits))}
+	carried := make([]int, len(splits))
+	failed := make([]error, len(splits))
 	threads := o.Threads
 	if threads <= 0 {
 		threads = runtime.GOMAXPROCS(0)
 	}
 	var wg sync.WaitGroup
-	for t := range min(threads, len(folds)) {
+	for t := range min(threads, len(splits)) {
 		wg.Go(func() {
-			for f := t; f < len(folds); f += threads {
-				v.rows[f] = folds[f].Count()
-				others := make([]*pca.Summary, 0, len(folds)-1)
-				for g, part := range folds {
-					if g != f {
-						others = append(others, part)
-					}
-				}
-				v.errors[f], failed[f] = judgeFold(pca.MergeAll(others...), folds[f], x, y, most, o)
+			for f := t; f < len(splits); f += threads {
+				train, held := splits[f].Summaries(parts)
+				v.rows[f], v.deals[f] = held.Count(), splits[f].Deal
+				v.errors[f], failed[f] = judgeFold(train, held, x, y, most, o)
 				if failed[f] == nil {
 					carried[f] = len(v.errors[f][0].path) - 1
 				}
@@ -61,7 +59,7 @@ func crossValidate(folds []*pca.Summary, x, y []int, most int, o Options) (*vali
 	wg.Wait()
 	for f, err := range failed {
 		if err != nil {
-			return nil, fmt.Errorf("without fold %d of %d: %w", f+1, len(folds), err)
+			return nil, fmt.Errorf("without fold %d of %d: %w", f+1, len(splits), err)
 		}
 		v.most = min(v.most, carried[f])
 	}
@@ -174,38 +172,78 @@ func (g *judge) squares(i int, slopes []float64) float64 {
 // rootMean returns the root mean squared error over all held-out rows and its standard
 // error. With folds of n_f rows the mean squared error is Σ/n; its standard error is the
 // standard deviation of the folds' own mean squared errors over √folds, here carried to
-// the root. NaN where a fold lacks it.
+// the root. Deals hold the same rows, so that more of them smooth the error and its
+// standard error (root mean square over deals) but do not make it smaller. NaN where a
+// fold lacks it.
 func (v *validation) rootMean(of func(fold int) (squares float64, ok bool)) (root, slip, total float64) {
-	folds, rows, mean := float64(len(v.rows)), 0.0, 0.0
-	each := make([]float64, len(v.rows))
-	for f, n := range v.rows {
-		s, ok := of(f)
-		if !ok {
-			return math.NaN(), math.NaN(), math.NaN()
+	rows, variance, deals := 0.0, 0.0, 0.0
+	for start, end := 0, 0; start < len(v.rows); start = end {
+		for end = start; end < len(v.rows) && v.deals[end] == v.deals[start]; end++ {
 		}
-		total += s
-		rows += float64(n)
-		each[f] = s / float64(n)
-		mean += each[f] / folds
-	}
-	spread := 0.0
-	for _, e := range each {
-		spread += (e - mean) * (e - mean)
+		folds, mean, spread := float64(end-start), 0.0, 0.0
+		each := make([]float64, 0, end-start)
+		for f := start; f < end; f++ {
+			s, ok := of(f)
+			if !ok {
+				return math.NaN(), math.NaN(), math.NaN()
+			}
+			n := float64(v.rows[f])
+			total += s
+			rows += n
+			each = append(each, s/n)
+			mean += s / n / folds
+		}
+		for _, e := range each {
+			spread += (e - mean) * (e - mean)
+		}
+		variance += spread / (folds - 1) / folds
+		deals++
 	}
 	root = math.Sqrt(total / rows)
 	if root > 0 {
-		slip = math.Sqrt(spread/(folds-1)/folds) / (2 * root)
+		slip = math.Sqrt(variance/deals) / (2 * root)
 	}
 	return root, slip, total
 }
 
-// addValidation gives every step of the path its error on held-out rows.
-func (m *Model) addValidation(v *validation, response int) {
-	m.Folds = len(v.rows)
+// addValidation gives every step of the path its error on held-out rows, whose squares about
+// their mean are heldSquares.
+func (m *Model) addValidation(v *validation, response int, heldSquares float64) {
+	m.Deals = v.deals[len(v.deals)-1] + 1
+	m.Folds = len(v.rows) / m.Deals
 	for k := 0; k <= v.most && k < len(m.Path); k++ {
 		step := &m.Path[k]
 		var total float64
 		step.CV, step.CVError, total = v.rootMean(func(f int) (float64, bool) { return v.errors[f][response].path[k], true })
-		step.CVR2 = 1 - total/m.Total
+		step.CVR2 = 1 - total/heldSquares
 	}
+	if last := len(m.Path) - 1; 2*v.most < last {
+		m.warn("folds-carry-fewer", "the rows that the smallest fold leaves to learn from carry %s at most: no held-out error beyond (%d were considered)", components(v.most), last)
+	}
+}
+
+func components(k int) string {
+	if k == 1 {
+		return "1 component"
+	}
+	return fmt.Sprintf("%d components", k)
+}
+
+// heldSquares is Σ(y-ȳ)² over all held-out rows for each response.
+func heldSquares(parts []*pca.Summary, splits []pca.Split, y []int) []float64 {
+	var all *pca.Summary
+	for _, s := range splits {
+		for _, i := range s.Held {
+			if all == nil {
+				all = pca.MergeAll(parts[i].Pick(y))
+			} else {
+				all.Merge(parts[i].Pick(y))
+			}
+		}
+	}
+	out := make([]float64, len(y))
+	for i := range out {
+		out[i] = all.CenteredSquares(i)
+	}
+	return out
 }

@@ -47,6 +47,9 @@ type Options struct {
 	Components    int       // for Given
 	Limit         float64   // of t², for TThreshold
 	Press         PressSums // from a pass over the rows; nil without
+	// Splits say which of the folds are held out together and what is learnt from; nil holds
+	// out each in turn and learns from all others.
+	Splits []pca.Split
 	// Most bounds the components considered; 0 means as many as the data carry.
 	Most       int
 	Confidence float64 // of the intervals, in (0,1)
@@ -82,7 +85,8 @@ type Model struct {
 	T []float64
 	// Path holds one step per number of components, from 0.
 	Path     []Step
-	Folds    int
+	Folds    int // of each deal of the rows
+	Deals    int
 	Remedies []Remedy // components as chosen beside other published remedies
 	Warnings []pca.Warning
 
@@ -134,8 +138,8 @@ type Step struct {
 }
 
 // Fit regresses the responses y on components of the predictors x: positions in the joint
-// summary. folds, if any, are summaries of disjoint parts of the same rows; together they
-// are all rows. Scaling, decomposition and order are made anew without each fold.
+// summary. folds, if any, are summaries of disjoint parts of the same rows (of each deal,
+// where Options.Splits has several). Scaling, decomposition and order are made anew without each fold.
 func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Result, error) {
 	if o.ThroughOrigin {
 		joint = joint.AboutOrigin()
@@ -167,10 +171,15 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 			Hint: "ask for fewer components"}
 	}
 	var cv *validation
+	var squares []float64
 	if len(folds) > 0 {
-		if cv, err = crossValidate(folds, x, y, most, o); err != nil {
+		if o.Splits == nil {
+			o.Splits = pca.HoldEachOut(len(folds))
+		}
+		if cv, err = crossValidate(folds, o.Splits, x, y, most, o); err != nil {
 			return nil, err
 		}
+		squares = heldSquares(folds, o.Splits, y)
 	}
 	r := &Result{Decomposition: d}
 	for i := range y {
@@ -179,7 +188,7 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 		m.addCriteria(projections[i], o)
 		m.addPress(o.press(i))
 		if cv != nil {
-			m.addValidation(cv, i)
+			m.addValidation(cv, i, squares[i])
 		}
 		if err := m.choose(o); err != nil {
 			return nil, err

@@ -12,32 +12,35 @@ type split struct {
 	root        []float64 // of the squares of each channel in train
 }
 
-// splits makes one split per fold that holds rows; none without at least two.
+// splits makes one split per fold; none without at least two. Where the options do not say
+// what is held out and what is learnt from, each fold that holds rows is held out in turn.
 func (q *problem) splits(s *pca.Summary, folds []*pca.Summary, r *Result) []split {
-	var parts []*pca.Summary
-	rows := 0
-	for _, f := range folds {
-		if f.Count() > 0 {
-			parts = append(parts, f)
-			rows += f.Count()
+	parts, splits := folds, q.Splits
+	if splits == nil {
+		parts = nil
+		rows := 0
+		for _, f := range folds {
+			if f.Count() > 0 {
+				parts = append(parts, f)
+				rows += f.Count()
+			}
 		}
+		if rows != s.Count() && len(parts) > 1 {
+			r.warn("folds-differ", "the folds hold other rows than the summary; held-out numbers are theirs")
+		}
+		splits = pca.HoldEachOut(len(parts))
 	}
-	if len(parts) < 2 {
+	if len(splits) < 2 {
 		return nil
 	}
-	if rows != s.Count() {
-		r.warn("folds-differ", "the folds hold other rows than the summary; held-out numbers are theirs")
-	}
-	out := make([]split, len(parts))
-	for i, fold := range parts {
-		others := make([]*pca.Summary, 0, len(parts)-1)
-		others = append(others, parts[:i]...)
-		t := pca.MergeAll(append(others, parts[i+1:]...)...)
+	out := make([]split, len(splits))
+	for i, fold := range splits {
+		train, held := fold.Summaries(parts)
 		root := make([]float64, q.p)
 		for j := range root {
-			root[j] = math.Sqrt(t.CenteredSquares(j))
+			root[j] = math.Sqrt(train.CenteredSquares(j))
 		}
-		out[i] = split{t, fold, root}
+		out[i] = split{train, held, root}
 	}
 	return out
 }

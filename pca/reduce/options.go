@@ -23,10 +23,13 @@ type Options struct {
 	Cost       []float64 // p costs of keeping, default 1; the smallest sum wins when Size is 0
 	// Prefer, p: true adds 0.01/m to the criterion for each such channel among the m kept, so
 	// a preferred channel beats its near twin and the criterion gives up 0.01 at most.
-	Prefer    []bool
-	Together  [][]int // groups kept or dropped as one; groups that share a channel join
-	ExactUpTo int     // largest p of the exact search; default 30
-	Threads   int     // default 1; the result does not depend on it
+	Prefer   []bool
+	Together [][]int // groups kept or dropped as one; groups that share a channel join
+	// Splits say which folds are held out together and what is learnt from; nil holds out each
+	// in turn and learns from all others.
+	Splits    []pca.Split
+	ExactUpTo int // largest p of the exact search; default 30
+	Threads   int // default 1; the result does not depend on it
 }
 
 // Criteria lists the names that Options.Criterion may have.

@@ -94,6 +94,8 @@ type regressionFacts struct {
 	Confidence  Number           `json:"confidence"`
 	Terms       []termFacts      `json:"terms"`
 	Validation  []validationFact `json:"validation"`
+	Repeats     int              `json:"repeats"`
+	Gap         int              `json:"gap"`
 	Remedies    []remedyFacts    `json:"remedies"`
 }
 
@@ -185,7 +187,7 @@ func verdictOf(v retain.Verdict, chosen bool) verdictFacts {
 
 func regressionOf(r *Regression, m *pcr.Model) regressionFacts {
 	f := regressionFacts{Response: m.Response, Rule: r.Rule, Order: r.Order, Arrangement: r.Arrangement, Folds: m.Folds,
-		Components: m.Components, Rows: m.Rows, Freedom: m.Free, Residual: Number(m.Residual), R2: Number(m.R2), Confidence: Number(r.Confidence)}
+		Components: m.Components, Rows: m.Rows, Freedom: m.Free, Residual: Number(m.Residual), R2: Number(m.R2), Confidence: Number(r.Confidence), Repeats: m.Deals, Gap: r.Gap}
 	for _, a := range m.Entering[:m.Components] {
 		f.Enters = append(f.Enters, ComponentName(a))
 	}

@@ -88,6 +88,7 @@ type Regression struct {
 	Smearing    []pcr.Smearing
 	Rule        string
 	Arrangement string // of the folds
+	Gap         int    // rows beside a held-out stretch that nothing is learnt from
 	Order       pcr.Order
 	Confidence  float64
 	Origin      bool

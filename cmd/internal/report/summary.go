@@ -252,6 +252,12 @@ func (p *page) regression(s *Study, m *pcr.Model) {
 	how := r.Rule
 	if m.Folds > 0 {
 		how += fmt.Sprintf(", %d folds: %s", m.Folds, r.Arrangement)
+		if m.Deals > 1 {
+			how += fmt.Sprintf(", %d times", m.Deals)
+		}
+		if r.Gap > 0 {
+			how += fmt.Sprintf(", gap of %s", plural(r.Gap, "row"))
+		}
 	}
 	p.heading(fmt.Sprintf("Regression of %s on components (%s)", m.Response, how))
 	var enters []string

@@ -143,9 +143,9 @@ func (w *work) summarize(ctx context.Context, form pca.Form) (err error) {
 	ranks := pca.NeedsRanks(w.roles.methods)
 	switch c := w.reading.stream; {
 	case c == nil:
-		w.whole, w.folds, err = heldSummaries(w.reading.source.held, w.plan, form, ranks, w.options.Threads)
+		w.whole, w.folds, w.splits, err = heldSummaries(w.reading.source.held, w.plan, form, ranks, w.options.Threads)
 	case c.form == form:
-		w.whole, w.folds, err = c.summaries()
+		w.whole, w.folds, w.splits, err = c.summaries()
 	default:
 		again := newCollector(w.roles, w.plan, form)
 		if err := w.reading.source.each(ctx, w.options.Threads, func(_ int, b *table.Block) error {
@@ -157,7 +157,7 @@ func (w *work) summarize(ctx context.Context, form pca.Form) (err error) {
 		}); err != nil {
 			return err
 		}
-		w.whole, w.folds, err = again.summaries()
+		w.whole, w.folds, w.splits, err = again.summaries()
 	}
 	return err
 }

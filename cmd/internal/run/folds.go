@@ -1,7 +1,6 @@
 package run
 
 import (
-	"fmt"
 	"math/rand/v2"
 	"slices"
 
@@ -13,6 +12,8 @@ const (
 	randomFolds = "random" // rows dealt at random, a fixed deal per block of rows
 	blockFolds  = "blocks" // consecutive stretches of rows
 	groupFolds  = "groups" // whole groups
+	// forwardFolds are consecutive stretches, each learnt from what lies before it.
+	forwardFolds = "forward"
 )
 
 // foldPlan says how rows are dealt to folds; nil means no folds.
@@ -20,14 +21,21 @@ type foldPlan struct {
 	arrangement string
 	folds       int
 	seed        uint64
+	gap         int // rows left out beside a stretch that is held out
+	deals       int // of random folds
 	// flexible: a table of fewer rows gets as many folds as it fills.
 	flexible bool
 }
 
-// deal returns the fold of each of n rows of a block: every run of as many rows as there
-// are folds holds each fold once, in an order drawn from seed and block.
-func (p *foldPlan) deal(block, n int) []int {
-	rng := rand.New(rand.NewPCG(p.seed, uint64(block)))
+// ordered tells whether folds are stretches of rows in their order.
+func (p *foldPlan) ordered() bool {
+	return p.arrangement == blockFolds || p.arrangement == forwardFolds
+}
+
+// deal returns the fold of each of n rows of a block in one of several deals: every run of as many rows as there
+// are folds holds each fold once, in an order drawn from seed, block and deal.
+func (p *foldPlan) deal(deal, block, n int) []int {
+	rng := rand.New(rand.NewPCG(p.seed, uint64(block)+uint64(deal)<<40))
 	out := make([]int, n)
 	var order []int
 	for i := range out {
@@ -137,27 +145,18 @@ func (l *ledger) add(s *pca.Summary) {
 	l.entries = half
 }
 
-// cut returns the summaries of folds consecutive stretches: an entry belongs to the
-// stretch that holds its middle row.
-func (l *ledger) cut(folds int) ([]*pca.Summary, error) {
-	n := 0
-	for _, e := range l.entries {
-		n += e.Count()
-	}
-	groups := make([][]*pca.Summary, folds)
-	done := 0
-	for _, e := range l.entries {
-		middle := done + e.Count()/2
-		f := min(int(int64(middle)*int64(folds)/int64(max(n, 1))), folds-1)
-		groups[f] = append(groups[f], e)
-		done += e.Count()
-	}
-	out := make([]*pca.Summary, folds)
-	for f, g := range groups {
-		if len(g) == 0 {
-			return nil, &pca.DataError{Problem: fmt.Sprintf("fold %d of %d holds no rows", f+1, folds), Hint: "use fewer folds"}
+// dealt holds out each fold of each deal in turn; folds of a deal stand together.
+func (p *foldPlan) dealt(folds int) []pca.Split {
+	var out []pca.Split
+	for deal := range max(1, p.deals) {
+		for _, s := range pca.HoldEachOut(folds) {
+			s.Deal = deal
+			for i := range s.Train {
+				s.Train[i] += deal * folds
+			}
+			s.Held[0] += deal * folds
+			out = append(out, s)
 		}
-		out[f] = pca.MergeAll(g...)
 	}
-	return out, nil
+	return out
 }

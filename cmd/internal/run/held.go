@@ -15,9 +15,9 @@ import (
 // on the rows alone, so the sums have the same bits for any number of threads.
 const pieceRows = 2048
 
-// heldSummaries makes the summaries of a table in memory: of all rows, and of each fold,
-// whose ends are exact here.
-func heldSummaries(held *table.Held, plan *foldPlan, form pca.Form, ranks bool, threads int) (whole *pca.Summary, folds []*pca.Summary, err error) {
+// heldSummaries makes the summaries of a table in memory: of all rows, and of the cells
+// that folds are made of, whose ends are exact here.
+func heldSummaries(held *table.Held, plan *foldPlan, form pca.Form, ranks bool, threads int) (whole *pca.Summary, cells []*pca.Summary, splits []pca.Split, err error) {
 	n := held.Len()
 	all := make([]int, n)
 	for i := range all {
@@ -30,16 +30,16 @@ func heldSummaries(held *table.Held, plan *foldPlan, form pca.Form, ranks bool, 
 	width := len(held.Columns())
 	whole = summarizeRows(held.Matrix(), width, all, form, kept, threads)
 	if plan == nil {
-		return whole, nil, nil
+		return whole, nil, nil, nil
 	}
-	lists, err := foldRows(held, plan)
+	lists, splits, err := foldRows(held, plan)
 	if err != nil {
-		return nil, nil, err
+		return nil, nil, nil, err
 	}
 	for _, rows := range lists {
-		folds = append(folds, summarizeRows(held.Matrix(), width, rows, form, kept, threads))
+		cells = append(cells, summarizeRows(held.Matrix(), width, rows, form, kept, threads))
 	}
-	return whole, folds, nil
+	return whole, cells, splits, nil
 }
 
 // heldBlocks summarises count consecutive stretches for resampling; 0 makes about √n of
@@ -67,25 +67,36 @@ func heldBlocks(held *table.Held, count int, form pca.Form, ranks bool, threads 
 	return out
 }
 
-// foldRows lists the rows of each fold.
-func foldRows(held *table.Held, plan *foldPlan) ([][]int, error) {
+// foldRows lists the rows of each cell, and says which cells are held out together.
+func foldRows(held *table.Held, plan *foldPlan) (lists [][]int, splits []pca.Split, err error) {
 	n := held.Len()
 	if plan.flexible {
-		plan.folds = min(plan.folds, n)
+		most := n
+		if plan.arrangement == forwardFolds {
+			most-- // the first row is only learnt from
+		}
+		plan.folds = min(plan.folds, most)
 	}
-	if plan.arrangement != groupFolds && n < plan.folds {
-		return nil, tooFewRows(n, plan.folds)
+	if plan.arrangement == randomFolds && n < plan.folds {
+		return nil, nil, tooFewRows(n, plan.folds)
 	}
-	var lists [][]int
 	switch plan.arrangement {
 	case randomFolds:
-		lists = make([][]int, plan.folds)
-		for i, f := range plan.deal(0, n) {
-			lists[f] = append(lists[f], i)
+		for deal := range max(1, plan.deals) {
+			dealt := make([][]int, plan.folds)
+			for i, f := range plan.deal(deal, 0, n) {
+				dealt[f] = append(dealt[f], i)
+			}
+			lists = append(lists, dealt...)
 		}
-	case blockFolds:
+		splits = plan.dealt(plan.folds)
+	case blockFolds, forwardFolds:
+		d, err := plan.divide(n, nil)
+		if err != nil {
+			return nil, nil, err
+		}
 		start := 0
-		for _, end := range stretches(n, plan.folds) {
+		for _, end := range d.ends {
 			var rows []int
 			for i := start; i < end; i++ {
 				rows = append(rows, i)
@@ -93,6 +104,7 @@ func foldRows(held *table.Held, plan *foldPlan) ([][]int, error) {
 			lists = append(lists, rows)
 			start = end
 		}
+		splits = d.splits
 	case groupFolds:
 		at := map[string]int{}
 		var groups [][]int
@@ -105,7 +117,7 @@ func foldRows(held *table.Held, plan *foldPlan) ([][]int, error) {
 			groups[at[g]] = append(groups[at[g]], i)
 		}
 		if len(groups) < 2 {
-			return nil, &pca.DataError{Problem: fmt.Sprintf("folds by group need at least 2 groups; the complete rows hold %d", len(groups)),
+			return nil, nil, &pca.DataError{Problem: fmt.Sprintf("folds by group need at least 2 groups; the complete rows hold %d", len(groups)),
 				Hint: "use arrangement: blocks"}
 		}
 		sizes := make([]int, len(groups))
@@ -119,10 +131,11 @@ func foldRows(held *table.Held, plan *foldPlan) ([][]int, error) {
 			}
 			lists = append(lists, rows)
 		}
+		splits = plan.dealt(len(lists))
 	default:
 		panic("run: unknown arrangement " + strconv.Quote(plan.arrangement))
 	}
-	return lists, nil
+	return lists, splits, nil
 }
 
 // summarizeRows summarises the given rows of x in pieces, in parallel, merged in order.

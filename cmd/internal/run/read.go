@@ -144,7 +144,7 @@ func newCollector(r *roles, plan *foldPlan, form pca.Form) *collector {
 	switch {
 	case plan == nil:
 		c.ledger = newLedger(r.width(), ledgerBlocks, c.ranks)
-	case plan.arrangement == blockFolds:
+	case plan.ordered():
 		c.ledger = newLedger(r.width(), max(plan.folds, ledgerBlocks), c.ranks)
 	}
 	return c
@@ -158,7 +158,7 @@ func (c *collector) summarize(b *table.Block) []keyed {
 	switch {
 	case c.plan == nil:
 		return []keyed{{"", builder.Summarize(b.Data, b.Rows)}}
-	case c.plan.arrangement == blockFolds:
+	case c.plan.ordered():
 		// Cut finer the more folds there are, so that their ends come close to exact.
 		cuts := stretches(b.Rows, 1+c.plan.folds/4)
 		out := make([]keyed, 0, len(cuts))
@@ -171,12 +171,16 @@ func (c *collector) summarize(b *table.Block) []keyed {
 		}
 		return out
 	case c.plan.arrangement == randomFolds:
-		folds := c.plan.deal(b.Index, b.Rows)
 		names := make([]string, c.plan.folds)
-		for f := range names {
-			names[f] = strconv.Itoa(f)
+		var out []keyed
+		for deal := range max(1, c.plan.deals) {
+			for f := range names {
+				names[f] = strconv.Itoa(deal*c.plan.folds + f)
+			}
+			folds := c.plan.deal(deal, b.Index, b.Rows)
+			out = append(out, split(b, func(i int) string { return names[folds[i]] }, builder)...)
 		}
-		key = func(i int) string { return names[folds[i]] }
+		return out
 	default:
 		key = func(i int) string { return string(b.Group(i)) }
 	}
@@ -234,32 +238,39 @@ func (c *collector) blocks() []*pca.Summary {
 	return c.ledger.entries
 }
 
-// summaries returns the summary of all rows, and of each fold if there is a plan.
-func (c *collector) summaries() (whole *pca.Summary, folds []*pca.Summary, err error) {
+// summaries returns the summary of all rows and, if there is a plan, those of the cells that
+// folds are made of.
+func (c *collector) summaries() (whole *pca.Summary, cells []*pca.Summary, splits []pca.Split, err error) {
 	switch {
 	case c.plan == nil:
-		return pca.MergeAll(c.ledger.entries...), nil, nil
+		return pca.MergeAll(c.ledger.entries...), nil, nil, nil
 	case c.ledger != nil:
-		folds, err = c.ledger.cut(c.plan.folds)
+		cells, splits, err = c.ledger.cut(c.plan)
 	default:
-		folds, err = c.plan.fromParts(&c.parts)
+		cells, splits, err = c.plan.fromParts(&c.parts)
 	}
 	if err != nil {
-		return nil, nil, err
+		return nil, nil, nil, err
 	}
-	return pca.MergeAll(folds...), folds, nil
+	// Each deal is all rows.
+	return pca.MergeAll(cells[:len(cells)/max(1, c.plan.deals)]...), cells, splits, nil
 }
 
 // fromParts makes folds from summaries by key.
-func (p *foldPlan) fromParts(have *parts) ([]*pca.Summary, error) {
+func (p *foldPlan) fromParts(have *parts) ([]*pca.Summary, []pca.Split, error) {
 	if p.arrangement == randomFolds {
-		if len(have.sums) < p.folds {
-			return nil, tooFewRows(len(have.sums), p.folds)
+		folds := make([]*pca.Summary, p.folds*max(1, p.deals))
+		for f := range folds {
+			at, ok := have.at[strconv.Itoa(f)]
+			if !ok {
+				return nil, nil, tooFewRows(len(have.sums), p.folds)
+			}
+			folds[f] = have.sums[at]
 		}
-		return have.sums, nil
+		return folds, p.dealt(p.folds), nil
 	}
 	if len(have.sums) < 2 {
-		return nil, &pca.DataError{Problem: fmt.Sprintf("folds by group need at least 2 groups; the complete rows hold %d", len(have.sums)),
+		return nil, nil, &pca.DataError{Problem: fmt.Sprintf("folds by group need at least 2 groups; the complete rows hold %d", len(have.sums)),
 			Hint: "use arrangement: blocks"}
 	}
 	sizes := make([]int, len(have.sums))
@@ -274,7 +285,7 @@ func (p *foldPlan) fromParts(have *parts) ([]*pca.Summary, error) {
 		}
 		folds = append(folds, pca.MergeAll(sums...))
 	}
-	return folds, nil
+	return folds, p.dealt(len(folds)), nil
 }
 
 func tooFewRows(rows, folds int) error {

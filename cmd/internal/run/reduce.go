@@ -37,7 +37,7 @@ func (w *work) reduce(context.Context) error {
 		return out, nil
 	}
 	o := reduce.Options{Names: d.Channels, Matrix: string(d.Matrix), Rebuild: c.Rebuild, Size: c.Size, Criterion: c.Criterion,
-		Components: max(1, w.study.Retained()), ExactUpTo: c.ExactUpTo, Threads: w.options.Threads,
+		Splits: w.splits, Components: max(1, w.study.Retained()), ExactUpTo: c.ExactUpTo, Threads: w.options.Threads,
 		Cost: make([]float64, p), Tolerance: make([]float64, p)}
 	if c.Size > p {
 		return &pca.DataError{Problem: fmt.Sprintf("reduce: size %d asked for, but the table has %d channels", c.Size, p)}

@@ -22,13 +22,13 @@ func (w *work) regress(ctx context.Context) error {
 		return nil
 	}
 	o := pcr.Options{Predictors: w.decomposeOptions(), ThroughOrigin: !g.Intercept, Order: pcr.Order(g.Retain.Order),
-		Confidence: g.Confidence, Most: g.Retain.MostComponents, Threads: w.options.Threads}
+		Confidence: g.Confidence, Most: g.Retain.MostComponents, Threads: w.options.Threads, Splits: w.splits}
 	if pcr.Choice(g.Retain.Rule) == pcr.TThreshold {
 		o.Order = pcr.ByCorrelation // its components enter by the size of their t values
 	}
 	reg := &report.Regression{Rule: g.Retain.Rule, Order: o.Order, Confidence: g.Confidence, Origin: o.ThroughOrigin}
 	if w.plan != nil {
-		reg.Arrangement = w.plan.arrangement
+		reg.Arrangement, reg.Gap = w.plan.arrangement, w.plan.gap
 	}
 	var responses []int
 	for i := w.roles.channels; i < w.roles.width(); i++ {

@@ -92,7 +92,8 @@ type work struct {
 	reading *reading
 	plan    *foldPlan
 	whole   *pca.Summary
-	folds   []*pca.Summary
+	folds   []*pca.Summary // what splits are made of
+	splits  []pca.Split
 	active  []int         // channels that take part, by position in the prepared rows
 	dropped []report.Note // channels that do not
 	study   *report.Study
@@ -151,7 +152,7 @@ func foldsOf(cfg *configs.File) *foldPlan {
 	}
 	r := cfg.Regress.Retain
 	choice := pcr.Choice(r.Rule)
-	return &foldPlan{arrangement: r.Arrangement, folds: r.Folds, seed: cfg.Seed,
+	return &foldPlan{arrangement: r.Arrangement, folds: r.Folds, gap: r.Gap, deals: r.Repeats, seed: cfg.Seed,
 		flexible: choice != pcr.Minimum && choice != pcr.OneStandardError}
 }
 

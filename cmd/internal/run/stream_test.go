@@ -57,6 +57,9 @@ func TestStreamedEqualsHeld(t *testing.T) {
 		{[]string{"regress.retain.arrangement=groups"}, 1e-9, 1e-9},
 		{[]string{"regress.retain.arrangement=blocks"}, 2e-3, 1e-9},
 		{[]string{"regress.retain.arrangement=random"}, 2e-3, 1e-9},
+		{[]string{"regress.retain.arrangement=random", "regress.retain.repeats=3"}, 2e-3, 1e-9},
+		{[]string{"regress.retain.gap=50", "reduce={}"}, 2e-3, 1e-9},
+		{[]string{"regress.retain.arrangement=forward", "regress.retain.gap=50", "reduce={}"}, 2e-3, 1e-9},
 		{[]string{"standardize.scaling=pareto"}, 2e-3, 1e-9},
 		{[]string{"standardize.scaling=range", "decompose.route=svd"}, 2e-3, 1e-9},
 		// A sketch of 4096 values places the median of 30,000 rows to within 0.1 % of rank;
