@@ -132,6 +132,7 @@ type Regress struct {
 	Intercept  bool     `key:"intercept"`
 	Retain     Rule     `key:"retain"`
 	Confidence float64  `key:"confidence"`
+	Nested     string   `key:"nested"`
 }
 
 // Draw says what is drawn.

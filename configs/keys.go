@@ -81,6 +81,7 @@ var sections = []Key{
 		{Name: "intercept", Kind: Switch, Default: true, Doc: "false fits through the origin, which needs scaling: none"},
 		{Name: "retain", Kind: Choice, Rules: rulesFor(regressors), Default: "one-standard-error", Doc: "how many components enter the regression"},
 		{Name: "confidence", Kind: Number, Range: below(1), Default: 0.95, Doc: "of intervals for coefficients and predictions"},
+		{Name: "nested", Kind: Word, Allowed: []string{"auto", "always", "never"}, Default: "auto", Doc: "judge the whole procedure, the choice of components made anew in every fold; auto does where that takes seconds"},
 	}},
 	{Name: "draw", Kind: Section, Named: true, Doc: "pictures of the results", Keys: []Key{
 		{Name: "formats", Kind: Words, Filled: true, Allowed: []string{"svg", "png", "pdf"}, Default: []string{"svg"}, Doc: "each picture once in each format"},

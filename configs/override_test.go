@@ -29,7 +29,7 @@ func TestOverrides(t *testing.T) {
 			f.Standardize.Channels = []Channel{{Name: "flow_7", Transform: "log"}}
 		}},
 		{[]string{"regress.response=y", "regress.retain.rule=fixed", "regress.retain.components=0"}, func(f *File) {
-			f.Regress = &Regress{Response: []string{"y"}, Intercept: true, Confidence: 0.95, Retain: Rule{Rule: "fixed", Folds: 10, Arrangement: "blocks", Order: "variance", Repeats: 1}}
+			f.Regress = &Regress{Response: []string{"y"}, Intercept: true, Confidence: 0.95, Nested: "auto", Retain: Rule{Rule: "fixed", Folds: 10, Arrangement: "blocks", Order: "variance", Repeats: 1}}
 		}},
 	} {
 		got, err := Parse("study/pump.yaml", []byte(base), c.sets)

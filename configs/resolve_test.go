@@ -72,7 +72,7 @@ func TestEverySettingIsRead(t *testing.T) {
 		Retain:    Rule{Rule: "parallel", Reference: "mean", Percentile: 99.5, Rows: "effective", Replicates: 500},
 		Regress: &Regress{Response: []string{"head_loss"}, Predictors: []string{"flow_*", "t_in"},
 			Retain:     Rule{Rule: "cross-validation", Folds: 5, Arrangement: "groups", Order: "correlation", Repeats: 1, MostComponents: 4},
-			Confidence: 0.9},
+			Confidence: 0.9, Nested: "auto"},
 		Draw:  &Draw{Formats: []string{"svg", "png"}},
 		Write: Write{Folder: "runs/x"}}
 	if got := settings(load(t, whole)); !reflect.DeepEqual(got, want) {
@@ -88,7 +88,7 @@ func TestDefaults(t *testing.T) {
 		Decompose:   Decompose{Matrix: "correlation", Route: "auto"},
 		Retain:      Rule{Rule: "parallel", Reference: "percentile", Percentile: 95, Rows: "effective"},
 		Regress: &Regress{Response: []string{"y"}, Intercept: true,
-			Retain: Rule{Rule: "one-standard-error", Folds: 10, Arrangement: "blocks", Order: "variance", Repeats: 1}, Confidence: 0.95},
+			Retain: Rule{Rule: "one-standard-error", Folds: 10, Arrangement: "blocks", Order: "variance", Repeats: 1}, Confidence: 0.95, Nested: "auto"},
 		Draw:  &Draw{Formats: []string{"svg"}},
 		Write: Write{Folder: "runs/pump", Scores: true, Predictions: true}}
 	if got := settings(load(t, start+"regress: {response: y}\ndraw:\n")); !reflect.DeepEqual(got, want) {
@@ -196,6 +196,7 @@ regress:
   intercept: false
   retain: {rule: cross-validation, folds: 5, arrangement: groups, order: correlation, gap: 0, repeats: 1, most_components: 4}
   confidence: 0.9
+  nested: auto
 draw:
   formats: [svg, png]
 write:
@@ -240,6 +241,7 @@ regress:
   intercept: true
   retain: {rule: one-standard-error, folds: 10, arrangement: blocks, order: variance, gap: 0, repeats: 1, most_components: all}
   confidence: 0.95
+  nested: auto
 draw:
   formats: [svg]
 write:

@@ -62,6 +62,7 @@ regress.retain.order variance (default)
 regress.retain.gap 0 (default)
 regress.retain.repeats 1 (default)
 regress.confidence 0.95 (default)
+regress.nested auto (default)
 draw.formats [svg] (default)
 write.folder runs/pump (default)
 write.scores true

@@ -69,18 +69,7 @@ func crossValidate(parts []*pca.Summary, splits []pca.Split, x, y []int, most in
 // judgeFold returns the errors over held for every response: of components up to what
 // train carries, of ridge regression and of partial least squares.
 func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([]heldErrors, error) {
-	// A channel that does not move in the training rows cannot be scaled or learnt from:
-	// it has no slope in this fold.
-	var moving []int
-	po := o.Predictors
-	po.Names, po.Methods = nil, nil
-	for i, j := range x {
-		if !train.Constant(j) {
-			moving = append(moving, j)
-			po.Names = append(po.Names, o.Predictors.Names[i])
-			po.Methods = append(po.Methods, o.Predictors.Methods[i])
-		}
-	}
+	moving, po := movingIn(train, x, o.Predictors)
 	out := make([]heldErrors, len(y))
 	if len(moving) == 0 || train.Count() < 2 {
 		for i, j := range y {
@@ -101,6 +90,9 @@ func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([]hel
 		for _, a := range entering(along, o.Order)[:min(d.Rank, most)] {
 			slopes[a] = along[a] / d.Length(a)
 			out[i].path = append(out[i].path, g.squares(i, slopes))
+		}
+		if o.pathOnly {
+			continue
 		}
 		for _, kappa := range ridgeGrid(d) {
 			out[i].ridge = append(out[i].ridge, g.squares(i, ridgeSlopes(d, along, kappa)))

@@ -50,10 +50,14 @@ type Options struct {
 	// Splits say which of the folds are held out together and what is learnt from; nil holds
 	// out each in turn and learns from all others.
 	Splits []pca.Split
+	// Nested asks for the error of the whole procedure, which costs the square of the folds.
+	Nested bool
 	// Most bounds the components considered; 0 means as many as the data carry.
 	Most       int
 	Confidence float64 // of the intervals, in (0,1)
 	Threads    int
+
+	pathOnly bool // inner folds judge components alone
 }
 
 // Result is a fit of one or several responses on the same components.
@@ -84,11 +88,13 @@ type Model struct {
 	// least squares; NaN where that is undefined.
 	T []float64
 	// Path holds one step per number of components, from 0.
-	Path     []Step
-	Folds    int // of each deal of the rows
-	Deals    int
-	Remedies []Remedy // components as chosen beside other published remedies
-	Warnings []pca.Warning
+	Path  []Step
+	Folds int // of each deal of the rows
+	Deals int
+	// Procedure is nil where it was not asked for.
+	Procedure *Procedure
+	Remedies  []Remedy // components as chosen beside other published remedies
+	Warnings  []pca.Warning
 
 	constants  int       // 1 with an intercept, else 0
 	deviation  float64   // of the response
@@ -172,6 +178,7 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 	}
 	var cv *validation
 	var squares []float64
+	whole := make([]*Procedure, len(y))
 	if len(folds) > 0 {
 		if o.Splits == nil {
 			o.Splits = pca.HoldEachOut(len(folds))
@@ -180,6 +187,9 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 			return nil, err
 		}
 		squares = heldSquares(folds, o.Splits, y)
+		if o.Nested {
+			whole = procedures(folds, cv, x, y, most, o)
+		}
 	}
 	r := &Result{Decomposition: d}
 	for i := range y {
@@ -192,6 +202,9 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 		}
 		if err := m.choose(o); err != nil {
 			return nil, err
+		}
+		if m.Procedure = whole[i]; m.Procedure != nil && m.Procedure.Note != "" {
+			m.warn("no-procedure", "the error of the whole procedure is not known: %s", m.Procedure.Note)
 		}
 		m.mapBack(joint, d, projections[i], x, y[i], o)
 		m.remedies(d, projections[i], cv, i, most)

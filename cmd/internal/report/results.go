@@ -96,6 +96,7 @@ type regressionFacts struct {
 	Validation  []validationFact `json:"validation"`
 	Repeats     int              `json:"repeats"`
 	Gap         int              `json:"gap"`
+	Procedure   *procedureFacts  `json:"procedure,omitempty"`
 	Remedies    []remedyFacts    `json:"remedies"`
 }
 
@@ -187,7 +188,7 @@ func verdictOf(v retain.Verdict, chosen bool) verdictFacts {
 
 func regressionOf(r *Regression, m *pcr.Model) regressionFacts {
 	f := regressionFacts{Response: m.Response, Rule: r.Rule, Order: r.Order, Arrangement: r.Arrangement, Folds: m.Folds,
-		Components: m.Components, Rows: m.Rows, Freedom: m.Free, Residual: Number(m.Residual), R2: Number(m.R2), Confidence: Number(r.Confidence), Repeats: m.Deals, Gap: r.Gap}
+		Components: m.Components, Rows: m.Rows, Freedom: m.Free, Residual: Number(m.Residual), R2: Number(m.R2), Confidence: Number(r.Confidence), Repeats: m.Deals, Gap: r.Gap, Procedure: procedureOf(m.Procedure)}
 	for _, a := range m.Entering[:m.Components] {
 		f.Enters = append(f.Enters, ComponentName(a))
 	}

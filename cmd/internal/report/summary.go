@@ -101,7 +101,7 @@ func (p *page) decision(s *Study) {
 		if !math.IsNaN(step.CV) {
 			text += fmt.Sprintf(", %.4f on held-out rows, where a prediction is off by %s (root mean square)", step.CVR2, withUnit(short(step.CV), unit))
 		}
-		p.paragraph("", "", text+".")
+		p.paragraph("", "", text+"."+procedureText(m.Procedure, unit))
 	}
 }
 

@@ -31,6 +31,7 @@ var Tables = []TableFile{
 	{"tradeoff.csv", hasReduction, fillTradeoff},
 	{"coefficients.csv", hasRegression, fillCoefficients},
 	{"validation.csv", hasRegression, fillValidation},
+	{"procedure.csv", hasProcedure, fillProcedure},
 	{"remedies.csv", hasRegression, fillRemedies},
 	{"collinearity.csv", hasCollinearity, fillCollinearity},
 	{"dependencies.csv", hasDependencies, fillDependencies},

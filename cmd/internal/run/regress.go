@@ -22,7 +22,7 @@ func (w *work) regress(ctx context.Context) error {
 		return nil
 	}
 	o := pcr.Options{Predictors: w.decomposeOptions(), ThroughOrigin: !g.Intercept, Order: pcr.Order(g.Retain.Order),
-		Confidence: g.Confidence, Most: g.Retain.MostComponents, Threads: w.options.Threads, Splits: w.splits}
+		Confidence: g.Confidence, Most: g.Retain.MostComponents, Threads: w.options.Threads, Splits: w.splits, Nested: w.nested()}
 	if pcr.Choice(g.Retain.Rule) == pcr.TThreshold {
 		o.Order = pcr.ByCorrelation // its components enter by the size of their t values
 	}
