@@ -72,7 +72,10 @@ func pictureFormat(file string) string {
 
 func drawSurvey(v *survey.Survey, file string) error {
 	var drawn bytes.Buffer
-	title := filepath.Base(v.Files[0])
+	title := ""
+	if len(v.Files) > 0 {
+		title = filepath.Base(v.Files[0])
+	}
 	if err := plots.DrawSurvey(v, title, pictureFormat(file), &drawn); err != nil {
 		return err
 	}
