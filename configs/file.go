@@ -34,8 +34,9 @@ type Read struct {
 	Orientation string   `key:"orientation"`
 	Separator   string   `key:"separator"` // one byte; empty: looked up in the header
 	Decimal     string   `key:"decimal"`
-	Comment     string   `key:"comment"` // empty: none
-	Missing     []string `key:"missing"` // as written
+	Thousands   string   `key:"thousands"` // empty: none
+	Comment     string   `key:"comment"`   // empty: none
+	Missing     []string `key:"missing"`   // as written
 	Header      bool     `key:"header"`
 	UnitsRow    bool     `key:"units_row"`
 	Time        string   `key:"time"`      // empty: none

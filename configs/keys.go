@@ -28,6 +28,7 @@ var sections = []Key{
 		{Name: "orientation", Kind: Word, Allowed: []string{"rows", "channels-in-rows"}, Default: "rows", Doc: "channels-in-rows is a text stored transposed, each line a channel, its name first if there is a header; it is held in memory, up to 1 GiB"},
 		{Name: "separator", Kind: Character, Blank: "auto", Doc: "between cells: comma, semicolon, tab, bar or one character; blanks for runs of blanks; auto looks at the first lines"},
 		{Name: "decimal", Kind: Word, Allowed: []string{"point", "comma"}, Default: "point", Doc: "decimal sign of numbers in cells"},
+		{Name: "thousands", Kind: Word, Allowed: []string{"comma", "point", "space", "apostrophe"}, Blank: "none", Doc: "mark between groups of three digits; never guessed"},
 		{Name: "comment", Kind: Text, Doc: "lines that begin with it are passed over; empty for none"},
 		{Name: "missing", Kind: Codes, Default: []string{"", "NA", "NaN", "nan", "null"}, Doc: "cells that mean a missing value"},
 		{Name: "header", Kind: Switch, Default: true, Doc: "the first row holds the names of the columns"},

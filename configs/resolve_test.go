@@ -36,6 +36,7 @@ read:
   orientation: rows
   separator: ";"
   decimal: comma
+  thousands: none
   comment: "#"
   missing: ["", NA, -999, 010, 1e5, no, ~]
   header: false
@@ -171,6 +172,7 @@ read:
   orientation: rows
   separator: semicolon
   decimal: comma
+  thousands: none
   comment: "#"
   missing: ["", NA, "-999", "010", "1e5", "no", "~"]
   header: false
@@ -218,6 +220,7 @@ read:
   orientation: rows
   separator: auto
   decimal: point
+  thousands: none
   comment: ""
   missing: ["", NA, NaN, nan, "null"]
   header: true

@@ -10,13 +10,14 @@ import (
 type dialect struct {
 	separator byte
 	point     byte
-	comment   []byte // nil: no comments
+	thousands []string // marks between groups of three digits; nil: none
+	comment   []byte   // nil: no comments
 	missing   map[string]bool
 	codes     []float64 // missing codes that read as numbers
 }
 
 func newDialect(o *Options, separator byte) *dialect {
-	d := &dialect{separator: separator, point: '.', missing: map[string]bool{}}
+	d := &dialect{separator: separator, point: '.', thousands: thousandsMarks[o.Thousands], missing: map[string]bool{}}
 	if o.DecimalComma {
 		d.point = ','
 	}
@@ -47,6 +48,12 @@ func (d *dialect) value(cell []byte) (v float64, ok bool) {
 		return math.NaN(), true
 	}
 	v, ok = parseNumber(cell, d.point)
+	if !ok && d.thousands != nil {
+		var scratch [64]byte
+		if plain, grouped := d.ungrouped(scratch[:0], cell); grouped {
+			v, ok = parseNumber(plain, d.point)
+		}
+	}
 	if ok {
 		v = d.coded(v)
 	}

@@ -29,12 +29,12 @@ var formats = []format{
 	{"csv", []string{".csv", ".txt", ".dat"}, textSettings, nil, false, openDelimited(0)},
 	{"tsv", []string{".tsv", ".tab"}, textSettings, nil, false, openDelimited('\t')},
 	{"parquet", []string{".parquet", ".pq"}, "", parquetMagic, false, openParquet},
-	{"xlsx", []string{".xlsx", ".xlsm", ".xls"}, "sheet header units_row decimal", zipMagic, false, openSpreadsheet},
-	{"sqlite", []string{".sqlite", ".sqlite3", ".db"}, "query decimal", sqliteMagic, false, openSQLite},
+	{"xlsx", []string{".xlsx", ".xlsm", ".xls"}, "sheet header units_row decimal thousands", zipMagic, false, openSpreadsheet},
+	{"sqlite", []string{".sqlite", ".sqlite3", ".db"}, "query decimal thousands", sqliteMagic, false, openSQLite},
 	{"postgres", nil, "query connection", nil, true, openPostgres},
 }
 
-const textSettings = "encoding orientation separator decimal comment header units_row"
+const textSettings = "encoding orientation separator decimal thousands comment header units_row"
 
 // fits refuses settings that mean nothing to the format.
 func (f *format) fits(o *Options, file string) error {
@@ -42,7 +42,7 @@ func (f *format) fits(o *Options, file string) error {
 		key   string
 		given bool
 	}{{"separator", o.Separator != ""}, {"decimal", o.DecimalComma}, {"comment", o.Comment != ""}, {"header", o.NoHeader}, {"units_row", o.UnitsRow},
-		{"sheet", o.Sheet != ""}, {"query", o.Query != ""}, {"connection", o.Connection != ""}, {"encoding", o.Encoding != ""}, {"orientation", o.ChannelsInRows}} {
+		{"sheet", o.Sheet != ""}, {"query", o.Query != ""}, {"connection", o.Connection != ""}, {"encoding", o.Encoding != ""}, {"orientation", o.ChannelsInRows}, {"thousands", o.Thousands != ""}} {
 		if s.given && !slices.Contains(strings.Fields(f.takes), s.key) {
 			return &Error{Kind: WrongInput, File: file, Problem: fmt.Sprintf("read.%s means nothing to the format %s", s.key, f.name)}
 		}

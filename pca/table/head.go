@@ -129,7 +129,7 @@ func separatorOf(o *Options, ofFormat byte, text []byte) byte {
 			best, most = candidate, count
 		}
 	}
-	if most == 0 && blankSeparated(o, text) {
+	if most == 0 && o.Thousands != "space" && blankSeparated(o, text) {
 		return ' '
 	}
 	return best

@@ -84,6 +84,11 @@ func readNumber(cell []byte, point byte) (v float64, ok bool) {
 	}
 	for i, c := range text {
 		switch {
+		case (c == 'd' || c == 'D') && fortranExponent(text, i):
+			if point == '.' {
+				text = append(scratch[:0], cell...)
+			}
+			text[i] = 'e'
 		case c >= '0' && c <= '9', c == '-', c == '+', c == 'e', c == 'E':
 		case c == point:
 			if point != '.' {

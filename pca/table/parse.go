@@ -219,8 +219,8 @@ func (p *parser) badCell(b *Block, l *layout, c, line int, cell []byte, fault qu
 		e.Cell = string(cell)
 		e.Problem = fmt.Sprintf("%q is not a number", shown)
 		e.Hint = fmt.Sprintf("add %q to read.missing if it stands for a missing value, or name the column in read.leave_out", shown)
-		if l.dialect.point == '.' && looksDecimalComma(cell) {
-			e.Hint = "set read.decimal: comma if the table writes decimals with a comma"
+		if hint := l.dialect.numberHint(cell); hint != "" {
+			e.Hint = hint
 		}
 	}
 	return e

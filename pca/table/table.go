@@ -33,6 +33,9 @@ type Options struct {
 	// ChannelsInRows tells that text is stored transposed: a line holds a channel, its name
 	// first unless NoHeader. The text is then held in memory, up to 1 GiB of it.
 	ChannelsInRows bool
+	// Thousands is the mark between groups of three digits: comma, point, space, apostrophe;
+	// empty: none.
+	Thousands string
 }
 
 // Table is an opened table.
@@ -58,6 +61,9 @@ func Open(ctx context.Context, o Options) (*Table, error) {
 
 func openWith(ctx context.Context, o Options, open opener, pieces int) (*Table, error) {
 	if err := checkSeparator(&o); err != nil {
+		return nil, err
+	}
+	if err := checkThousands(&o); err != nil {
 		return nil, err
 	}
 	t := &Table{options: o}

@@ -12,7 +12,7 @@ func readOptions(cfg *configs.File, threads int) table.Options {
 	return table.Options{Dir: cfg.Dir(), Files: r.Files, Format: r.Format, Separator: r.Separator,
 		DecimalComma: r.Decimal == "comma", Comment: r.Comment, Missing: r.Missing, NoHeader: !r.Header,
 		UnitsRow: r.UnitsRow, Time: r.Time, Groups: r.Groups, LeaveOut: r.LeaveOut, Sheet: r.Sheet, Query: r.Query, Connection: r.Connection,
-		Encoding: r.Encoding, ChannelsInRows: r.Orientation == "channels-in-rows"}
+		Encoding: r.Encoding, ChannelsInRows: r.Orientation == "channels-in-rows", Thousands: r.Thousands}
 }
 
 // settingsOf translates the parameters of a rule.
