@@ -301,7 +301,7 @@ hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, minimum-ave
 pump.yaml:4:16: retain.rule: expected a word, found a list
 hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, minimum-average-partial, equal-roots, tracy-widom, hard-threshold, evidence, bic, parallel-shifts, bi-cross-validation, element-cross-validation, knee, agreement
 pump.yaml:5:39: regress.retain.rule: expected a word, found nothing
-hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, minimum-average-partial, equal-roots, tracy-widom, hard-threshold, evidence, parallel-shifts, bi-cross-validation, element-cross-validation, knee, agreement, cross-validation, aicc, bic, cp, t-threshold, press, one-standard-error
+hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, minimum-average-partial, equal-roots, tracy-widom, hard-threshold, evidence, parallel-shifts, bi-cross-validation, element-cross-validation, knee, agreement, cross-validation, aicc, bic, cp, t-threshold, condition-limit, randomisation-test, press, one-standard-error
 `},
 	{"parameters of other rules", start + "retain: {rule: fixed, components: 3, percentile: 95}\nregress: {response: y, retain: {rule: broken-stick, at_least: 5}}\n", nil, `
 pump.yaml:4:38: retain: rule fixed takes no "percentile"

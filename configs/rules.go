@@ -60,6 +60,9 @@ var rules = []listed{
 	{second, RuleDescription{"cp", "the smallest of Mallows' Cp", nil}},
 	{second, RuleDescription{"t-threshold", "the components whose slope has a large t value, strongest first", []Key{
 		{Name: "limit", Kind: Number, Range: above(0), Default: 2.0, Doc: "of the squared t value; 2 gives the smallest Cp"}}}},
+	{second, RuleDescription{"condition-limit", "components while the condition index stays below a limit", []Key{
+		{Name: "limit", Kind: Number, Range: above(1), Default: 30.0, Doc: "of the condition index: the root of the largest over the last eigenvalue"}}}},
+	{second, RuleDescription{"randomisation-test", "the fewest whose error on held-out rows exceeds the smallest by chance only", slices.Concat([]Key{alpha}, heldOut)}},
 	{second, RuleDescription{"press", "the smallest sum of squared leave-one-out errors, directions fixed", heldOut}},
 	{second, RuleDescription{"one-standard-error", "the fewest within one standard error of the smallest error on held-out rows", heldOut}},
 }

@@ -15,7 +15,7 @@ func (m *Model) choose(o Options) error {
 		if o.Components >= len(m.Path) {
 			return &pca.DataError{Problem: fmt.Sprintf("%d components asked for, at most %d considered", o.Components, len(m.Path)-1)}
 		}
-	case Minimum, OneStandardError:
+	case Minimum, OneStandardError, RandomisationTest:
 		best := -1
 		for k, s := range m.Path {
 			if !math.IsNaN(s.CV) && (best < 0 || s.CV < m.Path[best].CV) {
@@ -37,6 +37,11 @@ func (m *Model) choose(o Options) error {
 				}
 			}
 		}
+		if o.Choice == RandomisationTest {
+			if err := m.chooseByChance(best, o); err != nil {
+				return err
+			}
+		}
 		last := len(m.Path) - 1
 		for last > 0 && math.IsNaN(m.Path[last].CV) {
 			last--
@@ -50,6 +55,8 @@ func (m *Model) choose(o Options) error {
 		return m.smallest("BIC", func(s Step) float64 { return s.BIC })
 	case SmallestCp:
 		return m.smallest("Cp", func(s Step) float64 { return s.Cp })
+	case ConditionLimit:
+		m.chooseByCondition(o.Limit)
 	case SmallestPress:
 		return m.smallest("PRESS", func(s Step) float64 { return s.Press })
 	case TThreshold:

@@ -208,6 +208,11 @@ func (m *Model) addValidation(v *validation, response int, heldSquares float64) 
 		var total float64
 		step.CV, step.CVError, total = v.rootMean(func(f int) (float64, bool) { return v.errors[f][response].path[k], true })
 		step.CVR2 = 1 - total/heldSquares
+		byFold := make([]float64, m.Folds)
+		for f := range byFold {
+			byFold[f] = v.errors[f][response].path[k]
+		}
+		m.held = append(m.held, byFold)
 	}
 	if last := len(m.Path) - 1; 2*v.most < last {
 		m.warn("folds-carry-fewer", "the rows that the smallest fold leaves to learn from carry %s at most: no held-out error beyond (%d were considered)", components(v.most), last)

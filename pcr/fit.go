@@ -30,11 +30,16 @@ const (
 	SmallestBIC      Choice = "bic"         // Schwarz 1978
 	SmallestCp       Choice = "cp"          // Mallows 1973
 	TThreshold       Choice = "t-threshold" // components with t² above Limit; 2 gives the smallest Cp
-	SmallestPress    Choice = "press"       // Allen 1974, directions fixed; needs Options.Press
+	// ConditionLimit takes components while their condition index is below Limit, 30 for
+	// instance (Belsley, Kuh & Welsch 1980); RandomisationTest the fewest that predict held-out
+	// rows as well as the best, as far as chance goes (van der Voet 1994).
+	ConditionLimit    Choice = "condition-limit"
+	RandomisationTest Choice = "randomisation-test"
+	SmallestPress     Choice = "press" // Allen 1974, directions fixed; needs Options.Press
 )
 
 // Choices lists the choices that look at the response.
-var Choices = []Choice{Minimum, OneStandardError, SmallestAICc, SmallestBIC, SmallestCp, TThreshold, SmallestPress}
+var Choices = []Choice{Minimum, OneStandardError, SmallestAICc, SmallestBIC, SmallestCp, TThreshold, SmallestPress, ConditionLimit, RandomisationTest}
 
 // Options say how to fit.
 type Options struct {
@@ -45,7 +50,9 @@ type Options struct {
 	Order         Order
 	Choice        Choice
 	Components    int       // for Given
-	Limit         float64   // of t², for TThreshold
+	Limit         float64   // of t², for TThreshold; of the condition index, for ConditionLimit
+	Alpha         float64   // probability of error of RandomisationTest
+	Seed          uint64    // of its signs
 	Press         PressSums // from a pass over the rows; nil without
 	// Splits say which of the folds are held out together and what is learnt from; nil holds
 	// out each in turn and learns from all others.
@@ -96,9 +103,11 @@ type Model struct {
 	Remedies  []Remedy // components as chosen beside other published remedies
 	Warnings  []pca.Warning
 
-	constants  int       // 1 with an intercept, else 0
-	deviation  float64   // of the response
-	deviations []float64 // of the predictors
+	constants  int // 1 with an intercept, else 0
+	roots      []float64
+	held       [][]float64 // Σ held-out error² by number of components and fold of the first deal
+	deviation  float64     // of the response
+	deviations []float64   // of the predictors
 }
 
 // Term is one coefficient in original units: units of y per unit of the channel.
@@ -141,6 +150,9 @@ type Step struct {
 	// Press is Σ(leave-one-out error)² with directions fixed, see [Press]; NaN without a pass
 	// over the rows.
 	Press float64
+	// Chance is how often signs drawn for the folds let this number of components fall behind
+	// the best as far as it does; NaN without the randomisation test, and from the best on.
+	Chance float64
 }
 
 // Fit regresses the responses y on components of the predictors x: positions in the joint
@@ -163,6 +175,9 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 	}
 	if o.Choice == TThreshold {
 		o.Order = ByCorrelation // falling |t| is falling correlation with the response
+	}
+	if o.Choice == ConditionLimit {
+		o.Order = ByVariance
 	}
 	d, projections, err := pca.DecomposeJoint(joint, x, y, o.Predictors)
 	if err != nil {
@@ -214,7 +229,7 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 }
 
 func newModel(joint *pca.Summary, d *pca.Decomposition, pr pca.Projection, y int, x []int, name string, o Options) *Model {
-	m := &Model{Response: name, Rows: joint.Count(), Total: pr.Total, Entering: entering(pr.Along[:d.Rank], o.Order)}
+	m := &Model{Response: name, Rows: joint.Count(), Total: pr.Total, Entering: entering(pr.Along[:d.Rank], o.Order), roots: d.Values[:d.Rank]}
 	if !o.ThroughOrigin {
 		m.constants = 1
 	}
@@ -256,7 +271,7 @@ func (m *Model) path(pr pca.Projection, most int) {
 		}
 		m.Path = append(m.Path, Step{Components: k, Squares: left[k],
 			RootMean: math.Sqrt(left[k] / float64(m.Rows)), R2: taken / (taken + left[k]),
-			CV: math.NaN(), CVError: math.NaN(), CVR2: math.NaN()})
+			CV: math.NaN(), CVError: math.NaN(), CVR2: math.NaN(), Chance: math.NaN()})
 	}
 }
 

@@ -119,7 +119,7 @@ func chooseInside(parts []*pca.Summary, f int, x, y []int, most int, o Options) 
 	}
 	most = min(most, d.Rank)
 	var cv *validation
-	if o.Choice.byFolds() {
+	if o.Choice.ByFolds() {
 		inner := split.Inside(o.Splits)
 		if len(inner) < 2 {
 			return nil, nil
@@ -146,8 +146,10 @@ func chooseInside(parts []*pca.Summary, f int, x, y []int, most int, o Options) 
 	return chosen, nil
 }
 
-// byFolds tells whether the choice looks at held-out rows.
-func (c Choice) byFolds() bool { return c == Minimum || c == OneStandardError }
+// ByFolds tells whether the choice looks at held-out rows.
+func (c Choice) ByFolds() bool {
+	return c == Minimum || c == OneStandardError || c == RandomisationTest
+}
 
 // movingIn leaves out the channels that do not move in these rows: they cannot be scaled or
 // learnt from and have no slope.

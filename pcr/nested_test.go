@@ -22,18 +22,24 @@ func TestProcedureByBruteForce(t *testing.T) {
 	at := func(c int) []float64 { return data[c*size*width : (c+1)*size*width] }
 	forward := []pca.Split{{Train: []int{0}, Held: []int{1}}, {Train: []int{0, 1}, Held: []int{2}}, {Train: []int{0, 1, 2}, Held: []int{3}}, {Train: []int{0, 1, 2, 3}, Held: []int{4}}, {Train: []int{0, 1, 2, 3, 4}, Held: []int{5}}}
 	for _, splits := range [][]pca.Split{pca.HoldEachOut(folds), forward} {
-		for _, choice := range []pcr.Choice{pcr.Minimum, pcr.OneStandardError, pcr.SmallestAICc, pcr.SmallestBIC, pcr.SmallestCp, pcr.TThreshold, pcr.Given} {
+		for _, choice := range []pcr.Choice{pcr.Minimum, pcr.OneStandardError, pcr.SmallestAICc, pcr.SmallestBIC, pcr.SmallestCp, pcr.TThreshold, pcr.ConditionLimit, pcr.RandomisationTest, pcr.Given} {
 			for _, order := range []pcr.Order{pcr.ByVariance, pcr.ByCorrelation} {
 				s.options.Choice, s.options.Order, s.options.Limit, s.options.Components = choice, order, 2, 2
 				if choice == pcr.TThreshold {
 					s.options.Order = pcr.ByCorrelation
+				}
+				if choice == pcr.ConditionLimit {
+					s.options.Order = pcr.ByVariance
+				}
+				if s.options.Alpha = .05; choice == pcr.RandomisationTest && &splits[0] == &forward[0] {
+					s.options.Alpha = .3 // early folds have few others
 				}
 				s.folds, s.options.Splits, s.options.Nested = folds, splits, true
 				got := s.fit(t, data).Models[0].Procedure
 				total, rows := 0.0, 0
 				var chosen []int
 				for _, split := range splits {
-					if (choice == pcr.Minimum || choice == pcr.OneStandardError) && len(split.Inside(splits)) < 2 {
+					if choice.ByFolds() && len(split.Inside(splits)) < 2 {
 						continue
 					}
 					// The cells learnt from, numbered anew, and the folds among them.

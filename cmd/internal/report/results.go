@@ -133,6 +133,7 @@ type validationFact struct {
 	CVR2       Number `json:"r2_cv"`
 	Chosen     bool   `json:"chosen"`
 	Press      Number `json:"press"`
+	Chance     Number `json:"chance"`
 }
 
 // WriteResults writes results.json: all facts of the study but those of single rows.
@@ -201,7 +202,7 @@ func regressionOf(r *Regression, m *pcr.Model) regressionFacts {
 			Number(r.R2), Number(r.Length), Number(r.Parameters), r.SignChanges})
 	}
 	for _, s := range m.Path {
-		f.Validation = append(f.Validation, validationFact{s.Components, Number(s.RootMean), Number(s.CV), Number(s.CVError), Number(s.R2), Number(s.CVR2), s.Chosen, Number(s.Press)})
+		f.Validation = append(f.Validation, validationFact{s.Components, Number(s.RootMean), Number(s.CV), Number(s.CVError), Number(s.R2), Number(s.CVR2), s.Chosen, Number(s.Press), Number(s.Chance)})
 	}
 	return f
 }

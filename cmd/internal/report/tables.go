@@ -123,7 +123,7 @@ func fillCoefficients(s *Study, w *csvWriter) {
 }
 
 func fillValidation(s *Study, w *csvWriter) {
-	w.header("response", "components", "rmse_fit", "rmse_cv", "se_cv", "r2_fit", "r2_cv", "chosen", "enters", "t", "aicc", "bic", "cp", "press")
+	w.header("response", "components", "rmse_fit", "rmse_cv", "se_cv", "r2_fit", "r2_cv", "chosen", "enters", "t", "aicc", "bic", "cp", "press", "chance")
 	for _, m := range s.Regression.Result.Models {
 		for k, step := range m.Path {
 			w.text(m.Response).whole(int64(k)).number(step.RootMean).number(step.CV).number(step.CVError)
@@ -134,7 +134,7 @@ func fillValidation(s *Study, w *csvWriter) {
 				a := m.Entering[k-1]
 				w.text(ComponentName(a)).number(m.T[a])
 			}
-			w.number(step.AICc).number(step.BIC).number(step.Cp).number(step.Press)
+			w.number(step.AICc).number(step.BIC).number(step.Cp).number(step.Press).number(step.Chance)
 			w.end()
 		}
 	}

@@ -26,6 +26,9 @@ func (w *work) regress(ctx context.Context) error {
 	if pcr.Choice(g.Retain.Rule) == pcr.TThreshold {
 		o.Order = pcr.ByCorrelation // its components enter by the size of their t values
 	}
+	if pcr.Choice(g.Retain.Rule) == pcr.ConditionLimit {
+		o.Order = pcr.ByVariance
+	}
 	reg := &report.Regression{Rule: g.Retain.Rule, Order: o.Order, Confidence: g.Confidence, Origin: o.ThroughOrigin}
 	if w.plan != nil {
 		reg.Arrangement, reg.Gap = w.plan.arrangement, w.plan.gap
@@ -71,7 +74,7 @@ func (w *work) regress(ctx context.Context) error {
 func (w *work) chooseRegressors(o *pcr.Options) error {
 	r := w.cfg.Regress.Retain
 	if choice := pcr.Choice(r.Rule); slices.Contains(pcr.Choices, choice) {
-		o.Choice, o.Limit = choice, r.Limit
+		o.Choice, o.Limit, o.Alpha, o.Seed = choice, r.Limit, r.Alpha, w.cfg.Seed
 		return nil
 	}
 	o.Choice = pcr.Given

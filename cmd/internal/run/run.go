@@ -153,7 +153,7 @@ func foldsOf(cfg *configs.File) *foldPlan {
 	r := cfg.Regress.Retain
 	choice := pcr.Choice(r.Rule)
 	return &foldPlan{arrangement: r.Arrangement, folds: r.Folds, gap: r.Gap, deals: r.Repeats, seed: cfg.Seed,
-		flexible: choice != pcr.Minimum && choice != pcr.OneStandardError}
+		flexible: !choice.ByFolds()}
 }
 
 // checkRows refuses tables that cannot carry any analysis, before anything is computed.
