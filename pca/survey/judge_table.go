@@ -15,6 +15,9 @@ func (v *Survey) judgeReading() {
 	if o.DecimalComma && !v.Source.given.Decimal {
 		v.add(Finding{Kind: "decimal", Weight: Spoils, Text: "numbers have a decimal comma", Setting: "read.decimal: comma", affected: math.MaxInt64})
 	}
+	if v.Source.Turned {
+		v.add(Finding{Kind: "transposed", Weight: Spoils, Text: "each line holds a channel, not a row: the numbers along it are far more alike than those below one another", Setting: "read.orientation: channels-in-rows", affected: math.MaxInt64})
+	}
 	if o.NoHeader && !v.Source.given.Header {
 		v.add(Finding{Kind: "header", Weight: Spoils, Text: "the first row holds numbers, not names: the columns are called column_1, column_2 and so on", Setting: "read.header: false", affected: math.MaxInt64})
 	}
@@ -139,7 +142,7 @@ func (v *Survey) judgeRows() {
 	if r := v.MedianAutocorrelation(); r > halfwayToOne && v.Rows >= 30 {
 		v.add(Finding{Kind: "dependent-rows", Weight: Worth, affected: v.Rows, Numbers: []Number{{"autocorrelation", r}},
 			Text:    fmt.Sprintf("rows follow one another: half of the channels have an autocorrelation above %.2f, so that %s say as much as %.0f independent ones", r, counted(v.Rows, "row"), math.Max(1, float64(v.Rows)*(1-r)/(1+r))),
-			Setting: "retain: {rule: parallel-shifts}; folds of a regression with arrangement: blocks"})
+			Setting: "retain: {rule: parallel}, which takes rows for what they are worth; folds of a regression with arrangement: blocks"})
 	}
 	for _, b := range v.Breaks {
 		v.add(Finding{Kind: "break", Channels: b.Channels, Weight: Worth, affected: int64(len(b.Channels)), Numbers: []Number{{"row", float64(b.Row)}, {"channels", float64(len(b.Channels))}},

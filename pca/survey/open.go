@@ -11,7 +11,7 @@ import (
 )
 
 // Given tells which of the options of a table were asked for, so that nothing else is tried.
-type Given struct{ Decimal, Header, UnitsRow, Time bool }
+type Given struct{ Decimal, Header, UnitsRow, Time, Orientation bool }
 
 // Source is a table of which it is known how it is written.
 type Source struct {
@@ -22,9 +22,10 @@ type Source struct {
 	// Words are texts among numbers that are taken as missing.
 	Words []Word
 	// Mixed are columns left out because they hold more kinds of text than missing words.
-	Mixed []Word
-	Time  TimeColumns
-	given Given
+	Mixed  []Word
+	Time   TimeColumns
+	Turned bool // the table is stored transposed, which nobody had said
+	given  Given
 }
 
 // Word is a text that stands where numbers are expected.

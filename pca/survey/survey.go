@@ -82,12 +82,14 @@ type Channel struct {
 // not depend on it. Rows that cannot be read are an error of package table, but for texts
 // among numbers, which are taken as missing and reported.
 func Look(ctx context.Context, s *Source, threads int) (*Survey, error) {
-	f, err := firstPass(ctx, s, threads)
-	for err != nil {
-		if !s.learn(ctx, err) {
+	f, err := s.read(ctx, threads)
+	if err != nil {
+		return nil, err
+	}
+	if f.transposed() && s.turn(ctx) {
+		if f, err = s.read(ctx, threads); err != nil {
 			return nil, err
 		}
-		f, err = firstPass(ctx, s, threads)
 	}
 	codes := f.codes()
 	f.sample.mask(codes)

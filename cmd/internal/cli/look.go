@@ -114,6 +114,7 @@ func (l *looking) look(ctx context.Context, c *cobra.Command, cfg *configs.File)
 		given.Decimal = given.Decimal || strings.HasPrefix(s, "read.decimal=")
 		given.Header = given.Header || strings.HasPrefix(s, "read.header=")
 		given.UnitsRow = given.UnitsRow || strings.HasPrefix(s, "read.units_row=")
+		given.Orientation = given.Orientation || strings.HasPrefix(s, "read.orientation=")
 		given.Time = given.Time || strings.HasPrefix(s, "read.time=")
 	}
 	source, err := survey.Open(ctx, run.ReadOptions(cfg), given)

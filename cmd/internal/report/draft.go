@@ -152,9 +152,8 @@ func (w *draft) standardize() {
 }
 
 func (w *draft) stages() {
-	dependent := w.v.MedianAutocorrelation() > .5 && w.v.Rows >= 30
-	if dependent {
-		w.aside("retain: {rule: parallel-shifts}", "rows follow one another")
+	if w.v.MedianAutocorrelation() > .5 && w.v.Rows >= 30 {
+		w.aside("retain: {rule: parallel}", "rows follow one another; it takes them for what they are worth")
 	} else {
 		w.line("retain: {rule: parallel}")
 	}

@@ -26,6 +26,9 @@ func (w *draft) read() {
 	for _, g := range w.d.Given {
 		w.line("  %s", g)
 	}
+	if w.v.Source.Turned {
+		w.aside("  orientation: channels-in-rows", "the numbers along a line are far more alike than those below one another")
+	}
 	if o.DecimalComma {
 		w.line("  decimal: comma")
 	}
