@@ -205,8 +205,8 @@ pump.yaml:5:36: regress.confidence: expected a number, found .nan
 pump.yaml:4:41: retain.value: expected a number that is finite, found text "1e999"
 `},
 	{"switches", start + "  header: yes\n  units_row: \"false\"\nwrite: {scores: True, predictions: 2}\n", nil, `
-pump.yaml:4:11: read.header: expected true or false, found text "yes"
-hint: write true
+pump.yaml:4:11: read.header: "yes" is not known
+hint: known: true, false, auto, double
 pump.yaml:5:14: read.units_row: expected true or false, found text "false"
 hint: write false
 pump.yaml:6:17: write.scores: expected true or false, found True

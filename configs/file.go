@@ -37,8 +37,9 @@ type Read struct {
 	Thousands   string   `key:"thousands"` // empty: none
 	Comment     string   `key:"comment"`   // empty: none
 	Missing     []string `key:"missing"`   // as written
-	Header      bool     `key:"header"`
+	Header      string   `key:"header"`
 	UnitsRow    bool     `key:"units_row"`
+	ShortRows   string   `key:"short_rows"`
 	Time        string   `key:"time"`      // empty: none
 	Groups      string   `key:"groups"`    // empty: none
 	LeaveOut    []string `key:"leave_out"` // names and globs

@@ -16,7 +16,7 @@ func TestOverrides(t *testing.T) {
 		{[]string{"title=a=b"}, func(f *File) { f.Title = "a=b" }},
 		{[]string{"seed=3", "seed=4"}, func(f *File) { f.Seed = 4 }},
 		{[]string{"read.files=[b.csv, c.csv]"}, func(f *File) { f.Read.Files = []string{"b.csv", "c.csv"} }},
-		{[]string{"read.header=false"}, func(f *File) { f.Read.Header = false }},
+		{[]string{"read.header=false"}, func(f *File) { f.Read.Header = "false" }},
 		{[]string{"retain.at_least=0.7"}, func(f *File) { f.Retain.AtLeast = 0.7 }},
 		{[]string{"retain={rule: fixed, components: 3}"}, func(f *File) { f.Retain = Rule{Rule: "fixed", Components: 3} }},
 		{[]string{"retain=", "retain.percentile=90"}, func(f *File) {

@@ -41,6 +41,7 @@ read:
   missing: ["", NA, -999, 010, 1e5, no, ~]
   header: false
   units_row: true
+  short_rows: error
   time: stamp
   groups: campaign
   leave_out: [operator, "*_raw"]
@@ -66,7 +67,7 @@ func TestEverySettingIsRead(t *testing.T) {
 	want := File{Path: "study/pump.yaml", Version: 1, Title: "Pump hall, spring campaign", Seed: 7,
 		Read: Read{Files: []string{"../testdata/demo/pump-hall.csv", "more/*.csv"}, Format: "csv", Separator: ";",
 			Orientation: "rows", Decimal: "comma", Comment: "#", Missing: []string{"", "NA", "-999", "010", "1e5", "no", "~"},
-			UnitsRow: true, Time: "stamp", Groups: "campaign", LeaveOut: []string{"operator", "*_raw"}, Gaps: "complete-rows", Spill: 8},
+			Header: "false", UnitsRow: true, ShortRows: "error", Time: "stamp", Groups: "campaign", LeaveOut: []string{"operator", "*_raw"}, Gaps: "complete-rows", Spill: 8},
 		Standardize: Standardize{Scaling: "none", Constant: "drop", Channels: []Channel{
 			{Name: "flow_7", Scaling: "none", Transform: "log"}, {Name: "t*", Transform: "square-root"}}},
 		Decompose: Decompose{Matrix: "correlation", Route: "svd"},
@@ -84,7 +85,7 @@ func TestEverySettingIsRead(t *testing.T) {
 func TestDefaults(t *testing.T) {
 	want := File{Path: "study/pump.yaml", Version: 1, Seed: 1,
 		Read: Read{Files: []string{"a.csv"}, Orientation: "rows", Decimal: "point", Missing: []string{"", "NA", "NaN", "nan", "null"},
-			Header: true, Gaps: "complete-rows", Spill: 8},
+			Header: "true", ShortRows: "error", Gaps: "complete-rows", Spill: 8},
 		Standardize: Standardize{Scaling: "unit-normal", Constant: "error"},
 		Decompose:   Decompose{Matrix: "correlation", Route: "auto"},
 		Retain:      Rule{Rule: "parallel", Reference: "percentile", Percentile: 95, Rows: "effective"},
@@ -175,8 +176,9 @@ read:
   thousands: none
   comment: "#"
   missing: ["", NA, "-999", "010", "1e5", "no", "~"]
-  header: false
+  header: "false"
   units_row: true
+  short_rows: error
   time: stamp
   groups: campaign
   leave_out: [operator, "*_raw"]
@@ -223,8 +225,9 @@ read:
   thousands: none
   comment: ""
   missing: ["", NA, NaN, nan, "null"]
-  header: true
+  header: "true"
   units_row: false
+  short_rows: error
   time: ""
   groups: ""
   leave_out: []

@@ -55,6 +55,7 @@ type Block struct {
 	names   []Column
 	line    int // physical line of the block's first, from 1; known in merge
 	newBy   int // physical lines in the block
+	short   int // rows that ended early
 	blank   int // rows without any value that were passed over
 	// remarks counts what the notes tell of values; digest identifies the values of a
 	// table that may change between passes. Both are nil mostly.

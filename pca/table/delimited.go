@@ -48,7 +48,7 @@ type textPieces struct {
 func (t *textPieces) next(b *Block) error {
 	b.skipHead = 0
 	if t.cut.lines == 0 {
-		b.skipHead = t.of.options.headRows()
+		b.skipHead = t.of.h.rows
 	} else {
 		t.cut.size = t.of.pieces
 	}

@@ -11,13 +11,14 @@ type dialect struct {
 	separator byte
 	point     byte
 	thousands []string // marks between groups of three digits; nil: none
+	short     bool     // rows may end early
 	comment   []byte   // nil: no comments
 	missing   map[string]bool
 	codes     []float64 // missing codes that read as numbers
 }
 
 func newDialect(o *Options, separator byte) *dialect {
-	d := &dialect{separator: separator, point: '.', thousands: thousandsMarks[o.Thousands], missing: map[string]bool{}}
+	d := &dialect{separator: separator, point: '.', thousands: thousandsMarks[o.Thousands], short: o.ShortRows, missing: map[string]bool{}}
 	if o.DecimalComma {
 		d.point = ','
 	}

@@ -25,7 +25,7 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 	counted := t.starts != nil
 	var starts []int64
 	p := &parser{columns: t.columns, time: t.options.Time != "", group: t.options.Groups != ""}
-	row, blank := int64(0), int64(0)
+	row, blank, short := int64(0), int64(0), int64(0)
 	line, file := 1, ""
 	remarks, digest := map[remark]int64{}, sha256.New()
 	err := inOrder(ctx, threads, t.pieceReader(ctx), func(worker int, b *Block) error {
@@ -50,6 +50,7 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 		row += int64(b.Count)
 		line += b.newBy
 		blank += int64(b.blank)
+		short += int64(b.short)
 		for r, n := range b.remarks {
 			remarks[r] += n
 		}
@@ -73,7 +74,7 @@ func (t *Table) Each(ctx context.Context, threads int, work func(worker int, b *
 	if err := t.checkDigest(digest.Sum(nil)); err != nil {
 		return err
 	}
-	t.starts, t.blank, t.remarks = starts, blank, remarks
+	t.starts, t.blank, t.short, t.remarks = starts, blank, short, remarks
 	return nil
 }
 

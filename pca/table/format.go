@@ -34,7 +34,7 @@ var formats = []format{
 	{"postgres", nil, "query connection", nil, true, openPostgres},
 }
 
-const textSettings = "encoding orientation separator decimal thousands comment header units_row"
+const textSettings = "encoding orientation separator decimal thousands comment header units_row short_rows"
 
 // fits refuses settings that mean nothing to the format.
 func (f *format) fits(o *Options, file string) error {
@@ -42,10 +42,13 @@ func (f *format) fits(o *Options, file string) error {
 		key   string
 		given bool
 	}{{"separator", o.Separator != ""}, {"decimal", o.DecimalComma}, {"comment", o.Comment != ""}, {"header", o.NoHeader}, {"units_row", o.UnitsRow},
-		{"sheet", o.Sheet != ""}, {"query", o.Query != ""}, {"connection", o.Connection != ""}, {"encoding", o.Encoding != ""}, {"orientation", o.ChannelsInRows}, {"thousands", o.Thousands != ""}} {
+		{"sheet", o.Sheet != ""}, {"query", o.Query != ""}, {"connection", o.Connection != ""}, {"encoding", o.Encoding != ""}, {"orientation", o.ChannelsInRows}, {"thousands", o.Thousands != ""}, {"short_rows", o.ShortRows}} {
 		if s.given && !slices.Contains(strings.Fields(f.takes), s.key) {
 			return &Error{Kind: WrongInput, File: file, Problem: fmt.Sprintf("read.%s means nothing to the format %s", s.key, f.name)}
 		}
+	}
+	if o.Header != "" && !slices.Contains(strings.Fields(f.takes), "short_rows") {
+		return &Error{Kind: WrongInput, File: file, Problem: fmt.Sprintf("read.header: %s is for text, not for the format %s", o.Header, f.name)}
 	}
 	return nil
 }

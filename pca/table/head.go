@@ -26,7 +26,10 @@ type head struct {
 	unnamed   []bool
 	units     []string
 	sample    []sampleColumn
-	bytes     int // of mark, header and units
+	bytes     int  // of mark, header and units
+	rows      int  // of header and units, of text
+	looked    bool // whether the first row holds names, so they may be numbers
+	labels    bool // the first column has labels of rows, which the header does not name
 	form      form
 	notes     []Note
 }
@@ -150,29 +153,25 @@ func firstLine(o *Options, text []byte) []byte {
 // tells whether it is all of the file.
 func (h *head) read(o *Options, text []byte, whole bool) error {
 	rows := &rowReader{d: h.dialect, text: text}
-	first, line, ok := rows.next()
+	_, line, ok := rows.next()
 	if !ok {
 		return &Error{Kind: BadContent, File: h.file, Problem: "is empty"}
 	}
 	if rows.open {
 		return &Error{Kind: BadContent, File: h.file, Line: line, Problem: openQuoteProblem, Hint: openQuoteHint}
 	}
-	h.unnamed = make([]bool, len(first))
-	h.units = make([]string, len(first))
-	if o.NoHeader {
-		rows = &rowReader{d: h.dialect, text: text}
-		for j := range first {
-			h.names = append(h.names, "column_"+strconv.Itoa(j+1))
-		}
-	} else if err := h.header(first, line); err != nil {
+	rows = &rowReader{d: h.dialect, text: text}
+	if err := h.nameRows(o, rows); err != nil {
 		return err
 	}
+	h.units = make([]string, len(h.names))
 	if o.UnitsRow {
 		units, line, ok := rows.next()
 		if ok && len(units) != len(h.names) {
 			return &Error{Kind: BadContent, File: h.file, Line: line, Problem: fmt.Sprintf("%d units, expected %d", len(units), len(h.names))}
 		}
 		copy(h.units, units)
+		h.rows++
 	}
 	h.bytes = rows.at
 	h.sample = make([]sampleColumn, len(h.names))
@@ -187,6 +186,9 @@ func (h *head) read(o *Options, text []byte, whole bool) error {
 				break // the sample ends within a quoted cell
 			}
 			return h.openQuote(len(cells), line)
+		}
+		if h.dialect.short && len(cells) < len(h.names) {
+			cells = append(cells, make([]string, len(h.names)-len(cells))...)
 		}
 		if len(cells) != len(h.names) {
 			if strings.TrimSpace(strings.Join(cells, "")) == "" {
@@ -225,7 +227,7 @@ func (h *head) header(cells []string, line int) error {
 		}
 	}
 	// Before the look for duplicates: rows of numbers often hold one twice.
-	if numbers > 0 && numbers+unnamed == len(cells) {
+	if !h.looked && numbers > 0 && numbers+unnamed == len(cells) {
 		return &Error{Kind: BadContent, File: h.file, Line: line, counted: h.counted, Problem: "the header holds only numbers", Hint: "set read.header: false if the table has no header"}
 	}
 	seen := map[string]int{}

@@ -38,7 +38,7 @@ type parser struct {
 func (p *parser) parse(b *Block, l *layout) error {
 	text := b.text
 	width := len(p.columns)
-	b.Width, b.Rows, b.Count, b.blank = width, 0, 0, 0
+	b.Width, b.Rows, b.Count, b.blank, b.short = width, 0, 0, 0, 0
 	b.Data, b.Offset, b.lines, b.extra = b.Data[:0], b.Offset[:0], b.lines[:0], b.extra[:0]
 	b.times, b.groups = b.times[:0], b.groups[:0]
 	d := l.dialect
@@ -138,6 +138,11 @@ func (p *parser) parse(b *Block, l *layout) error {
 			if ended != (c == last) {
 				if rowEnd, empty := d.emptyRow(text, start); empty {
 					i, gaps = rowEnd, width
+					break row
+				}
+				if ended && d.short {
+					gaps += b.fill(l, c+1, cells)
+					b.short++
 					break row
 				}
 				return p.ragged(b, l, text[start:], startLine)
@@ -249,4 +254,24 @@ func (p *parser) ragged(b *Block, l *layout, text []byte, line int) error {
 	return &Error{Kind: BadContent, File: b.file, Line: line,
 		Problem: fmt.Sprintf("%d cells, expected %d", found, len(l.uses)),
 		Hint:    "a cell may hold the separator without quotes, or the row is cut off"}
+}
+
+// fill makes gaps of the cells from c on that a row lacks, and counts those of numbers.
+func (b *Block) fill(l *layout, c int, cells []float64) (gaps int) {
+	for ; c < len(l.uses); c++ {
+		switch l.uses[c] {
+		case skipped:
+		case number:
+			cells[l.to[c]] = math.NaN()
+			gaps++
+		default:
+			if l.uses[c] != groupText {
+				b.times = append(b.times, span{})
+			}
+			if l.uses[c] != timeText {
+				b.groups = append(b.groups, span{})
+			}
+		}
+	}
+	return gaps
 }

@@ -33,6 +33,11 @@ type Options struct {
 	// ChannelsInRows tells that text is stored transposed: a line holds a channel, its name
 	// first unless NoHeader. The text is then held in memory, up to 1 GiB of it.
 	ChannelsInRows bool
+	// Header of text is auto, which looks whether the first row holds names, or double, for
+	// names in two rows; empty: one row, unless NoHeader.
+	Header string
+	// ShortRows takes the ends that rows of text lack as missing.
+	ShortRows bool
 	// Thousands is the mark between groups of three digits: comma, point, space, apostrophe;
 	// empty: none.
 	Thousands string
@@ -48,6 +53,7 @@ type Table struct {
 	columns []Column
 	notes   []Note
 	blank   int64
+	short   int64
 	starts  []int64 // first data row of every block, once counted
 	remarks map[remark]int64
 	late    []Note // known at the end of a pass
@@ -159,6 +165,9 @@ func (t *Table) Notes() []Note {
 		}
 	}
 	notes = append(notes, t.late...)
+	if t.short > 0 {
+		notes = append(notes, Note{Text: fmt.Sprintf("rows that end before the last column: %d; what they lack is missing", t.short)})
+	}
 	if t.blank == 0 {
 		return notes
 	}
@@ -217,6 +226,8 @@ func (t *Table) assign(h *head) error {
 			l.uses[j] = groupText
 		case out[j]:
 			t.notes = append(t.notes, Note{n, "left out: asked for"})
+		case h.labels && j == 0:
+			t.notes = append(t.notes, Note{n, "left out: labels of rows, as the header names one column fewer"})
 		case h.unnamed[j] && s.filled == 0:
 			t.notes = append(t.notes, Note{n, "left out: no name and no values"})
 		case s.isText():

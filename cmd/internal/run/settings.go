@@ -9,10 +9,14 @@ import (
 // readOptions translates the read section.
 func readOptions(cfg *configs.File, threads int) table.Options {
 	r := cfg.Read
-	return table.Options{Dir: cfg.Dir(), Files: r.Files, Format: r.Format, Separator: r.Separator,
-		DecimalComma: r.Decimal == "comma", Comment: r.Comment, Missing: r.Missing, NoHeader: !r.Header,
+	o := table.Options{Dir: cfg.Dir(), Files: r.Files, Format: r.Format, Separator: r.Separator,
+		DecimalComma: r.Decimal == "comma", Comment: r.Comment, Missing: r.Missing, NoHeader: r.Header == "false",
 		UnitsRow: r.UnitsRow, Time: r.Time, Groups: r.Groups, LeaveOut: r.LeaveOut, Sheet: r.Sheet, Query: r.Query, Connection: r.Connection,
-		Encoding: r.Encoding, ChannelsInRows: r.Orientation == "channels-in-rows", Thousands: r.Thousands}
+		Encoding: r.Encoding, ChannelsInRows: r.Orientation == "channels-in-rows", Thousands: r.Thousands, ShortRows: r.ShortRows == "missing"}
+	if r.Header == "auto" || r.Header == "double" {
+		o.Header = r.Header
+	}
+	return o
 }
 
 // settingsOf translates the parameters of a rule.
