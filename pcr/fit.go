@@ -106,6 +106,7 @@ type Model struct {
 	constants  int // 1 with an intercept, else 0
 	roots      []float64
 	held       [][]float64 // Σ held-out error² by number of components and fold of the first deal
+	mean       float64     // of the response
 	deviation  float64     // of the response
 	deviations []float64   // of the predictors
 }
@@ -233,7 +234,7 @@ func newModel(joint *pca.Summary, d *pca.Decomposition, pr pca.Projection, y int
 	if !o.ThroughOrigin {
 		m.constants = 1
 	}
-	m.deviation = joint.Deviation(y)
+	m.mean, m.deviation = joint.Mean(y), joint.Deviation(y)
 	for _, j := range x {
 		m.deviations = append(m.deviations, joint.Deviation(j))
 	}

@@ -18,6 +18,8 @@ type Predictor struct {
 	scores    []float64
 	leverages []float64
 	spe       []float64
+	base      []float64 // scores of the mean row
+	lengths   []float64 // roots of the scores' sums of squares
 }
 
 // NewPredictor makes a Predictor for the model at position i of the result, with the
@@ -26,6 +28,14 @@ func (r *Result) NewPredictor(i int, confidence float64, throughOrigin bool) *Pr
 	m := r.Models[i]
 	p := &Predictor{m: m, k: m.Components, atOrigin: throughOrigin, t: math.NaN(),
 		scorer: r.Decomposition.NewScorer(m.Entering[:m.Components])}
+	for _, a := range m.Entering[:m.Components] {
+		base := 0.0
+		for j, v := range r.Decomposition.Offset {
+			base += v * r.Decomposition.Vector(j, a)
+		}
+		p.base = append(p.base, base)
+		p.lengths = append(p.lengths, r.Decomposition.Length(a))
+	}
 	if m.Free > 0 {
 		p.t = distuv.StudentsT{Sigma: 1, Nu: float64(m.Free)}.Quantile(1 - (1-confidence)/2)
 	}
