@@ -147,6 +147,7 @@ type Write struct {
 	Folder      string `key:"folder"` // relative to Dir
 	Scores      bool   `key:"scores"`
 	Predictions bool   `key:"predictions"`
+	Diagnostics bool   `key:"diagnostics"`
 }
 
 // Dir is the folder that relative paths in the run file are relative to.

@@ -92,6 +92,7 @@ var sections = []Key{
 		{Name: "folder", Kind: Text, Filled: true, follow: defaultFolder, Doc: "relative to the run file; by default runs/ and the name of the run file"},
 		{Name: "scores", Kind: Switch, Default: true, Doc: "write the table of scores"},
 		{Name: "predictions", Kind: Switch, Default: true, Doc: "write the table of predictions"},
+		{Name: "diagnostics", Kind: Switch, Default: true, Doc: "write the table of leverages, residuals and distances of a regression's rows"},
 	}},
 }
 

@@ -60,7 +60,7 @@ regress:
   retain: {rule: cross-validation, folds: 5, arrangement: groups, order: correlation, gap: 0, repeats: 1, most_components: 4}
   confidence: 0.9
 draw: {formats: [svg, png]}
-write: {folder: runs/x, scores: false, predictions: false}
+write: {folder: runs/x, scores: false, predictions: false, diagnostics: false}
 `
 
 func TestEverySettingIsRead(t *testing.T) {
@@ -92,7 +92,7 @@ func TestDefaults(t *testing.T) {
 		Regress: &Regress{Response: []string{"y"}, Intercept: true,
 			Retain: Rule{Rule: "one-standard-error", Folds: 10, Arrangement: "blocks", Order: "variance", Repeats: 1}, Confidence: 0.95, Nested: "auto"},
 		Draw:  &Draw{Formats: []string{"svg"}},
-		Write: Write{Folder: "runs/pump", Scores: true, Predictions: true}}
+		Write: Write{Folder: "runs/pump", Scores: true, Predictions: true, Diagnostics: true}}
 	if got := settings(load(t, start+"regress: {response: y}\ndraw:\n")); !reflect.DeepEqual(got, want) {
 		t.Errorf("got  %+v\nwant %+v", got, want)
 	}
@@ -207,6 +207,7 @@ write:
   folder: runs/x
   scores: false
   predictions: false
+  diagnostics: false
 `
 
 const resolvedStart = `axisfold: 1
@@ -254,6 +255,7 @@ write:
   folder: runs/pump
   scores: true
   predictions: true
+  diagnostics: true
 `
 
 func TestResolved(t *testing.T) {

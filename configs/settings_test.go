@@ -69,6 +69,7 @@ draw.formats [svg] (default)
 write.folder runs/pump (default)
 write.scores true
 write.predictions true (default)
+write.diagnostics true (default)
 `
 	f := load(t, start+`standardize: {scaling: center, channels: {a: {transform: log}}}
 retain: {percentile: 80}

@@ -29,9 +29,9 @@ func (p *Predictor) Leverage(r int) float64 {
 	return h
 }
 
-// MeanHalf is the half width of the interval for the mean of the response at row r of the
-// latest Predict, t·s·√h.
-func (p *Predictor) MeanHalf(r int) float64 { return p.t * p.m.Residual * math.Sqrt(p.Leverage(r)) }
+// MeanHalfAt is the half width of the interval for the mean of the response at rows of
+// leverage h, t·s·√h.
+func (p *Predictor) MeanHalfAt(h float64) float64 { return p.t * p.m.Residual * math.Sqrt(h) }
 
 // Influence is what one row of the fit does to it, components taken as given.
 type Influence struct {

@@ -98,6 +98,7 @@ type regressionFacts struct {
 	Gap         int              `json:"gap"`
 	Procedure   *procedureFacts  `json:"procedure,omitempty"`
 	Remedies    []remedyFacts    `json:"remedies"`
+	Inference   *inferenceFacts  `json:"inference,omitempty"`
 }
 
 type remedyFacts struct {
@@ -172,8 +173,10 @@ func WriteResults(s *Study, out io.Writer) error {
 		f.Reduction = reductionOf(s)
 	}
 	if s.Regression != nil {
-		for _, m := range s.Regression.Result.Models {
-			f.Regression = append(f.Regression, regressionOf(s.Regression, m))
+		for i, m := range s.Regression.Result.Models {
+			facts := regressionOf(s.Regression, m)
+			facts.Inference = inferenceOf(m, &s.Regression.Inference[i])
+			f.Regression = append(f.Regression, facts)
 		}
 	}
 	return writeJSON(out, f)

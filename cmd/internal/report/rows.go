@@ -52,7 +52,7 @@ func (l RowLayout) PredictionsHeader(back bool) []byte {
 	if back {
 		names = append(names, "observed_back", "predicted_back", "lower_back", "upper_back")
 	}
-	w.header(names...)
+	w.header(append(names, "mean_lower", "mean_upper")...)
 	return w.b
 }
 
@@ -87,13 +87,15 @@ func (w *RowWriter) Scores(l RowLayout, k RowKey, scores []float64, t2, spe floa
 }
 
 // Prediction adds a line of predictions.csv; half is the half width of the interval. back,
-// where some response was transformed, adds all of it in the unit of the response.
-func (w *RowWriter) Prediction(l RowLayout, k RowKey, response string, observed, predicted, half float64, back *pcr.Smearing) {
+// where some response was transformed, adds all of it in the unit of the response. mean is
+// the half width of the interval for the mean, in the unit of the fit.
+func (w *RowWriter) Prediction(l RowLayout, k RowKey, response string, observed, predicted, half float64, back *pcr.Smearing, mean float64) {
 	w.key(l, k)
 	w.text(response).number(observed).number(predicted).number(predicted - half).number(predicted + half).number(observed - predicted)
 	if back != nil {
 		t := back.Transform
 		w.number(t.Invert(observed)).number(back.Mean(predicted)).number(t.Invert(predicted - half)).number(t.Invert(predicted + half))
 	}
+	w.number(predicted - mean).number(predicted + mean)
 	w.end()
 }

@@ -86,6 +86,7 @@ type Regression struct {
 	// Smearing brings predictions back to the units of the responses; nil where none was
 	// transformed.
 	Smearing    []pcr.Smearing
+	Inference   []Inference // by response, from the pass that writes rows
 	Rule        string
 	Arrangement string // of the folds
 	Gap         int    // rows beside a held-out stretch that nothing is learnt from

@@ -39,8 +39,9 @@ func WriteSummary(s *Study, out io.Writer) error {
 	}
 	if s.Regression != nil {
 		p.collinearity(s)
-		for _, m := range s.Regression.Result.Models {
+		for i, m := range s.Regression.Result.Models {
 			p.regression(s, m)
+			p.inference(m, &s.Regression.Inference[i])
 			p.remedies(m)
 		}
 	}

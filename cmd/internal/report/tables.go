@@ -112,11 +112,17 @@ func fillRetention(s *Study, w *csvWriter) {
 
 func fillCoefficients(s *Study, w *csvWriter) {
 	w.header("response", "term", "coefficient", "standard_error", "lower", "upper", "standardized_coefficient",
-		"ols_coefficient", "ols_standard_error", "vif")
-	for _, m := range s.Regression.Result.Models {
-		for _, t := range append([]pcr.Term{m.Intercept}, m.Terms...) {
+		"ols_coefficient", "ols_standard_error", "vif",
+		"hc3_standard_error", "hc3_lower", "hc3_upper", "hac_standard_error", "hac_lower", "hac_upper")
+	for i, m := range s.Regression.Result.Models {
+		for j, t := range append([]pcr.Term{m.Intercept}, m.Terms...) {
 			w.text(m.Response).text(t.Name).number(t.Coefficient).number(t.Error).number(t.Lower).number(t.Upper)
 			w.number(t.Standardized).number(t.Ordinary).number(t.OrdinaryError).number(t.VIF)
+			f := &s.Regression.Inference[i]
+			e, quantile := f.robust(j), f.Errors.Quantile
+			for _, v := range []float64{e.HC3, e.HAC} {
+				w.number(v).number(t.Coefficient - quantile*v).number(t.Coefficient + quantile*v)
+			}
 			w.end()
 		}
 	}

@@ -23,8 +23,8 @@ func newLag(series int) *lag {
 	return &lag{last: -1, before: make([]float64, series), products: make([]float64, series), squares: make([]float64, series)}
 }
 
-// add takes the values of row i of the block.
-func (l *lag) add(b *table.Block, i int, grouped bool, values []float64) {
+// add takes the values of row i of the block, and tells whether it follows the row before.
+func (l *lag) add(b *table.Block, i int, grouped bool, values []float64) bool {
 	row := b.Row + int64(b.Offset[i])
 	follows := l.rows > 0 && row == l.last+1
 	if grouped {
@@ -45,6 +45,7 @@ func (l *lag) add(b *table.Block, i int, grouped bool, values []float64) {
 	}
 	l.rows++
 	l.last = row
+	return follows
 }
 
 // correlation is r₁ of a series, NaN where pairs are too few or the series is zero.

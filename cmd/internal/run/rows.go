@@ -42,7 +42,7 @@ func (w *work) rows(ctx context.Context) error {
 	w.sample = sample{stride: max(1, (w.reading.complete+sampleRows-1)/sampleRows), width: min(k, 2),
 		observed: make([][]float64, models), predicted: make([][]float64, models)}
 
-	var scores, predictions *output
+	var scores, predictions, diagnostics *output
 	var err error
 	if w.cfg.Write.Scores {
 		if scores, err = w.folder.create("tables/scores.csv"); err != nil {
@@ -58,6 +58,14 @@ func (w *work) rows(ctx context.Context) error {
 		defer predictions.abandon()
 		predictions.Write(layout.PredictionsHeader(w.study.Regression.Smearing != nil))
 	}
+	if models > 0 && w.cfg.Write.Diagnostics {
+		if diagnostics, err = w.folder.create("tables/diagnostics.csv"); err != nil {
+			return err
+		}
+		defer diagnostics.abandon()
+		diagnostics.Write(layout.DiagnosticsHeader())
+	}
+	gathered := w.newInference()
 	threads := w.options.threads()
 	follow := newLag(min(k, 1) + models)
 	values := make([]float64, min(k, 1)+models)
@@ -75,7 +83,7 @@ func (w *work) rows(ctx context.Context) error {
 			makers[worker] = w.newLineMaker(layout, k)
 		}
 		lines := spare.Get().(*blockLines)
-		makers[worker].fill(lines, b, scores != nil, predictions != nil)
+		makers[worker].fill(lines, b, scores != nil, predictions != nil, diagnostics != nil)
 		b.Result = lines
 		return nil
 	}, func(b *table.Block) error {
@@ -90,10 +98,13 @@ func (w *work) rows(ctx context.Context) error {
 			for i := range models {
 				values[at+i] = lines.observed[i][r] - lines.predicted[i][r]
 			}
-			follow.add(b, r, layout.Group, values)
+			gathered.add(b, r, lines, follow.add(b, r, layout.Group, values))
 		}
 		done += int64(b.Rows)
 		if err := writeLines(scores, lines.scoreText.Bytes()); err != nil {
+			return err
+		}
+		if err := writeLines(diagnostics, lines.diagnosticText.Bytes()); err != nil {
 			return err
 		}
 		return writeLines(predictions, lines.predictionText.Bytes())
@@ -103,7 +114,8 @@ func (w *work) rows(ctx context.Context) error {
 	}
 	w.reading.source.close()
 	w.warnOfFollowing(follow, min(k, 1))
-	for _, o := range []*output{scores, predictions} {
+	w.conclude(gathered)
+	for _, o := range []*output{scores, predictions, diagnostics} {
 		if o != nil {
 			if err := o.Close(); err != nil {
 				return err
@@ -152,7 +164,10 @@ type blockLines struct {
 	scores                    []float64   // rows × k
 	predicted                 [][]float64 // by model
 	observed                  [][]float64
+	basis                     [][]float64 // by model, rows × parameters
+	influence                 [][]pcr.Influence
 	scoreText, predictionText report.RowWriter
+	diagnosticText            report.RowWriter
 }
 
 // lineMaker scores and predicts the rows of blocks and writes their lines. One per worker.
@@ -194,7 +209,7 @@ func (m *lineMaker) gather(b *table.Block) {
 	}
 }
 
-func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredictions bool) {
+func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredictions, wantDiagnostics bool) {
 	n := b.Rows
 	m.t2, m.spe = sized(m.t2, n), sized(m.spe, n)
 	m.gather(b)
@@ -210,6 +225,7 @@ func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredic
 	}
 	if out.predicted == nil {
 		out.predicted, out.observed = make([][]float64, len(m.predictors)), make([][]float64, len(m.predictors))
+		out.basis, out.influence = make([][]float64, len(m.predictors)), make([][]pcr.Influence, len(m.predictors))
 	}
 	for i, predictor := range m.predictors {
 		out.predicted[i], out.observed[i], m.half[i] = sized(out.predicted[i], n), sized(out.observed[i], n), sized(m.half[i], n)
@@ -217,6 +233,11 @@ func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredic
 		for r := range n {
 			out.observed[i][r] = b.Data[r*b.Width+m.w.roles.channels+i]
 		}
+		m.weigh(out, i, n)
+	}
+	out.diagnosticText.Reset()
+	if wantDiagnostics {
+		m.diagnose(out, b)
 	}
 	out.predictionText.Reset()
 	if wantPredictions {
@@ -226,7 +247,7 @@ func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredic
 				if s := m.w.study.Regression.Smearing; s != nil {
 					back = &s[i]
 				}
-				out.predictionText.Prediction(m.layout, m.key(b, r), response.Response, out.observed[i][r], out.predicted[i][r], m.half[i][r], back)
+				out.predictionText.Prediction(m.layout, m.key(b, r), response.Response, out.observed[i][r], out.predicted[i][r], m.half[i][r], back, m.predictors[i].MeanHalfAt(out.influence[i][r].Leverage))
 			}
 		}
 	}
