@@ -94,6 +94,8 @@ type Model struct {
 	// T are the t values of the components' slopes with the residual standard deviation of
 	// least squares; NaN where that is undefined.
 	T []float64
+	// Coefficients by number of components, ascending from 0.
+	Coefficients []PathStep
 	// Path holds one step per number of components, from 0.
 	Path  []Step
 	Folds int // of each deal of the rows
@@ -223,6 +225,7 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 			m.warn("no-procedure", "the error of the whole procedure is not known: %s", m.Procedure.Note)
 		}
 		m.mapBack(joint, d, projections[i], x, y[i], o)
+		m.coefficientPath(joint, d, projections[i], x, y[i], o)
 		m.remedies(d, projections[i], cv, i, most)
 		r.Models = append(r.Models, m)
 	}

@@ -81,7 +81,7 @@ type Picture struct {
 }
 
 // Pictures lists all pictures.
-var Pictures = []Picture{scree, cumulativeShare, loadings, rotatedLoadings, loadingsPlane, scoresPlane, correlationMap, dendrogram, retention, tradeoff, rebuilt, validation, coefficients, predictions}
+var Pictures = []Picture{scree, cumulativeShare, loadings, rotatedLoadings, loadingsPlane, scoresPlane, correlationMap, dendrogram, retention, tradeoff, rebuilt, validation, coefficients, coefficientPath, predictions}
 
 // Drawing is one picture of one material.
 type Drawing struct {

@@ -159,7 +159,7 @@ func TestAllPictures(t *testing.T) {
 			want -= 3 // neither plane, nothing to rotate
 		}
 		if p == 1 {
-			want-- // no map of one channel
+			want -= 2 // no map and no paths of one channel
 		}
 		if p < 3 {
 			want-- // nothing to tell of how two channels join
@@ -242,8 +242,8 @@ func TestNamesOfResponses(t *testing.T) {
 			t.Errorf("no %s", want)
 		}
 	}
-	if len(files) != 11+3*3 {
-		t.Errorf("%d files, want 20", len(files))
+	if len(files) != 11+4*3 {
+		t.Errorf("%d files, want 23", len(files))
 	}
 }
 

@@ -30,6 +30,7 @@ var Tables = []TableFile{
 	{"redundancy.csv", hasReduction, fillRedundancy},
 	{"tradeoff.csv", hasReduction, fillTradeoff},
 	{"coefficients.csv", hasRegression, fillCoefficients},
+	{"coefficient_path.csv", hasRegression, fillCoefficientPath},
 	{"validation.csv", hasRegression, fillValidation},
 	{"procedure.csv", hasProcedure, fillProcedure},
 	{"remedies.csv", hasRegression, fillRemedies},
@@ -124,6 +125,22 @@ func fillCoefficients(s *Study, w *csvWriter) {
 				w.number(v).number(t.Coefficient - quantile*v).number(t.Coefficient + quantile*v)
 			}
 			w.end()
+		}
+	}
+}
+
+// fillCoefficientPath writes the coefficients that every number of components gives.
+func fillCoefficientPath(s *Study, w *csvWriter) {
+	w.header("response", "components", "term", "coefficient", "standard_error", "standardized_coefficient")
+	for _, m := range s.Regression.Result.Models {
+		for _, step := range m.Coefficients {
+			line := func(term string, coefficient, slip, standardized float64) {
+				w.text(m.Response).whole(int64(step.Components)).text(term).number(coefficient).number(slip).number(standardized).end()
+			}
+			line("intercept", step.Intercept, step.InterceptError, math.NaN())
+			for j, b := range step.Coefficients {
+				line(m.Terms[j].Name, b, step.Errors[j], step.Standardized[j])
+			}
 		}
 	}
 }
