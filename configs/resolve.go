@@ -75,8 +75,10 @@ func (k *Key) node(v reflect.Value) *yaml.Node {
 	switch k.Kind {
 	case Character:
 		return textNode(characterWord(v.String()))
-	case Text, Word:
+	case Text:
 		return textNode(v.String())
+	case Word: // of ours, true and false among them
+		return plainNode(v.String())
 	case Number:
 		return plainNode(strconv.FormatFloat(v.Float(), 'g', -1, 64))
 	}

@@ -176,7 +176,7 @@ read:
   thousands: none
   comment: "#"
   missing: ["", NA, "-999", "010", "1e5", "no", "~"]
-  header: "false"
+  header: false
   units_row: true
   short_rows: error
   time: stamp
@@ -226,7 +226,7 @@ read:
   thousands: none
   comment: ""
   missing: ["", NA, NaN, nan, "null"]
-  header: "true"
+  header: true
   units_row: false
   short_rows: error
   time: ""
