@@ -1,13 +1,9 @@
 package run
 
 import (
-	"context"
 	"math"
-	"os"
-	"path/filepath"
 	"testing"
 
-	"axisfold/configs"
 	"axisfold/testdata/published"
 )
 
@@ -25,28 +21,15 @@ func TestCopiedRows(t *testing.T) {
 // Linear methods are known to be off by two to three per cent of fat on rows not seen
 // (from memory), least squares by more than components.
 func TestTecator(t *testing.T) {
-	dir := t.TempDir()
-	text := `
+	s, _ := study(t, t.TempDir(), `
 axisfold: 1
-read: {files: ` + published.Path(t, "reference/tecator/tecator_215x103.csv") + `}
+read: {files: `+published.Path(t, "reference/tecator/tecator_215x103.csv")+`}
 regress: {response: fat, predictors: "* nm"}
-`
-	path := filepath.Join(dir, "run.yaml")
-	if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := configs.Load(path, nil)
-	if err != nil {
-		t.Fatal(err)
-	}
-	study, _, err := Execute(context.Background(), cfg, Options{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	if !warned(study, "copied-rows") {
+`, Options{})
+	if !warned(s, "copied-rows") {
 		t.Error("no word of copied rows")
 	}
-	m := study.Regression.Result.Models[0]
+	m := s.Regression.Result.Models[0]
 	components, ordinary := m.Remedies[0], m.Remedies[1]
 	if components.CV < 2 || components.CV > 3 || ordinary.CV <= components.CV {
 		t.Errorf("off by %.3f on components, %.3f by least squares", components.CV, ordinary.CV)

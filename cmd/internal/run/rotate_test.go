@@ -1,15 +1,12 @@
 package run
 
 import (
-	"context"
 	"fmt"
 	"math"
-	"os"
 	"path/filepath"
 	"strings"
 	"testing"
 
-	"axisfold/configs"
 	"axisfold/testdata/published"
 )
 
@@ -18,28 +15,17 @@ import (
 // says; under both matrices, held and streamed, for every method.
 func TestRotationOfRows(t *testing.T) {
 	dir := t.TempDir()
-	path := filepath.Join(dir, "run.yaml")
 	text := `
 axisfold: 1
 read: {files: "` + published.Path(t, "reference/classic/us_arrests_1973.csv") + `"}
 retain: {rule: fixed, components: 3}
 rotate: {}
 `
-	if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
-		t.Fatal(err)
-	}
 	table := published.CSV(t, "reference/classic/us_arrests_1973.csv").Columns("Murder", "Assault", "UrbanPop", "Rape")
 	for _, sets := range []string{"rotate.method=varimax", "rotate.method=quartimax", "rotate.method=promax",
 		"rotate.method=promax decompose.matrix=covariance standardize.scaling=center rotate.normalize=false"} {
 		for _, held := range []int64{0, 20} {
-			cfg, err := configs.Load(path, strings.Fields(sets))
-			if err != nil {
-				t.Fatal(err)
-			}
-			_, folder, err := Execute(context.Background(), cfg, Options{Out: filepath.Join(dir, "out"), held: held, Replace: true})
-			if err != nil {
-				t.Fatal(err)
-			}
+			_, folder := study(t, dir, text, Options{Out: filepath.Join(dir, "out"), held: held, Replace: true}, strings.Fields(sets)...)
 			what := fmt.Sprint(sets, " held ", held)
 			var scores [3][]float64
 			for _, l := range records(t, folder, "scores.csv") {
@@ -93,26 +79,13 @@ func covariance(x, y []float64) float64 {
 
 // One component is nothing to rotate: the run goes on and says so.
 func TestNothingToRotate(t *testing.T) {
-	dir := t.TempDir()
-	path := filepath.Join(dir, "run.yaml")
-	text := `
+	s, _ := study(t, t.TempDir(), `
 axisfold: 1
-read: {files: "` + published.Path(t, "reference/classic/us_arrests_1973.csv") + `"}
+read: {files: "`+published.Path(t, "reference/classic/us_arrests_1973.csv")+`"}
 retain: {rule: fixed, components: 1}
 rotate: {}
-`
-	if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := configs.Load(path, nil)
-	if err != nil {
-		t.Fatal(err)
-	}
-	study, _, err := Execute(context.Background(), cfg, Options{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	if !warned(study, "nothing-to-rotate") || study.Rotation != nil {
-		t.Errorf("no warning in %v", study.Warnings)
+`, Options{})
+	if !warned(s, "nothing-to-rotate") || s.Rotation != nil {
+		t.Errorf("no warning in %v", s.Warnings)
 	}
 }

@@ -1,14 +1,11 @@
 package run
 
 import (
-	"context"
 	"math"
-	"os"
 	"path/filepath"
 	"testing"
 
 	"axisfold/cmd/internal/report"
-	"axisfold/configs"
 	"axisfold/testdata/published"
 )
 
@@ -18,28 +15,17 @@ import (
 // it is beside it.
 func TestTransformedResponse(t *testing.T) {
 	dir := t.TempDir()
-	path := filepath.Join(dir, "run.yaml")
 	text := `
 axisfold: 1
 read: {files: ` + published.Path(t, "reference/classic/stackloss.csv") + `}
 standardize: {channels: {stack_loss: {transform: log}, acid_conc: {transform: square-root}}}
 regress: {response: [stack_loss, acid_conc, water_temp], retain: {rule: fixed, components: 1, folds: 3, arrangement: random}}
 `
-	if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
-		t.Fatal(err)
-	}
 	var first []map[string]string
 	for _, held := range []int64{0, 4} {
-		cfg, err := configs.Load(path, nil)
-		if err != nil {
-			t.Fatal(err)
-		}
-		study, folder, err := Execute(context.Background(), cfg, Options{Out: filepath.Join(dir, "out"), held: held, Replace: true})
-		if err != nil {
-			t.Fatal(err)
-		}
-		if study.Table.Held != (held == 0) {
-			t.Fatal("held", study.Table.Held)
+		s, folder := study(t, dir, text, Options{Out: filepath.Join(dir, "out"), held: held, Replace: true})
+		if s.Table.Held != (held == 0) {
+			t.Fatal("held", s.Table.Held)
 		}
 		lines := records(t, folder, "predictions.csv")
 		table := published.CSV(t, "reference/classic/stackloss.csv")
@@ -79,7 +65,7 @@ regress: {response: [stack_loss, acid_conc, water_temp], retain: {rule: fixed, c
 		} else if len(first) != len(lines) {
 			t.Errorf("%d lines streamed, %d held", len(lines), len(first))
 		}
-		checkUnits(t, study)
+		checkUnits(t, s)
 	}
 }
 

@@ -11,6 +11,7 @@ import (
 	"strings"
 	"testing"
 
+	"axisfold/cmd/internal/report"
 	"axisfold/configs"
 	"axisfold/testdata/published"
 )
@@ -18,6 +19,13 @@ import (
 // execute runs a run file of the given text in a folder of its own and returns the run
 // folder.
 func execute(t testing.TB, dir, text string, sets ...string) string {
+	t.Helper()
+	_, folder := study(t, dir, text, Options{Version: "test"}, sets...)
+	return folder
+}
+
+// study does the same with options, and returns the study too.
+func study(t testing.TB, dir, text string, o Options, sets ...string) (*report.Study, string) {
 	t.Helper()
 	path := filepath.Join(dir, "run.yaml")
 	if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
@@ -27,11 +35,11 @@ func execute(t testing.TB, dir, text string, sets ...string) string {
 	if err != nil {
 		t.Fatal(err)
 	}
-	_, folder, err := Execute(context.Background(), cfg, Options{Version: "test"})
+	s, folder, err := Execute(context.Background(), cfg, o)
 	if err != nil {
 		t.Fatal(err)
 	}
-	return folder
+	return s, folder
 }
 
 // records reads a table of a run folder as maps by column name.
