@@ -32,6 +32,7 @@ var checks = []check{
 		}
 	}},
 	{[]string{"regress.retain.arrangement", "regress.retain.gap", "regress.retain.repeats"}, arrangement},
+	{[]string{"regress.retain.which"}, whichComponents},
 	{[]string{"regress.intercept", "standardize.scaling", "standardize.channels"}, throughOrigin},
 	{[]string{"regress.response", "read.leave_out"}, func(l *loader) {
 		l.eachResponse(func(name string) {
@@ -97,6 +98,20 @@ func arrangement(l *loader) {
 		l.conflict("regress.retain.repeats", "", "only arrangement: random can be repeated, found %s", r.Arrangement)
 	}
 }
+
+// whichComponents: names like C1.
+func whichComponents(l *loader) {
+	if l.file.Regress == nil {
+		return
+	}
+	for _, name := range l.file.Regress.Retain.Which {
+		if !componentName.MatchString(name) {
+			l.conflict("regress.retain.which", name, "expected a component such as C1, found %q", clip(name))
+		}
+	}
+}
+
+var componentName = regexp.MustCompile(`^C[1-9][0-9]{0,5}$`)
 
 // throughOrigin: without an intercept the model goes through zero, so zero must stay zero.
 func throughOrigin(l *loader) {

@@ -301,7 +301,7 @@ hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, minimum-ave
 pump.yaml:4:16: retain.rule: expected a word, found a list
 hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, minimum-average-partial, equal-roots, tracy-widom, hard-threshold, evidence, bic, parallel-shifts, bi-cross-validation, element-cross-validation, knee, agreement
 pump.yaml:5:39: regress.retain.rule: expected a word, found nothing
-hint: known: fixed, share, eigenvalue-above, broken-stick, parallel, minimum-average-partial, equal-roots, tracy-widom, hard-threshold, evidence, parallel-shifts, bi-cross-validation, element-cross-validation, knee, agreement, cross-validation, aicc, bic, cp, t-threshold, condition-limit, randomisation-test, press, one-standard-error
+hint: known: fixed, subset, share, eigenvalue-above, broken-stick, parallel, minimum-average-partial, equal-roots, tracy-widom, hard-threshold, evidence, parallel-shifts, bi-cross-validation, element-cross-validation, knee, agreement, cross-validation, aicc, bic, cp, t-threshold, condition-limit, randomisation-test, press, one-standard-error
 `},
 	{"parameters of other rules", start + "retain: {rule: fixed, components: 3, percentile: 95}\nregress: {response: y, retain: {rule: broken-stick, at_least: 5}}\n", nil, `
 pump.yaml:4:38: retain: rule fixed takes no "percentile"
@@ -476,6 +476,8 @@ func TestErrorsUnwrap(t *testing.T) {
 func TestArrangement(t *testing.T) {
 	for set, want := range map[string]string{
 		"{rule: aicc, arrangement: random, gap: 3}":      "regress.retain.gap: a gap needs arrangement: blocks or forward, found random",
+		"{rule: subset, which: [C1, c2]}":                `regress.retain.which: expected a component such as C1, found "c2"`,
+		"{rule: subset, which: [C1, C1]}":                `regress.retain.which: "C1" stands twice`,
 		"{rule: aicc, arrangement: forward, repeats: 2}": "regress.retain.repeats: only arrangement: random can be repeated, found forward",
 	} {
 		_, err := Parse("pump.yaml", []byte(start+"regress: {response: y, retain: "+set+"}\n"), nil)

@@ -71,24 +71,25 @@ type Decompose struct {
 // Rule is a rule for the number of components and its parameters. Parameters that do not
 // belong to the rule are zero.
 type Rule struct {
-	Rule           string  `key:"rule"`
-	Components     int     `key:"components"`
-	AtLeast        float64 `key:"at_least"`
-	Value          float64 `key:"value"`
-	Reference      string  `key:"reference"`
-	Percentile     float64 `key:"percentile"`
-	Rows           string  `key:"rows"`
-	Replicates     int     `key:"replicates"`
-	Power          int     `key:"power"`
-	Alpha          float64 `key:"alpha"`
-	Noise          float64 `key:"noise"`
-	Limit          float64 `key:"limit"`
-	Folds          int     `key:"folds"`
-	Arrangement    string  `key:"arrangement"`
-	Order          string  `key:"order"`
-	Gap            int     `key:"gap"`
-	Repeats        int     `key:"repeats"`
-	MostComponents int     `key:"most_components"` // 0: as many as the data carry
+	Rule           string   `key:"rule"`
+	Components     int      `key:"components"`
+	AtLeast        float64  `key:"at_least"`
+	Value          float64  `key:"value"`
+	Reference      string   `key:"reference"`
+	Percentile     float64  `key:"percentile"`
+	Rows           string   `key:"rows"`
+	Replicates     int      `key:"replicates"`
+	Power          int      `key:"power"`
+	Alpha          float64  `key:"alpha"`
+	Noise          float64  `key:"noise"`
+	Limit          float64  `key:"limit"`
+	Folds          int      `key:"folds"`
+	Arrangement    string   `key:"arrangement"`
+	Order          string   `key:"order"`
+	Gap            int      `key:"gap"`
+	Which          []string `key:"which"` // C1, C2 and so on
+	Repeats        int      `key:"repeats"`
+	MostComponents int      `key:"most_components"` // 0: as many as the data carry
 }
 
 // Rotate asks for the kept components turned so that each is carried by few channels.

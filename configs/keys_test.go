@@ -143,6 +143,9 @@ func TestWordsOfEveryKey(t *testing.T) {
 				if rule == "fixed" {
 					set += ", components: 3"
 				}
+				if rule == "subset" {
+					set += ", which: C1"
+				}
 				set += "}"
 			}
 			set = strings.Replace(set, "channels.", "channels.flow.", 1)

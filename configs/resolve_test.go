@@ -111,7 +111,7 @@ func TestDefaultsOfRules(t *testing.T) {
 	} {
 		f := load(t, start+"retain: {rule: "+text+"}\n")
 		want.Rule = f.Retain.Rule
-		if f.Retain != want {
+		if !reflect.DeepEqual(f.Retain, want) {
 			t.Errorf("retain %s: %+v", text, f.Retain)
 		}
 	}
@@ -127,7 +127,7 @@ func TestDefaultsOfRules(t *testing.T) {
 		want.Folds, want.Arrangement, want.Order, want.Repeats = 10, "blocks", "variance", 1
 		f := load(t, start+"regress: {response: y, retain: {rule: "+text+"}}\n")
 		want.Rule = f.Regress.Retain.Rule
-		if f.Regress.Retain != want {
+		if !reflect.DeepEqual(f.Regress.Retain, want) {
 			t.Errorf("regress.retain %s: %+v", text, f.Regress.Retain)
 		}
 	}

@@ -29,6 +29,8 @@ var rules = []listed{
 		{Name: "components", Kind: Whole, Required: true, Range: atLeast(1), Doc: "how many to keep"}}}},
 	{second, RuleDescription{"fixed", "the number given", []Key{
 		{Name: "components", Kind: Whole, Required: true, Range: atLeast(0), Doc: "how many enter"}}}},
+	{second, RuleDescription{"subset", "the components named", []Key{
+		{Name: "which", Kind: Names, Required: true, Filled: true, Doc: "components as the tables name them, C1 the first"}}}},
 	{either, RuleDescription{"share", "the fewest that hold a share of the total variance", []Key{
 		{Name: "at_least", Kind: Number, Range: upTo(1), Default: 0.9, Doc: "share of the total variance"}}}},
 	{either, RuleDescription{"eigenvalue-above", "eigenvalues above a multiple of their mean", []Key{

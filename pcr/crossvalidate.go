@@ -87,7 +87,8 @@ func judgeFold(train, held *pca.Summary, x, y []int, most int, o Options) ([]hel
 		along := projections[i].Along[:d.Rank]
 		slopes := make([]float64, d.Rank)
 		out[i].path = append(out[i].path, g.squares(i, slopes))
-		for _, a := range entering(along, o.Order)[:min(d.Rank, most)] {
+		order := o.enter(along)
+		for _, a := range order[:min(len(order), most)] {
 			slopes[a] = along[a] / d.Length(a)
 			out[i].path = append(out[i].path, g.squares(i, slopes))
 		}

@@ -49,11 +49,14 @@ type Options struct {
 	ThroughOrigin bool
 	Order         Order
 	Choice        Choice
-	Components    int       // for Given
-	Limit         float64   // of t², for TThreshold; of the condition index, for ConditionLimit
-	Alpha         float64   // probability of error of RandomisationTest
-	Seed          uint64    // of its signs
-	Press         PressSums // from a pass over the rows; nil without
+	Components    int // for Given
+	// Which are components, from 0, that enter before all others, whatever Order says; in every
+	// fold they are those of the fold's own decomposition.
+	Which []int
+	Limit float64   // of t², for TThreshold; of the condition index, for ConditionLimit
+	Alpha float64   // probability of error of RandomisationTest
+	Seed  uint64    // of its signs
+	Press PressSums // from a pass over the rows; nil without
 	// Splits say which of the folds are held out together and what is learnt from; nil holds
 	// out each in turn and learns from all others.
 	Splits []pca.Split
@@ -186,6 +189,9 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 	if err != nil {
 		return nil, err
 	}
+	if err := o.checkWhich(d.Rank); err != nil {
+		return nil, err
+	}
 	most := d.Rank
 	if o.Most > 0 {
 		most = min(most, o.Most)
@@ -233,7 +239,7 @@ func Fit(joint *pca.Summary, folds []*pca.Summary, x, y []int, o Options) (*Resu
 }
 
 func newModel(joint *pca.Summary, d *pca.Decomposition, pr pca.Projection, y int, x []int, name string, o Options) *Model {
-	m := &Model{Response: name, Rows: joint.Count(), Total: pr.Total, Entering: entering(pr.Along[:d.Rank], o.Order), roots: d.Values[:d.Rank]}
+	m := &Model{Response: name, Rows: joint.Count(), Total: pr.Total, Entering: o.enter(pr.Along[:d.Rank]), roots: d.Values[:d.Rank]}
 	if !o.ThroughOrigin {
 		m.constants = 1
 	}

@@ -33,6 +33,9 @@ func NewPress(joint *pca.Summary, x, y []int, o Options) (*Press, error) {
 	if err != nil {
 		return nil, err
 	}
+	if err := o.checkWhich(d.Rank); err != nil {
+		return nil, err
+	}
 	p := &Press{d: d, most: d.Rank, responses: len(y), offset: make([]float64, d.Rank)}
 	if o.Most > 0 {
 		p.most = min(p.most, o.Most)
@@ -52,7 +55,8 @@ func NewPress(joint *pca.Summary, x, y []int, o Options) (*Press, error) {
 			slopes[a] = v / d.Length(a)
 		}
 		p.centers = append(p.centers, joint.Mean(j))
-		p.entering = append(p.entering, entering(along, o.Order)[:p.most])
+		order := o.enter(along)
+		p.entering = append(p.entering, order[:min(len(order), p.most)])
 		p.slopes = append(p.slopes, slopes)
 	}
 	all := pca.FirstComponents(d.Rank)

@@ -4,6 +4,8 @@ import (
 	"context"
 	"fmt"
 	"slices"
+	"strconv"
+	"strings"
 
 	"axisfold/cmd/internal/report"
 	"axisfold/pca"
@@ -80,6 +82,17 @@ func (w *work) chooseRegressors(o *pcr.Options) error {
 	o.Choice = pcr.Given
 	if r.Rule == "fixed" {
 		o.Components = r.Components
+		return nil
+	}
+	if r.Rule == "subset" {
+		for _, name := range r.Which {
+			a, err := strconv.Atoi(strings.TrimPrefix(name, "C"))
+			if err != nil {
+				return err
+			}
+			o.Which = append(o.Which, a-1)
+		}
+		o.Components = len(o.Which)
 		return nil
 	}
 	v, err := retain.Apply(r.Rule, w.roots, settingsOf(r))
