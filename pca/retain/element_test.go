@@ -80,7 +80,8 @@ func TestElementwiseFindsTheNumber(t *testing.T) {
 			}
 		}
 		e := evidenceOf(t, x, c.n, c.p)
-		v := elementCross.run(e, Defaults())
+		quick := with(func(s *Settings) { s.Quick = true })
+		v := elementCross.run(e, quick)
 		if v.Abstains || v.Components != c.k {
 			t.Errorf("%d × %d of %d: %d, abstains %v: %s", c.n, c.p, c.k, v.Components, v.Abstains, v.Note)
 		}
@@ -88,10 +89,10 @@ func TestElementwiseFindsTheNumber(t *testing.T) {
 			continue
 		}
 		e.Threads = 1
-		one := elementCross.run(e, Defaults())
+		one := elementCross.run(e, quick)
 		for threads := 2; threads < 4; threads++ {
 			e.Threads = threads
-			other := elementCross.run(e, Defaults())
+			other := elementCross.run(e, quick)
 			for i := range one.Steps {
 				if one.Steps[i] != other.Steps[i] {
 					t.Fatalf("other bits on %d threads", threads)
@@ -112,8 +113,7 @@ func TestElementwiseAbstains(t *testing.T) {
 	}
 	streamed := noise(50, 5)
 	streamed.Standardized = nil
-	quick := Defaults()
-	quick.Quick = true
+	quick := with(func(s *Settings) { s.Quick = true })
 	for what, v := range map[string]Verdict{"rows not in memory": elementCross.run(streamed, Defaults()), "two channels": elementCross.run(noise(20, 2), Defaults()),
 		"more channels than rows": elementCross.run(noise(9, 12), Defaults()), "long": elementCross.run(noise(300, 60), quick)} {
 		if !v.Abstains || v.Note == "" {

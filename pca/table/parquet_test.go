@@ -240,6 +240,9 @@ func TestWideParquet(t *testing.T) {
 // A hundred thousand columns are more than the library takes; the reader says so. A text
 // repeated by a dictionary is refused before it fills memory.
 func TestTooMuchParquet(t *testing.T) {
+	if raced {
+		t.Skip("one goroutine and hundreds of megabytes: the race detector has nothing to find, and takes minutes")
+	}
 	meta := parquetformat.FileMetaData{Version: 1, Schema: []parquetformat.SchemaElement{{Name: "root", NumChildren: thrift.New(int32(100000))}}}
 	for j := range 100000 {
 		meta.Schema = append(meta.Schema, parquetformat.SchemaElement{Name: fmt.Sprint("c", j), Type: thrift.New(parquetformat.Double), RepetitionType: thrift.New(parquetformat.Required)})
