@@ -9,12 +9,13 @@ import (
 
 	reports "axisfold/cmd/internal/report"
 	"axisfold/cmd/internal/run"
-	"axisfold/configs"
 )
 
 func newRun() *cobra.Command {
 	var o run.Options
 	var asJSON, quiet bool
+	var budgetText string
+	var channels budget
 	c := &cobra.Command{
 		Use:   "run RUNFILE",
 		Short: "Do the whole study that a run file describes and write its run folder",
@@ -29,7 +30,7 @@ is replaced only with --replace; a folder that is not a run folder never.
   axisfold run study.yaml --out runs/three --set retain.rule=fixed --set retain.components=3`,
 		Args: oneArg("a run file"),
 		RunE: func(c *cobra.Command, args []string) error {
-			cfg, err := configs.Load(args[0], o.Set)
+			cfg, err := channels.load(args[0], &o)
 			if err != nil {
 				return err
 			}
@@ -55,12 +56,19 @@ is replaced only with --replace; a folder that is not a run folder never.
 	f.StringVar(&o.Out, "out", "", "write the run folder here, in place of write.folder")
 	f.BoolVar(&o.Replace, "replace", false, "replace a folder that another run file wrote")
 	f.StringArrayVar(&o.Set, "set", nil, "override a setting of the run file, `section.key=value`; may be repeated")
+	f.StringVar(&budgetText, "budget", "", "keep so many channels (`N`), or compare from A to B (A..B), as reduce does")
 	f.IntVar(&o.Threads, "threads", 0, "how many cores to use (0: all); results do not depend on it")
 	f.BoolVar(&asJSON, "json", false, "print results.json in place of the summary")
 	f.BoolVar(&quiet, "quiet", false, "print no summary")
 	c.PreRunE = func(c *cobra.Command, _ []string) error {
 		if o.Threads < 0 || o.Threads > 1024 {
 			return usageError{c.CommandPath(), fmt.Sprintf("--threads %d: expected 0 to 1024", o.Threads)}
+		}
+		if budgetText != "" {
+			var ok bool
+			if channels, ok = parseBudget(budgetText); !ok {
+				return usageError{c.CommandPath(), fmt.Sprintf("--budget %s: expected a number of channels, such as 8, or a range, such as 4..12", budgetText)}
+			}
 		}
 		return nil
 	}

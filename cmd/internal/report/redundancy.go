@@ -94,7 +94,17 @@ func (p *page) sweep(s *Study) {
 		head += "      cost"
 	}
 	p.line(head + "  against the line above")
-	for i := max(0, at-sweepAround); i < min(len(r.Curve), at+sweepAround+1); i++ {
+	first, last := max(0, at-sweepAround), min(len(r.Curve)-1, at+sweepAround)
+	if wanted := s.Reduction.Sweep; wanted[1] > 0 {
+		inside := func(c reduce.CurvePoint) bool { return c.Kept >= wanted[0] && c.Kept <= wanted[1] }
+		if first = slices.IndexFunc(r.Curve, inside); first < 0 {
+			return // groups kept whole step over all of them
+		}
+		for last = first; last+1 < len(r.Curve) && inside(r.Curve[last+1]); {
+			last++
+		}
+	}
+	for i := first; i <= last; i++ {
 		c := r.Curve[i]
 		mark := " "
 		if i == at {
@@ -104,7 +114,7 @@ func (p *page) sweep(s *Study) {
 		if costs {
 			text += fmt.Sprintf("  %8s", short3(c.Cost))
 		}
-		if i > max(0, at-sweepAround) {
+		if i > first {
 			text += "  " + p.changes(s, r.Curve[i-1].Set, c.Set)
 		}
 		p.line(strings.TrimRight(text, " "))

@@ -100,6 +100,7 @@ type Reduction struct {
 	Result  *reduce.Result
 	Rebuild float64 // target; unused when Size is above 0
 	Size    int
+	Sweep   [2]int // numbers of channels that the summary compares; zeros: around the chosen one
 	// Protected and Preferred mark channels, by position.
 	Protected, Preferred []bool
 }

@@ -81,7 +81,7 @@ func (w *work) reduce(context.Context) error {
 	if err != nil {
 		return fmt.Errorf("reduce: %w", err)
 	}
-	w.study.Reduction = &report.Reduction{Result: result, Rebuild: c.Rebuild, Size: c.Size, Protected: o.Protect, Preferred: o.Prefer}
+	w.study.Reduction = &report.Reduction{Result: result, Rebuild: c.Rebuild, Size: c.Size, Sweep: w.options.Sweep, Protected: o.Protect, Preferred: o.Prefer}
 	for _, warning := range result.Warnings {
 		w.warn(warning.Code, "reduce: %s", warning.Text)
 	}

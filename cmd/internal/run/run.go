@@ -25,6 +25,7 @@ type Options struct {
 	Threads int // 0 takes all cores
 	Version string
 	Set     []string // overrides, for the manifest
+	Sweep   [2]int   // numbers of channels that the summary compares; zeros: around the chosen one
 
 	// For tests: a bound in place of heldCells, and files that fail.
 	held int64
