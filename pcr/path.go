@@ -19,9 +19,10 @@ const pathCells = 200000
 // about, and where they begin to run to those of least squares. On tables too wide for all
 // of it the first steps and the last stand for it.
 func (m *Model) coefficientPath(joint *pca.Summary, d *pca.Decomposition, pr pca.Projection, x []int, y int, o Options) {
-	steps := pathCells / (d.Width() + 1)
+	steps, left := pathCells/(d.Width()+1), 0
 	for k := range m.Path {
 		if k >= steps && k < len(m.Path)-1 && k != m.Components {
+			left++
 			continue
 		}
 		entering := m.Entering[:k]
@@ -35,5 +36,8 @@ func (m *Model) coefficientPath(joint *pca.Summary, d *pca.Decomposition, pr pca
 			step.Standardized = append(step.Standardized, b*m.deviations[j]/m.deviation)
 		}
 		m.Coefficients = append(m.Coefficients, step)
+	}
+	if left > 0 {
+		m.warn("thinned-path", "the path of coefficients leaves out %d numbers of components: with %d channels it would be too long; the first, the chosen and the last are there", left, d.Width())
 	}
 }

@@ -2,6 +2,9 @@ package pcr
 
 import (
 	"math"
+	"math/rand/v2"
+	"slices"
+	"strconv"
 	"testing"
 
 	"axisfold/pca"
@@ -52,5 +55,39 @@ func TestCoefficientPath(t *testing.T) {
 			squares += left * left
 		}
 		near("squares", squares, m.Path[k].Squares)
+	}
+}
+
+// A path too long to hold keeps its first numbers, the chosen one and the last, and says
+// so.
+func TestThinnedPath(t *testing.T) {
+	n, p := 500, 460
+	rng := rand.New(rand.NewPCG(101, 102))
+	data := make([]float64, n*(p+1))
+	for i := range data {
+		data[i] = rng.NormFloat64()
+	}
+	var x []int
+	o := Options{Predictors: pca.Options{Matrix: pca.Correlation}, Responses: []string{"y"}, Order: ByVariance, Choice: Given, Components: 450, Confidence: .95}
+	for j := range p {
+		x = append(x, j)
+		o.Predictors.Names = append(o.Predictors.Names, strconv.Itoa(j))
+		o.Predictors.Methods = append(o.Predictors.Methods, pca.UnitNormal)
+	}
+	r, err := Fit(pca.NewBuilder(p+1, pca.CrossProducts, 0).Summarize(data, n), nil, x, []int{p}, o)
+	if err != nil {
+		t.Fatal(err)
+	}
+	m := r.Models[0]
+	held := pathCells / (p + 1)
+	var got []int
+	for _, s := range m.Coefficients[held-1:] {
+		got = append(got, s.Components)
+	}
+	if !slices.Equal(got, []int{held - 1, 450, 460}) {
+		t.Errorf("the path ends with %v", got)
+	}
+	if !slices.ContainsFunc(m.Warnings, func(w pca.Warning) bool { return w.Code == "thinned-path" }) {
+		t.Errorf("no warning in %v", m.Warnings)
 	}
 }

@@ -17,7 +17,7 @@ import (
 const strongestPaths = 6
 
 var coefficientPath = Picture{Name: "coefficient-path", perResponse: true,
-	Caption: "Standardized coefficients against the number of components that enter; the strongest of the model have names, the others are grey. To the right all of them run to least squares.",
+	Caption: "Standardized coefficients against the number of components that enter; the strongest of the model have names, the others are grey. With all components they are those of least squares.",
 	ready: func(m *Material) bool {
 		return hasRegression(m) && len(m.Decomposition.Channels) > 1 && len(m.Regression.Models[0].Coefficients) > 2
 	},
@@ -102,14 +102,16 @@ var coefficientPath = Picture{Name: "coefficient-path", perResponse: true,
 	}}
 
 // shownSteps leaves out what lies far beyond the number chosen where there are many: there
-// the coefficients run wild, and nothing can be made out.
+// the coefficients run wild, and nothing can be made out. Nor does it go on past numbers
+// that a long path leaves out.
 func shownSteps(model *pcr.Model) []pcr.PathStep {
 	most := max(40, 2*model.Components+6)
-	end := slices.IndexFunc(model.Coefficients, func(s pcr.PathStep) bool { return s.Components > most })
-	if end < 0 {
-		return model.Coefficients
+	for k, s := range model.Coefficients {
+		if s.Components > most || s.Components != k {
+			return model.Coefficients[:k]
+		}
 	}
-	return model.Coefficients[:end]
+	return model.Coefficients
 }
 
 // pathLimit is the range of a picture of paths: what the coefficients of the model and of

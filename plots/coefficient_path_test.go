@@ -36,6 +36,10 @@ func TestPathLimit(t *testing.T) {
 	if got := len(shownSteps(m)); got != 41 {
 		t.Errorf("%d steps shown", got)
 	}
+	m.Coefficients = append(m.Coefficients[:7], m.Coefficients[20:]...)
+	if got := len(shownSteps(m)); got != 7 {
+		t.Errorf("%d steps shown, though the path leaves out the next", got)
+	}
 	m.Coefficients = m.Coefficients[:4]
 	if limit, cut := pathLimit(m); limit < 1.57 || limit > 1.58 || cut {
 		t.Errorf("limit %g, cut %v", limit, cut)

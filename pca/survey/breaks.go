@@ -1,6 +1,7 @@
 package survey
 
 import (
+	"cmp"
 	"math"
 	"slices"
 )
@@ -57,7 +58,7 @@ func (r *second) breaks(names []string, skip []bool) []Break {
 		for i := range order {
 			order[i] = i
 		}
-		slices.SortStableFunc(order, func(x, y int) int { return compareFloats(merged.sizes[y], merged.sizes[x]) })
+		slices.SortStableFunc(order, func(x, y int) int { return cmp.Compare(merged.sizes[y], merged.sizes[x]) })
 		sorted := make([]string, len(order))
 		for i, k := range order {
 			sorted[i] = merged.Channels[k]
@@ -117,14 +118,4 @@ func window(x []float64) (mean, variance float64, ok bool) {
 	}
 	variance /= float64(len(x) - 1)
 	return mean, variance, !math.IsNaN(variance)
-}
-
-func compareFloats(a, b float64) int {
-	switch {
-	case a < b:
-		return -1
-	case a > b:
-		return 1
-	}
-	return 0
 }

@@ -1,6 +1,9 @@
 package survey
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // Run is a stretch of rows.
 type Run struct {
@@ -119,17 +122,7 @@ func (c *trace) spike(row int64, before, v, after float64) {
 		return
 	}
 	c.spikes++
-	s := Spike{row, v, near / c.step}
-	at := len(c.worst)
-	for at > 0 && c.worst[at-1].Size < s.Size {
-		at--
-	}
-	if at < mostListed {
-		c.worst = append(c.worst, Spike{})
-		copy(c.worst[at+1:], c.worst[at:])
-		c.worst[at] = s
-		c.worst = c.worst[:min(len(c.worst), mostListed)]
-	}
+	c.worst = ranked(c.worst, Spike{row, v, near / c.step}, func(s Spike) float64 { return s.Size })
 }
 
 // endRun enters the run that holds a value among the longest.
@@ -139,16 +132,21 @@ func (c *trace) endRun() {
 	if r.Length < 2 {
 		return
 	}
-	at := len(c.runs)
-	for at > 0 && c.runs[at-1].Length < r.Length {
+	c.runs = ranked(c.runs, r, func(r Run) float64 { return float64(r.Length) })
+}
+
+// ranked enters x into a list of the mostListed largest, which falls; the earlier one
+// stands first on ties.
+func ranked[T any](list []T, x T, size func(T) float64) []T {
+	at := len(list)
+	for at > 0 && size(list[at-1]) < size(x) {
 		at--
 	}
-	if at < mostListed {
-		c.runs = append(c.runs, Run{})
-		copy(c.runs[at+1:], c.runs[at:])
-		c.runs[at] = r
-		c.runs = c.runs[:min(len(c.runs), mostListed)]
+	if at == mostListed {
+		return list
 	}
+	list = slices.Insert(list, at, x)
+	return list[:min(len(list), mostListed)]
 }
 
 // mean and deviation of the values, divisor n-1.

@@ -1,7 +1,6 @@
 package table
 
 import (
-	"errors"
 	"os"
 	"path/filepath"
 	"testing"
@@ -22,18 +21,6 @@ func FuzzText(f *testing.F) {
 		o := Options{Files: []string{path}, Missing: []string{"", "NA"}, ChannelsInRows: how&1 != 0, ShortRows: how&2 != 0,
 			Header: []string{"", "auto", "double", "auto"}[how>>2&3], Thousands: []string{"", "comma", "space", "apostrophe"}[how>>4&3],
 			Encoding: []string{"", "", "utf-16", "latin-1"}[how>>6&3]}
-		want, wantErr := collect(o, chunkBytes, 1)
-		for _, pieces := range []int{1, 17} {
-			got, err := collect(o, pieces, 2)
-			var e *Error
-			switch {
-			case err != nil && !errors.As(err, &e):
-				t.Fatalf("pieces=%d: %v", pieces, err)
-			case (err == nil) != (wantErr == nil) || err != nil && err.Error() != wantErr.Error():
-				t.Fatalf("pieces=%d: %v, whole: %v", pieces, err, wantErr)
-			case err == nil && !sameNumbers(got.data, want.data):
-				t.Fatalf("pieces=%d: %v, whole: %v", pieces, got.data, want.data)
-			}
-		}
+		sameInPieces(t, o, 1, 17)
 	})
 }

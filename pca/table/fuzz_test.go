@@ -20,18 +20,25 @@ func FuzzRead(f *testing.F) {
 			t.Fatal(err)
 		}
 		o := Options{Files: []string{path}, DecimalComma: comma, Comment: "#", Missing: []string{"", "NA", "-9"}}
-		want, wantErr := collect(o, chunkBytes, 1)
-		for _, pieces := range []int{1, 3, 17} {
-			got, err := collect(o, pieces, 3)
-			var e *Error
-			switch {
-			case err != nil && !errors.As(err, &e):
-				t.Fatalf("pieces=%d: %v", pieces, err)
-			case (err == nil) != (wantErr == nil) || err != nil && err.Error() != wantErr.Error():
-				t.Fatalf("pieces=%d: %v, whole: %v", pieces, err, wantErr)
-			case err == nil && !sameNumbers(got.data, want.data):
-				t.Fatalf("pieces=%d: %v, whole: %v", pieces, got.data, want.data)
-			}
-		}
+		sameInPieces(t, o, 1, 3, 17)
 	})
+}
+
+// sameInPieces reads a table whole and in pieces of the given sizes: numbers or an Error,
+// the same each time.
+func sameInPieces(t *testing.T, o Options, sizes ...int) {
+	t.Helper()
+	want, wantErr := collect(o, chunkBytes, 1)
+	for _, pieces := range sizes {
+		got, err := collect(o, pieces, 3)
+		var e *Error
+		switch {
+		case err != nil && !errors.As(err, &e):
+			t.Fatalf("pieces=%d: %v", pieces, err)
+		case (err == nil) != (wantErr == nil) || err != nil && err.Error() != wantErr.Error():
+			t.Fatalf("pieces=%d: %v, whole: %v", pieces, err, wantErr)
+		case err == nil && !sameNumbers(got.data, want.data):
+			t.Fatalf("pieces=%d: %v, whole: %v", pieces, got.data, want.data)
+		}
+	}
 }

@@ -1,6 +1,7 @@
 package report
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
@@ -172,7 +173,7 @@ func (p *page) reduction(s *Study) {
 	if len(r.Dropped) > 0 {
 		p.line("  dropped and rebuilt       R2 fit  R2 held out  off by (held out)  mostly from")
 		order := slices.Clone(r.Dropped)
-		slices.SortStableFunc(order, func(a, b int) int { return cmpFloat(r.Channels[a].R2FromKept, r.Channels[b].R2FromKept) })
+		slices.SortStableFunc(order, func(a, b int) int { return cmp.Compare(r.Channels[a].R2FromKept, r.Channels[b].R2FromKept) })
 		for i, j := range order {
 			if i == summaryRows {
 				p.line(fmt.Sprintf("  and %d more in tables/redundancy.csv", len(order)-i))
@@ -223,7 +224,7 @@ func mostly(s *Study, j int) string {
 		order[i] = i
 	}
 	weight := func(i int) float64 { return math.Abs(c.Coefficients[i]) * s.Channels[r.Kept[i]].Deviation }
-	slices.SortStableFunc(order, func(a, b int) int { return cmpFloat(weight(b), weight(a)) })
+	slices.SortStableFunc(order, func(a, b int) int { return cmp.Compare(weight(b), weight(a)) })
 	var names []string
 	for _, i := range order[:min(2, len(order))] {
 		if weight(i) > 0 {

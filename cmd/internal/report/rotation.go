@@ -1,6 +1,7 @@
 package report
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
@@ -133,7 +134,7 @@ func (s *Study) spread(j int) float64 {
 // carried says which channels rise and fall with a component.
 func (p *page) carried(s *Study, correlation func(j int) float64) string {
 	order := pca.FirstComponents(len(s.Channels))
-	slices.SortStableFunc(order, func(i, j int) int { return cmpFloat(math.Abs(correlation(j)), math.Abs(correlation(i))) })
+	slices.SortStableFunc(order, func(i, j int) int { return cmp.Compare(math.Abs(correlation(j)), math.Abs(correlation(i))) })
 	var rises, falls []string
 	for _, j := range order {
 		switch r := correlation(j); {

@@ -1,6 +1,7 @@
 package report
 
 import (
+	"cmp"
 	"fmt"
 	"io"
 	"math"
@@ -215,20 +216,13 @@ func leastAdequate(s *Study) string {
 func strongest(d *pca.Decomposition, a, width int) string {
 	order := pca.FirstComponents(d.Width())
 	slices.SortStableFunc(order, func(i, j int) int {
-		return cmpFloat(math.Abs(d.Loading(j, a)), math.Abs(d.Loading(i, a)))
+		return cmp.Compare(math.Abs(d.Loading(j, a)), math.Abs(d.Loading(i, a)))
 	})
-	text := ""
-	for _, j := range order {
-		item := fmt.Sprintf("%s %s", middle(d.Channels[j], 24), signed(d.Loading(j, a)))
-		if text != "" {
-			item = ", " + item
-		}
-		if utf8.RuneCountInString(text+item) > width {
-			break
-		}
-		text += item
+	items := make([]string, len(order))
+	for i, j := range order {
+		items[i] = fmt.Sprintf("%s %s", middle(d.Channels[j], 24), signed(d.Loading(j, a)))
 	}
-	return text
+	return fitting(items, width)
 }
 
 func (p *page) howMany(s *Study) {
@@ -273,7 +267,7 @@ func (p *page) regression(s *Study, m *pcr.Model) {
 	p.term(m.Intercept)
 	order := pca.FirstComponents(len(m.Terms))
 	slices.SortStableFunc(order, func(i, j int) int {
-		return cmpFloat(math.Abs(m.Terms[j].Standardized), math.Abs(m.Terms[i].Standardized))
+		return cmp.Compare(math.Abs(m.Terms[j].Standardized), math.Abs(m.Terms[i].Standardized))
 	})
 	for i, j := range order {
 		if i == summaryRows {
@@ -390,14 +384,4 @@ func middle(name string, width int) string {
 	left := (width - 1) / 2
 	right := width - 1 - left
 	return string(runes[:left]) + "…" + string(runes[len(runes)-right:])
-}
-
-func cmpFloat(a, b float64) int {
-	switch {
-	case a < b:
-		return -1
-	case a > b:
-		return 1
-	}
-	return 0
 }

@@ -38,15 +38,9 @@ func (w *work) press(ctx context.Context, responses []int, o *pcr.Options) error
 		if workers[worker] == nil {
 			workers[worker] = plan.Rows()
 		}
-		x := sized(gathered[worker], b.Rows*len(w.active))
-		gathered[worker] = x
-		for r := range b.Rows {
-			for j, i := range w.active {
-				x[r*len(w.active)+j] = b.Data[r*b.Width+i]
-			}
-		}
+		gathered[worker] = w.gather(gathered[worker], b)
 		sums := plan.Sums()
-		workers[worker].Add(sums, x, func(row, response int) float64 { return b.Data[row*b.Width+responses[response]] }, b.Rows)
+		workers[worker].Add(sums, gathered[worker], func(row, response int) float64 { return b.Data[row*b.Width+responses[response]] }, b.Rows)
 		b.Result = sums
 		return nil
 	}, func(b *table.Block) error {

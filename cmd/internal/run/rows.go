@@ -197,22 +197,24 @@ func (w *work) newLineMaker(layout report.RowLayout, k int) *lineMaker {
 // sized returns a slice of n numbers, the old one where it is long enough.
 func sized(old []float64, n int) []float64 { return slices.Grow(old[:0], n)[:n] }
 
-// gather puts the channels that take part into x.
-func (m *lineMaker) gather(b *table.Block) {
-	p := len(m.w.active)
-	m.x = sized(m.x, b.Rows*p)
+// gather returns the channels that take part of the rows of a block, row-major; into is
+// used again where it is long enough.
+func (w *work) gather(into []float64, b *table.Block) []float64 {
+	p := len(w.active)
+	into = sized(into, b.Rows*p)
 	for r := range b.Rows {
 		row := b.Data[r*b.Width : r*b.Width+b.Width]
-		for j, i := range m.w.active {
-			m.x[r*p+j] = row[i]
+		for j, i := range w.active {
+			into[r*p+j] = row[i]
 		}
 	}
+	return into
 }
 
 func (m *lineMaker) fill(out *blockLines, b *table.Block, wantScores, wantPredictions, wantDiagnostics bool) {
 	n := b.Rows
 	m.t2, m.spe = sized(m.t2, n), sized(m.spe, n)
-	m.gather(b)
+	m.x = m.w.gather(m.x, b)
 	out.scores = sized(out.scores, n*m.k)
 	m.scorer.Scores(out.scores, m.t2, m.spe, m.x, n)
 	out.scoreText.Reset()

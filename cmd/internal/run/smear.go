@@ -32,7 +32,7 @@ func (w *work) smear(ctx context.Context) error {
 			makers[worker] = w.newLineMaker(reportLayout(w.cfg), 0)
 		}
 		m := makers[worker]
-		m.gather(b)
+		m.x = w.gather(m.x, b)
 		sums := make([]pcr.Smearing, len(r.Smearing))
 		predicted, half := make([]float64, b.Rows), make([]float64, b.Rows)
 		for i, predictor := range m.predictors {
